@@ -1,0 +1,58 @@
+// SPDX-License-Identifier: Apache-2.0
+/// @file
+/// The keys of one element, read as the vocabulary says: unknown keys, missing ones, wrong units,
+/// impossible and unusual values are complained of here and nowhere else.
+#pragma once
+
+#include <optional>
+#include <string>
+#include <string_view>
+
+#include "netlists/context.h"
+
+namespace sunder::netlists {
+
+class ElementKeys {
+ public:
+  /// Complains at once of unknown keys and missing obligatory ones.
+  /// @param what  the element in words, "submain 'S1'"
+  /// @param at    where it begins
+  ElementKeys(Context& context, const Value& table, const models::Kind& kind, std::string what, models::Origin at);
+
+  [[nodiscard]] const Value* find(std::string_view key) const noexcept { return table_.find(key); }
+  [[nodiscard]] const std::string& what() const noexcept { return what_; }
+  [[nodiscard]] models::Origin at() const noexcept { return at_; }
+
+  /// Each returns nothing where the key is absent or, after a complaint, wrong.
+  [[nodiscard]] std::optional<double> quantity(std::string_view key);
+  [[nodiscard]] std::optional<double> number(std::string_view key);
+  [[nodiscard]] std::optional<std::string> text(std::string_view key);
+  [[nodiscard]] std::optional<std::string> choice(std::string_view key);
+  [[nodiscard]] std::optional<bool> flag(std::string_view key);
+  [[nodiscard]] std::optional<int> whole(std::string_view key);
+  [[nodiscard]] models::Sourced<double> sourced(std::string_view key);
+
+  /// A table, or after a complaint nullptr.
+  [[nodiscard]] const Value* table(std::string_view key);
+  [[nodiscard]] const Value* list(std::string_view key);
+
+  void wrong_form(const Value& value, std::string_view key, std::string_view expected);
+
+ private:
+  [[nodiscard]] std::optional<double> in_range(const models::Key& key, const Value& value, double si);
+
+  Context& context_;
+  const Value& table_;
+  const models::Kind& kind_;
+  std::string what_;
+  models::Origin at_;
+};
+
+/// Place of the character `offset` bytes into a text value.
+[[nodiscard]] models::Origin inside(const Value& value, std::size_t offset) noexcept;
+
+/// Phases text as a set, with N where the text means one; nothing after a complaint.
+[[nodiscard]] std::optional<models::ConductorSet> read_phases(Context& context, const Value& value,
+                                                              const std::string& what);
+
+}  // namespace sunder::netlists

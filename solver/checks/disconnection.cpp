@@ -1,0 +1,107 @@
+// SPDX-License-Identifier: Apache-2.0
+// The latest time at which a line-earth fault at the far end is disconnected, against the rule set.
+#include <fmt/format.h>
+
+#include <cmath>
+
+#include "solver/checks/check.h"
+
+namespace sunder::solver {
+namespace {
+
+using models::Quantity;
+
+constexpr const char* kName = "disconnection time";
+
+bool applies(const Situation& s) { return s.kind == SubjectKind::circuit || s.kind == SubjectKind::submain; }
+
+void say_working(Finding& finding, const Situation& s, const FaultCurrent& current, const Disconnection& cleared,
+                 const TimeLimit& limit) {
+  finding.steps.push_back({"earth-fault loop at the far end", "Zs = |Z source + Z1 + Z2|",
+                           fmt::format("{} of it before the installation", say(current.source_ohms, Quantity::impedance)),
+                           current.ohms, Quantity::impedance, s.at});
+  finding.steps.push_back({"least line-earth current", "I = c_min U0 / Zs",
+                           fmt::format("{} / {}", say(current.volts, Quantity::voltage),
+                                       say(current.ohms, Quantity::impedance)),
+                           current.amps, Quantity::current, s.at});
+  if (cleared.by != nullptr && std::isfinite(cleared.needed)) {
+    finding.steps.push_back({fmt::format("current at which {} of {} operates within {}",
+                                         cleared.residual ? "the residual element" : "the device", cleared.by->address,
+                                         say(limit.seconds, Quantity::time)),
+                             "Ia", cleared.by->device->text, cleared.needed, Quantity::current, cleared.by->at});
+    finding.steps.push_back({"greatest loop that would do", "Zs,max = c_min U0 / Ia",
+                             fmt::format("{} / {}", say(current.volts, Quantity::voltage),
+                                         say(cleared.needed, Quantity::current)),
+                             current.volts / cleared.needed, Quantity::impedance, {}});
+  }
+}
+
+std::vector<Finding> judge(const Situation& s) {
+  Finding finding = begin_finding(s, kName);
+  finding.unit = Quantity::time;
+  finding.condition = word(Condition::minimum);
+  finding.fault = word(Fault::line_earth);
+  const TimeLimit limit = time_limit(s);
+  finding.limit = limit.seconds;
+  finding.clause = limit.distribution ? s.network->rules.distribution_clause : s.network->rules.times_clause;
+  if (limit.assumed_use) finding.assumptions.push_back("use not given: the time of sockets is demanded");
+  const FaultCurrent& current = of(s.far_min, Fault::line_earth);
+  if (!current.possible) {
+    const bool board_has_earth = s.tree->conductors[static_cast<std::size_t>(s.board_index)].has(models::Conductor::PE);
+    lack(finding, board_has_earth ? "cpc of " + s.address : "electrode of " + s.board->name,
+         board_has_earth ? "no protective conductor reaches the far end" : "the board has no earth");
+    return {finding};
+  }
+  if (!current.known) {
+    lack(finding, current.needs, "the least line-earth current of the supply is not declared");
+    return {finding};
+  }
+  const Disconnection cleared = disconnection(s.path, current.amps, limit.seconds);
+  if (cleared.by == nullptr) {
+    lack(finding, "device of " + s.address, "no device on the way breaks a line-earth fault");
+    return {finding};
+  }
+  const models::Device& device = *cleared.by->device;
+  say_working(finding, s, current, cleared, limit);
+  finding.confidence = models::worse(path_confidence(s, true), device.confidence);
+  finding.value = std::isfinite(cleared.time) ? cleared.time : kNone;
+  if (std::isnan(finding.value)) finding.reason = "no device is sure to operate at this current";
+  finding.verdict = cleared.time <= limit.seconds ? Verdict::meets : Verdict::fails;
+  finding.margin = std::isfinite(cleared.needed) ? current.amps / cleared.needed - 1.0 : -1.0;
+  if (finding.verdict == Verdict::fails && !cleared.residual && !device.interpolated.empty() &&
+      device.interpolated.time_at(current.amps) <= limit.seconds)
+    lack(finding, "time-current points of the device of " + cleared.by->address,
+         "only a line drawn between the standard's gates would meet the time");
+  const std::string by = fmt::format("{}{}", device.text, cleared.by->address == s.address ? "" : " of " + cleared.by->address);
+  finding.summary = fmt::format(
+      "Zs {} lets {} flow: {} operates {}; {} demanded{}", say(current.ohms, Quantity::impedance),
+      say(current.amps, Quantity::current), by,
+      std::isfinite(cleared.time) ? "within " + say(cleared.time, Quantity::time) : std::string("at no sure time"),
+      say(limit.seconds, Quantity::time),
+      std::isfinite(cleared.needed)
+          ? fmt::format(", which takes {} (Zs {})", say(cleared.needed, Quantity::current),
+                        say(current.volts / cleared.needed, Quantity::impedance))
+          : std::string(", which it never guarantees"));
+  std::vector<double> steps;
+  for (const Protector& protector : s.path) {
+    for (const models::Curve* curve : {&protector.device->overcurrent.latest, &protector.device->residual.latest})
+      for (const double step : step_currents(*curve)) steps.push_back(step);
+  }
+  watch_steps(finding, current.amps, steps);
+  weigh_confidence(finding);
+  return {finding};
+}
+
+}  // namespace
+
+Check disconnection_check() {
+  return {{kName,
+           "the latest time at which the least line-earth current at the far end is disconnected against the rule "
+           "set's time for system, voltage, use and rating; the margin is that of the current",
+           "circuits, submains",
+           "the supply's minimum; length, cable, cpc, device; use"},
+          applies,
+          judge};
+}
+
+}  // namespace sunder::solver

@@ -1,0 +1,221 @@
+// SPDX-License-Identifier: Apache-2.0
+// What a fault lets through against what each conductor stands, over every current that can flow.
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <cmath>
+
+#include "solver/checks/check.h"
+
+namespace sunder::solver {
+namespace {
+
+using models::Quantity;
+
+constexpr const char* kName = "conductor heating";
+constexpr double kLongest = 5.0;  // [s]
+
+// The currents one conductor may carry, and which faults they belong to.
+struct Interval {
+  double low = 0, high = 0;  // prospective, through the device [A]
+  double kappa = 1.02;
+  bool earth = false;        // a line-earth fault: residual elements act too
+};
+
+struct Worst {
+  double heat = 0, current = 0, time = 0;  // I2t through the device
+  bool decisive = false;                   // by data, not by a bound
+  const char* basis = "";
+  models::Confidence confidence = models::Confidence::declared;
+};
+
+Heat heat_at(const Situation& s, const Protector& by, double current, const Interval& interval) {
+  Heat heat = greatest_heat(*by.device, current, interval.kappa);
+  if (!interval.earth) return heat;
+  for (const Protector& p : s.path) {
+    if (p.device->residual.empty()) continue;
+    const double time = p.device->residual.latest.time_at(current);
+    const double total = current * current * time;
+    if (!std::isfinite(time) || total >= heat.total) continue;
+    heat.total = total;
+    heat.time = time;  // a gate bounds it: whether the heat is data stays as the overcurrent part has it
+    heat.basis = "latest residual operating time";
+    heat.confidence = models::worse(heat.confidence, p.device->confidence);
+  }
+  return heat;
+}
+
+// The greatest heat over the interval, ends and corners of the curves included.
+Worst worst_over(const Situation& s, const Protector& by, const Interval& interval) {
+  std::vector<double> currents = heat_corners(*by.device, interval.low, interval.high);
+  if (interval.earth)
+    for (const Protector& p : s.path)
+      for (const double step : step_currents(p.device->residual.latest))
+        for (const double near : {step * (1 - 1e-9), step * (1 + 1e-9)})
+          if (near > interval.low && near < interval.high) currents.push_back(near);
+  currents.push_back(interval.low);
+  currents.push_back(interval.high);
+  Worst worst;
+  for (const double current : currents) {
+    const Heat heat = heat_at(s, by, current, interval);
+    if (!(heat.time <= kLongest)) continue;  // fault clearance and disconnection judge those
+    if (heat.total <= worst.heat) continue;
+    worst = {heat.total, current, heat.time, heat.from_data, heat.basis, heat.confidence};
+  }
+  return worst;
+}
+
+bool applies(const Situation& s) { return s.kind != SubjectKind::board; }
+
+struct Part {
+  const models::Strand* strand;
+  double share;     // of the fault current
+  Interval interval;
+  std::string name;
+};
+
+// Currents at the far end (minimum) and at the device (maximum) for a set of faults.
+bool interval_of(const Situation& s, std::initializer_list<Fault> faults, bool earth, Interval& out, std::string& needs,
+                 bool& possible) {
+  const FaultCurrent* low = least(s.far_min, faults, nullptr);
+  const FaultCurrent* high = greatest(s.origin_max, faults, nullptr);
+  possible = low != nullptr && high != nullptr;
+  if (!possible) return false;
+  if (!low->known || !high->known) {
+    needs = low->known ? high->needs : low->needs;
+    return false;
+  }
+  out.low = low->amps;
+  out.high = std::max(high->amps, low->amps);
+  out.kappa = std::isfinite(high->peak) && high->amps > 0 ? high->peak / (std::sqrt(2.0) * high->amps) : 1.02;
+  out.earth = earth;
+  return true;
+}
+
+std::vector<Part> parts_of(const Situation& s, Finding& finding) {
+  std::vector<Part> parts;
+  auto add = [&](const models::Strand& strand, double share, std::initializer_list<Fault> faults, bool earth,
+                 const std::string& name) {
+    Interval interval;
+    std::string needs;
+    bool possible = false;
+    if (interval_of(s, faults, earth, interval, needs, possible)) {
+      parts.push_back({&strand, share, interval, name});
+    } else if (possible) {
+      lack(finding, needs, "a current of the supply is not declared");
+    }
+  };
+  add(s.cable->line, 1.0, {Fault::line_neutral, Fault::line_line, Fault::three_phase}, false,
+      "line " + s.cable->line.label);
+  add(s.cable->line, 1.0, {Fault::line_earth}, true, "line " + s.cable->line.label);
+  if (s.cable->neutral) add(*s.cable->neutral, 1.0, {Fault::line_neutral}, false, "neutral " + s.cable->neutral->label);
+  const std::vector<double> shares = protective_shares(*s.network, *s.cable);
+  for (std::size_t i = 0; i < shares.size(); ++i)
+    add(s.cable->protective[i], shares[i], {Fault::line_earth}, true, "cpc " + s.cable->protective[i].label);
+  return parts;
+}
+
+// Judges one conductor into `finding`.
+void judge_part(const Situation& s, const Protector& by, const Part& part, Finding& finding) {
+  const models::AdiabaticRow* k = models::adiabatic(s.network->rules, *part.strand, s.cable->insulation);
+  if (k == nullptr) {
+    lack(finding, "k for the " + part.name + " of " + s.address, "the rule set has no k for this conductor");
+    return;
+  }
+  const double withstand = k->k * k->k * part.strand->area * part.strand->area;
+  const Worst worst = worst_over(s, by, part.interval);
+  finding.condition = word(part.interval.earth || worst.current < part.interval.high ? Condition::minimum : Condition::maximum);
+  if (worst.current >= part.interval.high) finding.condition = word(Condition::maximum);
+  finding.fault = part.interval.earth ? word(Fault::line_earth) : word(Fault::line_neutral);
+  finding.confidence = models::worse(models::worse(path_confidence(s, true), worst.confidence),
+                                     models::worse(k->confidence, part.strand->confidence));
+  const Heat at_low = heat_at(s, by, part.interval.low, part.interval);
+  if (worst.current > 0) {
+    const double heat = worst.heat * part.share * part.share;
+    compare_upper(finding, heat, withstand, Quantity::let_through);
+    const std::string share = part.share < 1 - 1e-12 ? fmt::format(" ({} of the current)", models::format_number(part.share, 3)) : "";
+    finding.steps.push_back({"what the " + part.name + " stands", "k2 S2",
+                             fmt::format("({} x {})2, {}", models::format_number(k->k / 1e6, 3),
+                                         say(part.strand->area, Quantity::area), k->clause),
+                             withstand, Quantity::let_through, s.at});
+    finding.steps.push_back({fmt::format("greatest heat, at {} between {} and {}", say(worst.current, Quantity::current),
+                                         say(part.interval.low, Quantity::current),
+                                         say(part.interval.high, Quantity::current)),
+                             "I2 t", fmt::format("{}{}", worst.basis, share), heat, Quantity::let_through, by.at});
+    finding.summary = fmt::format("{}{} may meet {} at {} ({}); it stands {}", part.name, share,
+                                  say(heat, Quantity::let_through), say(worst.current, Quantity::current), worst.basis,
+                                  say(withstand, Quantity::let_through));
+    if (finding.verdict == Verdict::fails && !worst.decisive &&
+        least_heat(*by.device, worst.current) * part.share * part.share <= withstand)
+      lack(finding, fmt::format("let-through (energy class or points) of the device of {}", by.address),
+           "only a safe bound of the let-through is known and it is above what the conductor stands");
+  }
+  if (!(at_low.time <= kLongest) && finding.verdict != Verdict::fails)
+    lack(finding, "a device of " + s.address + " that clears within 5 s",
+         "the least current is cleared later than 5 s: adiabatic heating proves nothing");
+}
+
+int rank(Verdict verdict) {
+  return verdict == Verdict::fails ? 0 : verdict == Verdict::undecided ? 1 : 2;
+}
+
+std::vector<Finding> judge(const Situation& s) {
+  Finding base = begin_finding(s, kName);
+  base.unit = Quantity::let_through;
+  base.clause = s.network->rules.heating_clause;
+  if (s.in_parallel > 1) {
+    lack(base, "the solution of faults inside parallel cables",
+         "a fault inside one of several parallel cables is fed from both ends: solved in a later edition");
+    return {base};
+  }
+  const Protector* by = overcurrent_protector(s.path);
+  if (by == nullptr) {
+    lack(base, "device of " + s.address, "no device on the way breaks a short-circuit");
+    return {base};
+  }
+  const std::vector<Part> parts = parts_of(s, base);
+  Finding worst = base;
+  worst.verdict = Verdict::meets;
+  bool any = !base.needs.empty();
+  if (any) worst.verdict = Verdict::undecided;
+  const std::vector<double> steps = step_currents(by->device->overcurrent.latest);
+  std::vector<double> watched;
+  for (const Part& part : parts) {
+    Finding finding = base;
+    finding.needs.clear();
+    finding.reason.clear();
+    judge_part(s, *by, part, finding);
+    for (const double step : steps) {
+      watched.push_back(std::log(part.interval.low / step));
+      watched.push_back(std::log(part.interval.high / step));
+    }
+    if (part.interval.earth) {
+      for (const Protector& p : s.path)
+        for (const double step : step_currents(p.device->residual.latest))
+          watched.push_back(std::log(part.interval.low / step));
+    }
+    weigh_confidence(finding);
+    const bool worse = rank(finding.verdict) < rank(worst.verdict) ||
+                       (rank(finding.verdict) == rank(worst.verdict) &&
+                        (std::isnan(worst.margin) || finding.margin < worst.margin));
+    if (!any || worse) worst = finding;
+    any = true;
+  }
+  if (!any) lack(worst, "conductors of " + s.address, "no fault is possible on the conductors given");
+  worst.breakpoints = watched;
+  return {worst};
+}
+
+}  // namespace
+
+Check heating_check() {
+  return {{kName,
+           "the heat a fault lets through against k2 S2 of every conductor, over all currents between the far end and "
+           "the device; below 0.1 s by let-through data, never by t = 0.1 s alone unless the bound passes",
+           "circuits, submains, tails",
+           "the supply's maximum and minimum; cable, cpc, device; energy class or let-through"},
+          applies,
+          judge};
+}
+
+}  // namespace sunder::solver

@@ -1,0 +1,159 @@
+// SPDX-License-Identifier: Apache-2.0
+#include "solver/loading.h"
+
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <array>
+#include <cmath>
+
+#include "solver/faults.h"
+#include "solver/sources.h"
+
+namespace sunder::solver {
+namespace {
+
+using models::Cable;
+using models::Conductor;
+using models::ConductorSet;
+using models::Network;
+using models::Source;
+
+std::size_t at(int handle) { return static_cast<std::size_t>(handle); }
+
+struct Load {
+  double amps;
+  double pf;
+  double Iz;  // <= 0: not known
+};
+
+double temperature(const Network& network, const Cable& cable, const Load& load) {
+  if (load.Iz <= 0) return cable.max_degc;
+  const double share = std::min(1.0, load.amps / load.Iz);
+  return network.ambient_degc + share * share * (cable.max_degc - network.ambient_degc);
+}
+
+// Voltage along one conductor per metre and ampere, projected on the load's voltage.
+double per_metre(const Network& network, const models::Strand& strand, double degc, double pf) {
+  const double r = strand.r20 * (1.0 + models::alpha20(network.rules, strand.material) * (degc - 20.0));
+  return r * pf + strand.x * std::sqrt(std::max(0.0, 1.0 - pf * pf));
+}
+
+// Share of the nominal voltage dropped over `metres` of a run (already divided by those in parallel).
+double run_drop(const Network& network, const Cable& cable, ConductorSet conductors, double metres, const Load& load,
+                const Source& source) {
+  const double degc = temperature(network, cable, load);
+  const double line = per_metre(network, cable.line, degc, load.pf) * metres * load.amps;
+  const int lines = conductors.lines();
+  if (lines == 3) return line / source.U0;
+  if (lines == 2) return 2.0 * line / source.U;
+  const models::Strand& neutral = cable.neutral ? *cable.neutral : cable.line;
+  return (line + per_metre(network, neutral, degc, load.pf) * metres * load.amps) / source.U0;
+}
+
+double pf_or_one(const models::Sourced<double>& pf) { return pf.given ? pf.value : 1.0; }
+
+struct PerLine {
+  std::array<double, 3> amps{};
+  double all = 0, active = 0;  // sums over everything fed, for the mean power factor
+  bool known = true;
+  std::string needs;
+
+  void add(ConductorSet lines, const Demand& demand) {
+    if (!demand.known && known) {
+      known = false;
+      needs = demand.needs;
+    }
+    all += demand.amps * lines.lines();
+    active += demand.amps * demand.pf * lines.lines();
+    for (std::size_t i = 0; i < 3; ++i)
+      if (lines.has(static_cast<Conductor>(i))) amps[i] += demand.amps;
+  }
+  [[nodiscard]] double pf() const { return all > 0 ? active / all : 1.0; }
+};
+
+}  // namespace
+
+Drop circuit_drop(const Network& network, const models::Circuit& circuit, const Source& source) {
+  Drop drop;
+  drop.length = circuit.ring ? circuit.length.value / 2 : circuit.length.value;
+  if (!circuit.load.given) return {0, false, "load of " + models::address(network, circuit), drop.length};
+  double metres = circuit.length.value / circuit.in_parallel;
+  if (circuit.ring) {
+    const CircuitEnd end = worst_end(network, circuit);
+    metres = circuit.length.value * end.fraction * (1 - end.fraction);
+    if (end.spur >= 0) metres += circuit.spurs[at(end.spur)].length;
+  }
+  drop.share = run_drop(network, circuit.cable, circuit.conductors, metres,
+                        {circuit.load.value, pf_or_one(circuit.pf), circuit.Iz.given ? circuit.Iz.value : 0.0}, source);
+  return drop;
+}
+
+Loading load_network(const Network& network, const StateTree& tree) {
+  Loading loading;
+  const std::size_t n = network.boards.size();
+  loading.demand.resize(n);
+  loading.submain.resize(network.submains.size());
+  loading.drop.resize(n);
+  loading.motors.assign(network.sources.size(), 0.0);
+  std::vector<PerLine> lines(n);
+  for (const models::Circuit& circuit : network.circuits) {
+    if (!tree.live(circuit.board)) continue;
+    Demand demand{circuit.load.value, pf_or_one(circuit.pf), circuit.load.given, true, ""};
+    if (!circuit.load.given) demand.needs = "load of " + models::address(network, circuit);
+    lines[at(circuit.board)].add(circuit.conductors, demand);
+    if (circuit.motor && circuit.load.given)
+      loading.motors[at(tree.source_of[at(circuit.board)])] += circuit.load.value;
+  }
+  for (auto b = tree.order.rbegin(); b != tree.order.rend(); ++b) {
+    const PerLine& here = lines[at(*b)];
+    loading.demand[at(*b)] = {*std::max_element(here.amps.begin(), here.amps.end()), here.pf(), here.known, false,
+                                 here.needs};
+    const int f = tree.feeder[at(*b)];
+    if (f < 0) continue;
+    const models::Submain& submain = network.submains[at(f)];
+    Demand& demand = loading.submain[at(f)];
+    demand = submain.demand.given ? Demand{submain.demand.value, pf_or_one(submain.pf), true, true, ""} : loading.demand[at(*b)];
+    lines[at(submain.from)].add(submain.conductors, demand);
+  }
+  for (const int b : tree.order) {
+    Drop& drop = loading.drop[at(b)];
+    const Source& source = network.sources[at(tree.source_of[at(b)])];
+    const int f = tree.feeder[at(b)];
+    if (f < 0) {
+      const Demand& demand = loading.demand[at(b)];
+      if (!source.tails.present && !source.transformer) continue;
+      if (!demand.known) {
+        drop = {0, false, demand.needs, 0};
+        continue;
+      }
+      const Load load{demand.amps, demand.pf, 0.0};
+      if (source.tails.present) {
+        ConductorSet all = source.lines;
+        all.add(Conductor::N);
+        drop.share += run_drop(network, source.tails.cable, all, source.tails.length / source.tails.in_parallel, load,
+                               source);
+        drop.length += source.tails.length;
+      }
+      if (source.transformer) {
+        const Complex winding = transformer_impedance(source);
+        const double sine = std::sqrt(std::max(0.0, 1.0 - demand.pf * demand.pf));
+        drop.share += (winding.real() * demand.pf + winding.imag() * sine) * demand.amps / source.U0;
+      }
+      continue;
+    }
+    const models::Submain& submain = network.submains[at(f)];
+    drop = loading.drop[at(submain.from)];
+    const Demand& demand = loading.submain[at(f)];
+    if (!demand.known && drop.known) {
+      drop.known = false;
+      drop.needs = demand.needs;
+    }
+    drop.share += run_drop(network, submain.cable, submain.conductors, submain.length.value / submain.in_parallel,
+                           {demand.amps, demand.pf, submain.Iz.given ? submain.Iz.value : 0.0}, source);
+    drop.length += submain.length.value;
+  }
+  return loading;
+}
+
+}  // namespace sunder::solver

@@ -1,0 +1,208 @@
+// SPDX-License-Identifier: Apache-2.0
+#include "solver/situation.h"
+
+#include <algorithm>
+
+namespace sunder::solver {
+namespace {
+
+using models::Conductor;
+using models::Network;
+
+std::size_t at(int handle) { return static_cast<std::size_t>(handle); }
+
+constexpr std::array<Fault, 4> kFaults{Fault::three_phase, Fault::line_line, Fault::line_neutral, Fault::line_earth};
+
+Currents currents(const Network& network, const models::Source& source, const ConductorMatrix& net,
+                  models::ConductorSet have, Condition condition) {
+  Currents all;
+  for (const Fault fault : kFaults)
+    all[static_cast<std::size_t>(fault)] = fault_current(network, source, net, have, condition, fault);
+  return all;
+}
+
+// Conductors that both the board and the run have.
+models::ConductorSet carried(models::ConductorSet board, models::ConductorSet run) {
+  models::ConductorSet result;
+  for (const Conductor c : {Conductor::L1, Conductor::L2, Conductor::L3, Conductor::N, Conductor::PE})
+    if (board.has(c) && run.has(c)) result.add(c);
+  return result;
+}
+
+void fill_circuit(Situation& s, const StateSolution& solution, int index) {
+  const Network& network = *s.network;
+  const models::Circuit& circuit = network.circuits[at(index)];
+  s.circuit = &circuit;
+  s.address = models::address(network, circuit);
+  s.at = circuit.at;
+  s.device = &circuit.device;
+  s.cable = &circuit.cable;
+  s.length = circuit.length.value;
+  s.in_parallel = circuit.in_parallel;
+  s.ring = circuit.ring;
+  s.use = circuit.use;
+  s.board_index = circuit.board;
+  s.path = path_to_circuit(network, solution.tree, index);
+  const std::size_t board = at(circuit.board);
+  s.conductors = carried(solution.tree.conductors[board], circuit.conductors);
+  s.far_min = currents(network, *s.source,
+                       solution.minimum.boards[board] +
+                           circuit_matrix(network, circuit, worst_end(network, circuit), Condition::minimum),
+                       s.conductors, Condition::minimum);
+  s.origin_max = currents(network, *s.source, solution.maximum.boards[board], s.conductors, Condition::maximum);
+  const Drop own = circuit_drop(network, circuit, *s.source);
+  s.drop = solution.loading.drop[board];
+  s.drop.share += own.share;
+  s.drop.length += own.length;
+  if (s.drop.known && !own.known) {
+    s.drop.known = false;
+    s.drop.needs = own.needs;
+  }
+}
+
+void fill_submain(Situation& s, const StateSolution& solution, int index) {
+  const Network& network = *s.network;
+  const models::Submain& submain = network.submains[at(index)];
+  s.submain = &submain;
+  s.address = submain.name;
+  s.at = submain.at;
+  s.device = &submain.device;
+  s.cable = &submain.cable;
+  s.length = submain.length.value;
+  s.in_parallel = submain.in_parallel;
+  s.use = models::Use::distribution;
+  s.board_index = submain.from;
+  s.path = path_to_submain(network, solution.tree, index);
+  s.conductors = carried(solution.tree.conductors[at(submain.from)], submain.conductors);
+  s.far_min = currents(network, *s.source, solution.minimum.boards[at(submain.to)],
+                       solution.tree.conductors[at(submain.to)], Condition::minimum);
+  if (!s.conductors.has(Conductor::PE)) s.far_min[static_cast<std::size_t>(Fault::line_earth)] = {};
+  s.origin_max =
+      currents(network, *s.source, solution.maximum.boards[at(submain.from)], s.conductors, Condition::maximum);
+  s.drop = solution.loading.drop[at(submain.to)];
+}
+
+void fill_tails(Situation& s, const StateSolution& solution, int index) {
+  const Network& network = *s.network;
+  const models::Source& source = network.sources[at(index)];
+  s.address = source.name;
+  s.at = source.tails.at;
+  s.device = &source.device;
+  s.cable = &source.tails.cable;
+  s.length = source.tails.length;
+  s.in_parallel = source.tails.in_parallel;
+  s.use = models::Use::distribution;
+  s.conductors = solution.tree.conductors[at(source.board)];
+  if (source.device.present()) s.path.push_back({&source.device, source.name, source.at, -1});
+  s.far_min = currents(network, source, solution.minimum.boards[at(source.board)], s.conductors, Condition::minimum);
+  s.origin_max = currents(network, source, ConductorMatrix::Zero(), s.conductors, Condition::maximum);
+}
+
+void fill_board(Situation& s, const StateSolution& solution, int index) {
+  const Network& network = *s.network;
+  const models::Board& board = network.boards[at(index)];
+  s.address = board.name;
+  s.at = board.at;
+  s.board_index = index;
+  s.device = &board.incomer;
+  s.conductors = solution.tree.conductors[at(index)];
+  s.path = path_to_board(network, solution.tree, index);
+  s.origin_max = currents(network, *s.source, solution.maximum.boards[at(index)], s.conductors, Condition::maximum);
+  s.far_min = currents(network, *s.source, solution.minimum.boards[at(index)], s.conductors, Condition::minimum);
+  s.drop = solution.loading.drop[at(index)];
+}
+
+template <class Better>
+const FaultCurrent* pick(const Currents& currents, std::initializer_list<Fault> faults, Fault* which, Better better) {
+  const FaultCurrent* best = nullptr;
+  for (const Fault fault : faults) {
+    const FaultCurrent& current = of(currents, fault);
+    if (!current.possible) continue;
+    if (best == nullptr || (best->known && (!current.known || better(current.amps, best->amps)))) {
+      best = &current;
+      if (which != nullptr) *which = fault;
+    }
+  }
+  return best;
+}
+
+}  // namespace
+
+StateSolution solve_state(const Network& network, int state) {
+  StateSolution solution;
+  solution.tree = state_tree(network, state);
+  solution.maximum = walk(network, solution.tree, Condition::maximum);
+  solution.minimum = walk(network, solution.tree, Condition::minimum);
+  solution.loading = load_network(network, solution.tree);
+  return solution;
+}
+
+std::vector<Subject> subjects(const Network& network, const StateSolution& solution) {
+  std::vector<Subject> all;
+  for (int c = 0; c < static_cast<int>(network.circuits.size()); ++c)
+    if (solution.tree.live(network.circuits[at(c)].board)) all.push_back({SubjectKind::circuit, c});
+  for (int m = 0; m < static_cast<int>(network.submains.size()); ++m)
+    // Live and feeding: a submain whose far board has a source of its own in this state is open.
+    if (solution.tree.feeder[at(network.submains[at(m)].to)] == m) all.push_back({SubjectKind::submain, m});
+  for (const int s : network.states[at(solution.tree.state)].sources)
+    if (network.sources[at(s)].tails.present) all.push_back({SubjectKind::tails, s});
+  for (const int b : solution.tree.order) all.push_back({SubjectKind::board, b});
+  return all;
+}
+
+Situation situation(const Network& network, const StateSolution& solution, Subject subject) {
+  Situation s;
+  s.network = &network;
+  s.tree = &solution.tree;
+  s.loading = &solution.loading;
+  s.kind = subject.kind;
+  s.state = network.states[at(solution.tree.state)].name;
+  int source = subject.index;
+  if (subject.kind == SubjectKind::circuit) {
+    source = solution.tree.source_of[at(network.circuits[at(subject.index)].board)];
+  } else if (subject.kind == SubjectKind::submain) {
+    source = solution.tree.source_of[at(network.submains[at(subject.index)].from)];
+  } else if (subject.kind == SubjectKind::board) {
+    source = solution.tree.source_of[at(subject.index)];
+  }
+  s.source = &network.sources[at(source)];
+  s.motors = solution.loading.motors[at(source)];
+  switch (subject.kind) {
+    case SubjectKind::circuit: fill_circuit(s, solution, subject.index); break;
+    case SubjectKind::submain: fill_submain(s, solution, subject.index); break;
+    case SubjectKind::tails: fill_tails(s, solution, subject.index); break;
+    default: fill_board(s, solution, subject.index); break;
+  }
+  if (s.board_index >= 0) s.board = &network.boards[at(s.board_index)];
+  return s;
+}
+
+const FaultCurrent* greatest(const Currents& currents, std::initializer_list<Fault> faults, Fault* which) {
+  return pick(currents, faults, which, [](double a, double b) { return a > b; });
+}
+
+const FaultCurrent* least(const Currents& currents, std::initializer_list<Fault> faults, Fault* which) {
+  return pick(currents, faults, which, [](double a, double b) { return a < b; });
+}
+
+TimeLimit time_limit(const Situation& s) {
+  const models::RuleSet& rules = s.network->rules;
+  const bool tt = s.source->earthing == models::Earthing::TT;
+  TimeLimit limit;
+  limit.assumed_use = s.kind == SubjectKind::circuit && s.use == models::Use::unknown;
+  const double In = s.device != nullptr && s.device->present() ? s.device->In : 0;
+  const bool sockets = s.use == models::Use::sockets || s.use == models::Use::unknown;
+  const bool final_circuit = s.kind == SubjectKind::circuit && s.use != models::Use::distribution &&
+                             In <= (sockets ? rules.sockets_to : rules.fixed_to);
+  limit.distribution = !final_circuit;
+  limit.seconds = tt ? rules.distribution_tt : rules.distribution_tn;
+  if (!final_circuit) return limit;
+  for (const models::TimeRow& row : rules.times)
+    if (row.earthing == s.source->earthing && s.source->U0 <= row.U0_to) {
+      limit.seconds = row.final_circuit;
+      break;
+    }
+  return limit;
+}
+
+}  // namespace sunder::solver

@@ -1,0 +1,90 @@
+// SPDX-License-Identifier: Apache-2.0
+/// @file
+/// Everything a check may ask about one subject in one supply state, solved before it is asked.
+#pragma once
+
+#include <array>
+#include <string>
+#include <vector>
+
+#include "models/network.h"
+#include "solver/clearing.h"
+#include "solver/faults.h"
+#include "solver/loading.h"
+#include "solver/results.h"
+
+namespace sunder::solver {
+
+enum class SubjectKind { circuit, submain, tails, board };
+
+/// One thing that checks judge.
+struct Subject {
+  SubjectKind kind = SubjectKind::circuit;
+  int index = 0;  ///< into circuits, submains, sources (tails) or boards
+};
+
+/// Currents of the four faults at one place, by Fault.
+using Currents = std::array<FaultCurrent, 4>;
+
+[[nodiscard]] inline const FaultCurrent& of(const Currents& currents, Fault fault) {
+  return currents[static_cast<std::size_t>(fault)];
+}
+
+/// The solved surroundings of a subject. Pointers are null where the subject has no such part.
+struct Situation {
+  const models::Network* network = nullptr;
+  const StateTree* tree = nullptr;
+  const Loading* loading = nullptr;
+  SubjectKind kind = SubjectKind::circuit;
+  std::string address;
+  std::string state;
+  models::Origin at{};
+  const models::Source* source = nullptr;
+  const models::Circuit* circuit = nullptr;
+  const models::Submain* submain = nullptr;
+  const models::Board* board = nullptr;   ///< at the line side; kind board: itself
+  int board_index = -1;
+  // a run (circuit, submain, tails)
+  const models::Device* device = nullptr;  ///< its own; may be of kind none
+  const models::Cable* cable = nullptr;
+  double length = 0;
+  int in_parallel = 1;
+  bool ring = false;
+  models::ConductorSet conductors;  ///< that reach its far end
+  models::Use use = models::Use::unknown;
+  bool use_assumed = false;
+  std::vector<Protector> path;      ///< source first
+  Currents origin_max;              ///< at the line side of its device, maximum
+  Currents far_min;                 ///< at its far end (ring: worst place), minimum
+  Drop drop;                        ///< at its far end, from the supply terminals
+  double motors = 0;                ///< rated current of all motors in this part of the network [A]
+};
+
+/// What is solved once per state and shared by every subject in it.
+struct StateSolution {
+  StateTree tree;
+  Walk maximum, minimum;
+  Loading loading;
+};
+
+[[nodiscard]] StateSolution solve_state(const models::Network& network, int state);
+
+/// Subjects that are live in a state, circuits first.
+[[nodiscard]] std::vector<Subject> subjects(const models::Network& network, const StateSolution& solution);
+
+[[nodiscard]] Situation situation(const models::Network& network, const StateSolution& solution, Subject subject);
+
+/// Greatest of the usable currents; nullptr if none is possible, an unknown one if any possible is not known.
+[[nodiscard]] const FaultCurrent* greatest(const Currents& currents, std::initializer_list<Fault> faults, Fault* which);
+/// Least, in the same way.
+[[nodiscard]] const FaultCurrent* least(const Currents& currents, std::initializer_list<Fault> faults, Fault* which);
+
+/// The disconnection time the rule set allows this run [s], with its clause.
+struct TimeLimit {
+  double seconds = 0;
+  bool distribution = false;
+  bool assumed_use = false;
+};
+[[nodiscard]] TimeLimit time_limit(const Situation& s);
+
+}  // namespace sunder::solver
