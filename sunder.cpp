@@ -253,7 +253,9 @@ int run_vary(const Options& options) {
   std::variant<solver::Sweep, std::string> result;
   {
     Progress progress(options, "solving");
-    result = solver::vary(*network, options.vary, progress.hook());
+    solver::VaryRequest request = options.vary;
+    request.read_device = netlists::read_device_text;
+    result = solver::vary(*network, request, progress.hook());
   }
   if (const std::string* why = std::get_if<std::string>(&result)) return complain(options, *why);
   const auto& sweep = std::get<solver::Sweep>(result);
@@ -343,6 +345,7 @@ int unexpected(const Options& options, const std::string& extra, const CLI::App&
   const std::vector<std::string_view> views(names.begin(), names.end());
   const std::string wrong = extra.substr(0, extra.find('='));
   const std::string_view near = models::nearest_name(wrong, views);
+  if (near == wrong) return complain(options, fmt::format("unexpected argument '{}'", extra));  // behind "--"
   std::string hint;
   if (!near.empty()) hint = fmt::format("did you mean '{}'?", near);
   else if (command && !names.empty()) hint = "`sunder help` lists the commands";

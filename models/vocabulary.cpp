@@ -17,38 +17,37 @@ constexpr double kUnbounded = std::numeric_limits<double>::infinity();
 struct Entry {
   Key key;
 
-  [[nodiscard]] Entry need() && {
+  [[nodiscard]] Entry need() {
     key.required = true;
-    return std::move(*this);
+    return *this;
   }
   // possible from `least` (included) to `most` (included)
-  [[nodiscard]] Entry from(double least, double most) && {
+  [[nodiscard]] Entry from(double least, double most) {
     key.least = least;
     key.most = most;
-    return std::move(*this);
+    return *this;
   }
   // possible above `least` (excluded) to `most` (included)
-  [[nodiscard]] Entry above(double least, double most = kUnbounded) && {
+  [[nodiscard]] Entry above(double least, double most = kUnbounded) {
     key.least = least;
     key.most = most;
     key.above = true;
-    return std::move(*this);
+    return *this;
   }
-  [[nodiscard]] Entry usual(double least, double most) && {
+  [[nodiscard]] Entry usual(double least, double most) {
     key.plausible_least = least;
     key.plausible_most = most;
-    return std::move(*this);
+    return *this;
   }
-  [[nodiscard]] Entry of(std::string_view choices) && {
+  [[nodiscard]] Entry of(std::string_view choices) {
     key.choices = choices;
-    return std::move(*this);
+    return *this;
   }
-  [[nodiscard]] Entry unless_given(std::string_view by_default) && {
+  [[nodiscard]] Entry unless_given(std::string_view by_default) {
     key.by_default = by_default;
-    return std::move(*this);
+    return *this;
   }
-  // NOLINTNEXTLINE(google-explicit-constructor): an entry stands for its key
-  operator Key() && { return key; }
+  operator Key() const { return key; }  // an entry stands for its key
 };
 
 Entry entry(std::string_view name, ValueForm form, std::string_view help) {
@@ -172,7 +171,7 @@ Kind transformer() {
                .unless_given("the nominal voltage between lines"),
            entry("fault_level", ValueForm::text,
                  "Short-circuit power of the network before it: \"250 MVA\", or a table of most and least.")
-               .unless_given("unlimited"),
+               .unless_given("unlimited for the most, unknown for the least"),
            entry("earthing", ValueForm::choice, "System earthing of the low side.").need().of("TN-S|TN-C-S|TT"),
            entry("link", ValueForm::choice, "Where neutral and protective conductor part.")
                .of("star point|board")

@@ -4,9 +4,7 @@
 /// it brings in the TOML parser.
 #pragma once
 
-#define TOML_EXCEPTIONS 0
 #include <fmt/format.h>
-#include <toml++/toml.h>
 
 #include <array>
 #include <set>
@@ -19,6 +17,7 @@
 #include "models/curves.h"
 #include "models/sourced.h"
 #include "models/units.h"
+#include "netlists/toml_parser.h"
 
 namespace sunder::netlists {
 

@@ -181,6 +181,29 @@ Reading read_network_text(const std::string& text, const std::string& name, cons
   return finish(context);
 }
 
+std::variant<models::Device, std::string> read_device_text(const models::Network& network, const std::string& text) {
+  for (const models::Circuit& circuit : network.circuits)
+    if (circuit.device.present() && (circuit.device.text == text || circuit.device.family == text)) return circuit.device;
+  for (const models::Submain& submain : network.submains)
+    if (submain.device.present() && (submain.device.text == text || submain.device.family == text)) return submain.device;
+  Context context;
+  context.complaints.add_file("", text);
+  context.network.families = network.families;
+  for (std::size_t k = 0; k < network.families.size(); ++k)
+    context.families.emplace(network.families[k].name, static_cast<int>(k));
+  Value value;
+  value.form = Value::Form::text;
+  value.text = text;
+  value.at = {1, 1, 1};
+  value.width = characters(text);
+  std::optional<models::Device> device = read_device(context, value, "device '" + text + "'");
+  if (device) return *device;
+  const std::vector<Diagnostic> complaints = context.complaints.in_order();
+  if (complaints.empty()) return "'" + text + "' is no device";
+  const Diagnostic& first = complaints.front();
+  return first.hint.empty() ? first.message : first.message + "; " + first.hint;
+}
+
 Reading read_network(const std::string& path) {
   Context context;
   context.complaints.add_file(path, {});

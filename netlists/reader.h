@@ -5,6 +5,7 @@
 
 #include <optional>
 #include <string>
+#include <variant>
 #include <vector>
 
 #include "models/network.h"
@@ -40,6 +41,12 @@ inline constexpr std::size_t kLargestFile = 64U << 20U;  ///< [bytes]
 /// The same from text in memory; `name` stands for the file in diagnostics, `folder` for schedules.
 [[nodiscard]] Reading read_network_text(const std::string& text, const std::string& name,
                                         const std::string& folder = ".");
+
+/// A device text by itself, such as "C 20 A 6 kA", with the families of a network that has been read; a
+/// text that a device of the network bears (the name of a [device.x] too) gives that device again.
+/// @return the device, or one sentence on what is wrong with the text
+[[nodiscard]] std::variant<models::Device, std::string> read_device_text(const models::Network& network,
+                                                                         const std::string& text);
 
 /// file:line:column: severity: message / the line / caret / hint, as one block of text, tabs kept.
 [[nodiscard]] std::string format_diagnostic(const Diagnostic& diagnostic);

@@ -51,7 +51,7 @@ void read_groups(Context& context, ElementKeys& fields, int board, Board& made) 
 std::string read_selective(Context& context, ElementKeys& fields, models::Device& device) {
   const auto text = fields.text("selective");
   if (!text) return {};
-  const std::string wanted(trimmed(*text));
+  std::string wanted(trimmed(*text));
   if (wanted != "total") {
     const auto parsed = models::parse_quantity(wanted, Quantity::current);
     if (!std::holds_alternative<double>(parsed) || !(std::get<double>(parsed) > 0)) {

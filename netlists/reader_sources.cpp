@@ -150,9 +150,23 @@ void read_bound(Context& context, ElementKeys& supply, std::string_view key, con
   read_loop(context, fields, "line_neutral", bound.line_neutral);
   read_loop(context, fields, "line_earth", bound.line_earth);
   bound.power_factor = read_angle(context, fields);
+  const bool split_open = source.lines.lines() > 1;
+  if (key == "maximum" && split_open && bound.three_phase.given()) {
+    for (const auto& [loop, name] : {std::pair{&bound.line_neutral, "line-neutral"}, std::pair{&bound.line_earth, "line-earth"}}) {
+      if (!loop->given()) {
+        context.assume(source.name, fmt::format("no greatest {} current of {}: taken as the three-phase one, without "
+                                                "return impedance", name, supply.what()), bound.at);
+      }
+    }
+  }
   if (key == "minimum") {
     read_alias(context, fields, "Ze", "line_earth", bound.line_earth);
     read_alias(context, fields, "Zn", "line_neutral", bound.line_neutral);
+  }
+  const bool of_lines = bound.line_neutral.given() || (bound.line_earth.given() && source.earthing != models::Earthing::TT);
+  if (key == "minimum" && split_open && !bound.three_phase.given() && of_lines) {
+    context.assume(source.name, fmt::format("no least three-phase current of {}: all of the least declared loop is taken "
+                                            "to lie in the line", supply.what()), bound.at);
   }
   if (bound.three_phase.given() && source.lines.lines() == 1) {
     context.complaints.error(bound.three_phase.at, 1,
@@ -263,7 +277,8 @@ void read_common(Context& context, ElementKeys& fields, Source& source) {
 void read_fault_level(Context& context, ElementKeys& fields, Source& source) {
   const Value* value = fields.find("fault_level");
   if (value == nullptr) {
-    context.assume(source.name, fmt::format("no fault level before {}: its primary voltage is taken as stiff",
+    context.assume(source.name, fmt::format("no fault level before {}: stiff for the greatest currents, the least ones "
+                                            "are unknown",
                                             fields.what()), source.at);
     return;
   }
@@ -276,11 +291,6 @@ void read_fault_level(Context& context, ElementKeys& fields, Source& source) {
     if (least) source.fault_level_min = *least;
     if (!most) {
       context.assume(source.name, fmt::format("no maximum fault level before {}: taken as stiff there", fields.what()),
-                     value->at);
-    }
-    if (!least && most) {
-      source.fault_level_min = *most;
-      context.assume(source.name, fmt::format("no minimum fault level before {}: taken as the maximum", fields.what()),
                      value->at);
     }
     if (source.fault_level_min > source.fault_level_max) {

@@ -249,7 +249,7 @@ class ScheduleReader {
         named = true;
         continue;
       }
-      if (std::optional<Member> member = read_cell(cell, column, width)) circuit.value.members.push_back(std::move(*member));
+      circuit.value.members.push_back(read_cell(cell, column, width));
     }
     if (!named) {
       context_.complaints.error(circuit.at, 1, "this row has no way, the name of its circuit");
@@ -261,8 +261,8 @@ class ScheduleReader {
     read_circuit(context_, board_, placed, context_.rows.back());
   }
 
-  // A cell as the value that the netlist would have; nothing after a complaint.
-  std::optional<Member> read_cell(const Cell& cell, const Column& column, int width) {
+  // A cell as the value that the netlist would have.
+  Member read_cell(const Cell& cell, const Column& column, int width) {
     Member member{column.name, cell.at, width, {}};
     member.value.form = Value::Form::text;
     member.value.at = cell.at;
@@ -274,10 +274,10 @@ class ScheduleReader {
       std::replace(with_point.begin(), with_point.end(), ',', '.');
       context_.complaints.error(cell.at, width, fmt::format("'{}' in column '{}' has a decimal comma", cell.text, column.name),
                                 fmt::format("write {}", with_point));
-      return std::nullopt;
+      member.value.text = std::move(with_point);  // so that the key is not missed as well
     }
-    if (measured && !column.unit.empty() && bare_number(cell.text)) {
-      member.value.text = fmt::format("{} {}", cell.text, column.unit);
+    if (measured && !column.unit.empty() && bare_number(member.value.text)) {
+      member.value.text = fmt::format("{} {}", member.value.text, column.unit);
     }
     return member;
   }

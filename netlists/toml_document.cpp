@@ -4,11 +4,12 @@
 #include "netlists/toml_document.h"
 
 #include <fmt/format.h>
-#include <toml++/toml.h>
 
 #include <algorithm>
 #include <optional>
 #include <vector>
+
+#include "netlists/toml_parser.h"
 
 namespace sunder::netlists {
 
@@ -208,8 +209,14 @@ std::string syntax_sentence(std::string_view description, bool at_line_end) {
   return text;
 }
 
-// A value such as 16 kA without its quotes is the commonest slip.
-std::string syntax_hint(std::string_view description, std::string_view line) {
+// A value such as 16 kA without its quotes is the commonest slip; then come names in other alphabets.
+std::string syntax_hint(std::string_view description, std::string_view line, std::size_t offset) {
+  const bool beyond_ascii = offset < line.size() && (static_cast<unsigned char>(line[offset]) & 0x80U) != 0;
+  if (beyond_ascii) {
+    for (const std::string_view name_expected : {" key", "expected ']'", "expected '='"}) {
+      if (description.find(name_expected) != std::string_view::npos) return "a name with such a character stands in quotes";
+    }
+  }
   if (description.find("expected a comment or whitespace") == std::string_view::npos &&
       description.find("expected digit") == std::string_view::npos) {
     return {};
@@ -337,7 +344,7 @@ TomlDocument parse_toml(std::string_view text, std::uint32_t file, Complaints& c
     } else {
       complaints.error({file, static_cast<std::uint32_t>(number), static_cast<std::uint32_t>(column)}, 1,
                        syntax_sentence(description, column > static_cast<std::size_t>(characters(line))),
-                       syntax_hint(description, line));
+                       syntax_hint(description, line, byte_offset(line, column)));
     }
     // An open bracket or quote that runs to the end of the file cannot be mended line by line.
     if (description.find("end-of-file") != std::string_view::npos || trimmed(line).empty()) return document;

@@ -117,6 +117,14 @@ Heat greatest_heat(const Device& device, double current, double kappa) {
     heat.total = square * heat.time * (1.0 + dc_heat(kappa, heat.time, kFrequency));
     heat.from_data = true;
     heat.basis = "latest operating time";
+    // Pre-arcing I2t of a fuse does not rise with current: each gate passed bounds all above it.
+    if (device.kind == models::DeviceKind::fuse && device.by_gates)
+      for (const models::CurvePoint& gate : device.overcurrent.latest.points) {
+        const double total = gate.current * gate.current * gate.time;
+        if (gate.current > current || total >= heat.total) continue;
+        heat.total = total;
+        heat.basis = "gate of the fuse below this current";
+      }
   } else {
     heat.total = square * kTenth * (1.0 + dc_heat(kappa, kTenth, kFrequency));
     heat.basis = "safe bound I2 (m + n) 0.1 s";
@@ -154,7 +162,8 @@ Heat greatest_heat(const Device& device, double current, double kappa) {
 
 double least_heat(const Device& device, double current) noexcept {
   const double time = device.overcurrent.earliest.time_at(current);
-  return std::isinf(time) ? 0.0 : current * current * time;
+  // "At once" is drawn at kImmediately but assures nothing.
+  return std::isinf(time) || time <= models::kImmediately ? 0.0 : current * current * time;
 }
 
 std::vector<double> step_currents(const models::Curve& curve) {

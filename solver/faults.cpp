@@ -127,9 +127,13 @@ FaultCurrent fault_current(const Network& network, const Source& source, const C
     for (const double angle : angles) {
       const Solved solved =
           solve(loops, with_source(rest, std::polar(term.ohms, angle)), result.volts, most);
-      // Of equal currents the later, more inductive one is reported (its X/R belongs to the peak).
-      constexpr double kEqual = 1 - 1e-9;
-      if (!first && (most ? solved.amps <= result.amps * kEqual : solved.amps >= result.amps)) continue;
+      // Equal choices: the first in the order of lines, and of its two angles the inductive one, whose
+      // X/R belongs to the peak.
+      constexpr double kEqual = 1e-9;
+      const bool better = most ? solved.amps > result.amps * (1 + kEqual) : solved.amps < result.amps * (1 - kEqual);
+      const bool same_but_inductive =
+          most && loops.phases == result.phases && solved.amps >= result.amps * (1 - kEqual);
+      if (!first && !better && !same_but_inductive) continue;
       first = false;
       result.amps = solved.amps;
       result.ohms = std::abs(solved.loop);

@@ -134,9 +134,17 @@ void add_loops(std::vector<Parameter>& all, const std::string& address, std::siz
     all.push_back(number(fmt::format("{}.{}.{}", address, maximum ? "maximum" : "minimum", named.key), unit,
                          [index, maximum, member = named.member, unit](Network& network, double v) {
                            models::Bound& bound = maximum ? network.sources[index].maximum : network.sources[index].minimum;
-                           Loop& loop = bound.*member;
-                           loop.ohms = unit == Quantity::impedance ? v : 0;
-                           loop.amps = unit == Quantity::current ? v : 0;
+                           auto put = [&](Loop& loop) {
+                             loop.ohms = unit == Quantity::impedance ? v : 0;
+                             loop.amps = unit == Quantity::current ? v : 0;
+                           };
+                           put(bound.*member);
+                           // In TN-C-S both loops return through one conductor: what holds for one holds for the other.
+                           const bool combined = network.sources[index].earthing == models::Earthing::TN_C_S;
+                           const bool both = bound.line_neutral.given() && bound.line_earth.given();
+                           if (!combined || !both || member == &models::Bound::three_phase) return;
+                           put(bound.line_neutral);
+                           put(bound.line_earth);
                          }));
   }
 }
@@ -187,6 +195,8 @@ std::vector<Parameter> parameters_of(const Network& network, const VaryRequest& 
   for (std::size_t i = 0; i < network.circuits.size(); ++i)
     if (models::address(network, network.circuits[i]) == element) {
       all = run_parameters(element, request, [i](Network& n) -> Circuit& { return n.circuits[i]; }, true);
+      // A ring reaches as far as its last spur.
+      for (const models::Spur& spur : network.circuits[i].spurs) all.front().least = std::max(all.front().least, spur.at);
       all.push_back(number(element + ".load", Quantity::current, [i](Network& n, double v) {
         n.circuits[i].load.value = v;
         n.circuits[i].load.given = true;

@@ -23,13 +23,18 @@ struct Run {
   models::Sourced<double>* length = nullptr;
   Cable* cable = nullptr;
   bool submain = false;
+  double shortest = 0;  ///< a ring reaches as far as its last spur [m]
 };
 
 std::optional<Run> find_run(Network& network, const std::string& address) {
   for (models::Submain& submain : network.submains)
-    if (submain.name == address) return Run{&submain.length, &submain.cable, true};
+    if (submain.name == address) return Run{&submain.length, &submain.cable, true, 0};
   for (models::Circuit& circuit : network.circuits)
-    if (models::address(network, circuit) == address) return Run{&circuit.length, &circuit.cable, false};
+    if (models::address(network, circuit) == address) {
+      Run run{&circuit.length, &circuit.cable, false, 0};
+      for (const models::Spur& spur : circuit.spurs) run.shortest = std::max(run.shortest, spur.at);
+      return run;
+    }
   return std::nullopt;
 }
 
@@ -88,13 +93,14 @@ class Mender {
       run_.length->value = length;
       return met();
     };
-    // Downwards from the given length to a tenth of a metre; the check need not be monotone.
-    constexpr double kShortest = 0.1;
+    // Downwards from the given length to a metre, below which no run is laid; the check need not be
+    // monotone.
+    const double shortest = std::max(1.0, run_.shortest);
     constexpr int kSamples = 48;
     double bad = given;
     double good = 0;
-    for (int i = 1; i <= kSamples && given > kShortest; ++i) {
-      const double length = given * std::pow(kShortest / given, static_cast<double>(i) / kSamples);
+    for (int i = 1; i <= kSamples && given > shortest; ++i) {
+      const double length = given * std::pow(shortest / given, static_cast<double>(i) / kSamples);
       if (at(length)) {
         good = length;
         break;
@@ -108,7 +114,7 @@ class Mender {
       }
       // Down to the decimetre, as one would write it.
       const double rounded = std::floor(good * 10 + 1e-6) / 10;
-      if (rounded >= kShortest && at(rounded)) {
+      if (rounded >= shortest && at(rounded)) {
         Remedy remedy;
         remedy.key = subject_ + ".length";
         remedy.value = rounded;

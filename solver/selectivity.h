@@ -26,6 +26,8 @@ struct PairVerdict {
 /// earliest time (curves), or the downstream greatest let-through is not above the upstream least
 /// pre-arcing I2t (energy). The limit is the greatest current up to which one of them holds for all
 /// currents from the downstream device's first sure operation on.
+/// Two fuses of one family whose gates at 0.1 s and I2t limits do not overlap are selective as the
+/// standard states (IEC 60269, gG at 1.6 : 1).
 /// @param available  greatest current at the downstream device [A]
 /// @param kappa      peak factor there, for the let-through bound
 /// Accuracy of the limit: 1e-9 relative.

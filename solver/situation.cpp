@@ -93,6 +93,8 @@ void fill_tails(Situation& s, const StateSolution& solution, int index) {
   s.in_parallel = source.tails.in_parallel;
   s.use = models::Use::distribution;
   s.conductors = solution.tree.conductors[at(source.board)];
+  // A TT installation's protective conductor starts at its electrode, beyond the tails.
+  if (source.earthing == models::Earthing::TT) s.conductors.remove(Conductor::PE);
   if (source.device.present()) s.path.push_back({&source.device, source.name, source.at, -1});
   s.far_min = currents(network, source, solution.minimum.boards[at(source.board)], s.conductors, Condition::minimum);
   s.origin_max = currents(network, source, ConductorMatrix::Zero(), s.conductors, Condition::maximum);

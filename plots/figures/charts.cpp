@@ -240,7 +240,6 @@ std::optional<std::string> draw_coordination(const PathChart& chart, const std::
   Axis y{kLeastTime, kMostTime, area.y, top, true};
 
   std::string script = area_at(area);
-  script += "set style textbox opaque noborder margins 0.6,0.6 fillcolor rgb '#ffffff'\n";
   script += fmt::format("set logscale xy\nset xrange [{}:{}]\nset yrange [{}:{}]\nunset key\n", number(x.least),
                         number(x.most), number(kLeastTime), number(kMostTime));
   const double per_decade = area.w / std::log10(x.most / x.least);
@@ -281,7 +280,7 @@ std::optional<std::string> draw_coordination(const PathChart& chart, const std::
     lines.push_back({latest});
     if (!earliest.empty()) lines.push_back({earliest});
     const bool bold = s.filled;
-    LabelWish wish{text_width(s.label, kSmallFont) * (bold ? 1.08 : 1.0) + 4, kRow, {}};
+    LabelWish wish{text_width(s.label, kSmallFont) * (bold ? 1.12 : 1.0) + 4, kRow, {}};
     // Names stand best where curves are apart: high up on a band, near the 5 s end of a damage line.
     for (const Spot& spot : along(latest, s.damage ? 20 : 24)) {
       if (!s.damage || spot.y >= y.at(kDamageNameFrom)) wish.anchors.push_back(spot);
@@ -317,8 +316,7 @@ std::optional<std::string> draw_coordination(const PathChart& chart, const std::
   const std::vector<PlacedLabel> placed = place_labels(wishes, frame, {}, lines);
   for (std::size_t i = 0; i < placed.size(); ++i) {
     script += leader_of(placed[i]);
-    script += label_at(shapes[i].label, placed[i].rect.x + 2, placed[i].rect.y + placed[i].rect.h / 2, "left", kSmallFont,
-                       shapes[i].filled, true);
+    script += label_in(shapes[i].label, placed[i].rect, kSmallFont, shapes[i].filled);
   }
   return draw(script + plot + '\n', path);
 }

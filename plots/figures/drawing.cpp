@@ -136,11 +136,19 @@ std::string tick_text(std::string_view text) {
 
 std::string number(double value) { return fmt::format("{:.9g}", value); }
 
-std::string label_at(std::string_view text, double x, double y, const char* justify, double font, bool bold,
-                     bool opaque) {
-  return fmt::format("set label {} at screen {}, screen {} {} noenhanced font '{},{}' textcolor rgb '#000000' front{}\n",
+std::string label_at(std::string_view text, double x, double y, const char* justify, double font, bool bold) {
+  return fmt::format("set label {} at screen {}, screen {} {} noenhanced font '{},{}' textcolor rgb '#000000' front\n",
                      gnuplot_text(text), number(x / kSheetWidth), number(y / kSheetHeight), justify,
-                     bold ? "DejaVu Sans Bold" : "", number(font), opaque ? " boxed" : "");
+                     bold ? "DejaVu Sans Bold" : "", number(font));
+}
+
+std::string label_in(std::string_view text, const Rect& rect, double font, bool bold) {
+  // gnuplot's own text boxes write the text twice into an SVG.
+  return fmt::format("set object rectangle from screen {}, screen {} to screen {}, screen {} front fillstyle solid 1 noborder "
+                     "fillcolor rgb '#ffffff'\n",
+                     number(rect.x / kSheetWidth), number(rect.y / kSheetHeight), number((rect.x + rect.w) / kSheetWidth),
+                     number((rect.y + rect.h) / kSheetHeight)) +
+         label_at(text, rect.x + 2, rect.y + rect.h / 2, "left", font, bold);
 }
 
 std::string line_between(Spot a, Spot b, std::string_view style) {

@@ -38,7 +38,9 @@ struct Look {
 
 /// "set label" at a canvas place, vertically centred. `justify`: left, right, center.
 [[nodiscard]] std::string label_at(std::string_view text, double x, double y, const char* justify, double font,
-                                   bool bold = false, bool opaque = false);
+                                   bool bold = false);
+/// The same in a white rectangle that keeps what lies behind from crossing it.
+[[nodiscard]] std::string label_in(std::string_view text, const Rect& rect, double font, bool bold);
 /// A straight line between canvas places. `style`: gnuplot line properties.
 [[nodiscard]] std::string line_between(Spot a, Spot b, std::string_view style);
 /// Leader from a label to its anchor, "" where it needs none.

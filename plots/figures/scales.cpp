@@ -215,7 +215,7 @@ double text_width(std::string_view text, double font) noexcept {
     else if (c >= 'A' && c <= 'Z') em += 0.72;
     else em += 0.63;
   }
-  return em * font;
+  return 0.94 * em * font;
 }
 
 std::vector<models::CurvePoint> cut_curve(const models::Curve& curve, double from, double to, double least_time,

@@ -208,7 +208,6 @@ std::optional<std::string> draw_sweep(const Sweep& sweep, const std::string& pat
   const Axis y{low, high, area.y, top, false};
 
   std::string script = area_at(area);
-  script += "set style textbox opaque noborder margins 0.6,0.6 fillcolor rgb '#ffffff'\n";
   script += fmt::format("set xrange [{}:{}]\nset yrange [{}:{}]\nunset key\n", number(x.least), number(x.most), number(low),
                         number(high));
   std::string ticks;
@@ -282,7 +281,7 @@ std::optional<std::string> draw_sweep(const Sweep& sweep, const std::string& pat
   const std::vector<PlacedLabel> placed = place_labels(wishes, frame, {}, lines);
   for (std::size_t i = 0; i < placed.size(); ++i) {
     script += leader_of(placed[i]);
-    script += label_at(texts[i], placed[i].rect.x + 2, placed[i].rect.y + placed[i].rect.h / 2, "left", kSmallFont, false, true);
+    script += label_in(texts[i], placed[i].rect, kSmallFont, false);
   }
   script += label_at(sweep.key, area.x + area.w / 2, area.y - (crowded ? 66 : 44), "center", kFont);
   script += fmt::format("set label 'margin to the limit' at screen {}, screen {} center rotate by 90 noenhanced font ',{}'\n",

@@ -17,10 +17,12 @@ using models::Key;
 using models::Quantity;
 using models::ValueForm;
 
-std::string commas(std::string_view blanks) {
+// Choices stand between bars, or blanks where none of them holds one.
+std::string commas(std::string_view choices) {
+  const char separator = choices.find('|') == std::string_view::npos ? ' ' : '|';
   std::string text;
-  for (const char c : blanks) {
-    if (c == ' ') text += ", ";
+  for (const char c : choices) {
+    if (c == separator) text += ", ";
     else text += c;
   }
   return text;
@@ -33,7 +35,7 @@ std::string form_text(const Key& key) {
       return units.empty() ? "number" : fmt::format("value in {}", units);
     }
     case ValueForm::text: return "text";
-    case ValueForm::choice: return "one of " + commas(key.choices);
+    case ValueForm::choice: return (commas(key.choices) == key.choices ? "" : "one of ") + commas(key.choices);
     case ValueForm::flag: return "true or false";
     case ValueForm::number: return "number";
     case ValueForm::device: return "device (see the kind device)";
@@ -51,7 +53,7 @@ std::string form_text(const Key& key) {
 std::string key_text(const Key& key) {
   std::string text(key.help);
   if (!text.empty() && text.back() != '.') text += '.';
-  text += ' ' + form_text(key);
+  text += " [" + form_text(key);
   const bool measured = key.form == ValueForm::quantity || key.form == ValueForm::number;
   if (measured && (key.least != 0 || key.most != 0)) {
     if (std::isfinite(key.most)) {
@@ -67,7 +69,7 @@ std::string key_text(const Key& key) {
   }
   text += key.required ? "; obligatory" : "";
   if (!key.by_default.empty()) text += fmt::format("; default {}", key.by_default);
-  return text + '.';
+  return text + ']';
 }
 
 std::string list_numbers(const std::vector<double>& numbers) {
@@ -75,6 +77,8 @@ std::string list_numbers(const std::vector<double>& numbers) {
   for (const double number : numbers) text += (text.empty() ? "" : ", ") + models::format_number(number);
   return text;
 }
+
+constexpr double kAnySize = 5e-3;  // [m2] beyond any cable: the row has no upper size
 
 std::string sizes_text(const models::CableConstruction& c) {
   std::string text;
@@ -217,8 +221,8 @@ HelpTopic help_rules(const std::vector<models::RuleSet>& rule_sets) {
                                                                      rules.additional_clause)});
     for (const models::AdiabaticRow& row : rules.k) {
       section.entries.push_back(
-          {"k", fmt::format("{} {}, {}, up to {} mm2, {} to {} degC: {} ({}, {})", word(row.material), word(row.place),
-                            row.insulation, models::format_number(row.area_to * 1e6),
+          {"k", fmt::format("{} {}, {}{}, {} to {} degC: {} ({}, {})", word(row.material), word(row.place), row.insulation,
+                            row.area_to < kAnySize ? ", up to " + models::format_number(row.area_to * 1e6) + " mm2" : "",
                             models::format_number(row.initial_degc), models::format_number(row.final_degc),
                             models::format_number(row.k * 1e-6), row.clause, models::word(row.confidence))});
     }

@@ -74,7 +74,7 @@ std::string step_line(const Network& network, const solver::Step& step, int widt
 
 std::string numbers_line(const Finding& f) {
   if (std::isnan(f.value) && std::isnan(f.limit)) return "";
-  std::string line = "found " + value_text(f.value, f.unit);
+  std::string line = "found " + (std::isnan(f.value) ? "none" : value_text(f.value, f.unit));
   if (!std::isnan(f.limit)) line += ", limit " + value_text(f.limit, f.unit);
   const std::string margin = margin_text(f.margin);
   if (!margin.empty()) line += ", margin " + margin;
@@ -90,7 +90,8 @@ std::string finding_block(const Network& network, const Finding& f, const TextSt
   if (!f.upstream.empty()) title += " below " + f.upstream;
   std::string out = fmt::format("{} {}  {}", verdict_text(style, f.verdict, 9), ink(style, Ink::heading, title), f.check);
   const std::string place = place_text(network, f.at);
-  if (!place.empty()) out += "  (" + place + ")";
+  const int used = 10 + display_width(title) + 2 + display_width(f.check) + 4 + display_width(place);
+  if (!place.empty()) out += (used <= style.width ? std::string("  (") : '\n' + in + '(') + place + ')';
   out += '\n';
   if (!f.summary.empty()) out += wrap(f.summary, style.width, in);
   const std::string numbers = numbers_line(f);
@@ -286,6 +287,13 @@ std::string check_report(const Network& network, const std::vector<Finding>& fin
     out += section(style, verdict == Verdict::fails ? "What fails" : "What is undecided, and what would decide it");
     for (const Finding& f : findings) {
       if (f.verdict == verdict) out += finding_block(network, f, style);
+    }
+  }
+  const auto reported = [](const Finding& f) { return f.verdict == Verdict::noted && f.upstream.empty(); };
+  if (!style.every_step && std::any_of(findings.begin(), findings.end(), reported)) {
+    out += section(style, "What is noted, not demanded");
+    for (const Finding& f : findings) {
+      if (reported(f)) out += finding_block(network, f, style);
     }
   }
   if (style.every_step && count(Verdict::meets) + count(Verdict::noted) > 0) {

@@ -151,11 +151,11 @@ std::string sweep_report(const models::Network& network, const Sweep& sweep, con
   std::string out;
   if (!network.title.empty()) out += ink(style, Ink::heading, network.title) + '\n';
   if (sweep.points.empty()) return out + "No value of " + sweep.key + " was tried.\n";
-  out += fmt::format("{} from {} to {}, {} values; rules {}", sweep.key, point_text(sweep, sweep.points.front()),
-                     point_text(sweep, sweep.points.back()), sweep.points.size(), network.rules_name);
-  if (!style.date.empty()) out += "; calculated " + style.date;
-  if (!style.program.empty()) out += " by " + style.program;
-  out += "\n\n";
+  std::string what = fmt::format("{} from {} to {}, {} values; rules {}", sweep.key, point_text(sweep, sweep.points.front()),
+                                 point_text(sweep, sweep.points.back()), sweep.points.size(), network.rules_name);
+  if (!style.date.empty()) what += "; calculated " + style.date;
+  if (!style.program.empty()) what += " by " + style.program;
+  out += wrap(what, style.width) + '\n';
 
   const auto tracks = tracks_of(sweep);
   out += ink(style, Ink::heading, "Where a verdict flips") + '\n';

@@ -21,6 +21,8 @@ std::string current_text(const FaultRow* row) {
   return row->known ? value_text(row->current, Quantity::current) : "not known";
 }
 
+std::string ratio_text(double x_over_r) { return std::isfinite(x_over_r) ? fmt::format("{:.2f}", x_over_r) : "-"; }
+
 // The same fault at the same node in one state: the two conditions side by side.
 struct Pair {
   const FaultRow* maximum = nullptr;
@@ -37,9 +39,9 @@ std::string faults_of_state(const std::string& state, const std::vector<FaultRow
     Pair& pair = at->second[row.fault];
     (row.condition == Condition::maximum ? pair.maximum : pair.minimum) = &row;
   }
-  Table table({{"\nnode", Align::left, 14}, {"\nfault", Align::left, 12}, {"maximum\ncurrent", Align::right},
+  Table table({{"\nnode", Align::left, 12}, {"\nfault", Align::left, 12}, {"maximum\ncurrent", Align::right},
                {"\npeak", Align::right}, {"\nX/R", Align::right}, {"\nbetween", Align::left, 8},
-               {"minimum\ncurrent", Align::right}, {"\nloop", Align::right}, {"\nX/R", Align::right},
+               {"minimum\ncurrent", Align::right}, {"\nloop ohm", Align::right}, {"\nX/R", Align::right},
                {"\nbetween", Align::left, 8}});
   std::string needs;
   for (const std::string& node : nodes) {
@@ -50,10 +52,10 @@ std::string faults_of_state(const std::string& state, const std::vector<FaultRow
       const bool most_known = most != nullptr && most->known;
       const bool least_known = least != nullptr && least->known;
       table.add({first ? node : "", word(fault), current_text(most),
-                 most_known ? value_text(most->peak, Quantity::current) : "",
-                 most_known ? cell_text(most->x_over_r, 3) : "", most != nullptr ? most->phases : "",
-                 current_text(least), least_known ? value_text(least->loop_ohms, Quantity::impedance) : "",
-                 least_known ? cell_text(least->x_over_r, 3) : "", least != nullptr ? least->phases : ""});
+                 most_known ? value_text(most->peak, Quantity::current, 3) : "",
+                 most_known ? ratio_text(most->x_over_r) : "", most != nullptr ? most->phases : "",
+                 current_text(least), least_known ? cell_text(least->loop_ohms) : "",
+                 least_known ? ratio_text(least->x_over_r) : "", least != nullptr ? least->phases : ""});
       for (const FaultRow* row : {most, least}) {
         if (row != nullptr && !row->known && !row->needs.empty()) {
           needs += wrap(fmt::format("{}, {} {}: needs {}", node, word(row->condition), word(fault), row->needs),
@@ -63,16 +65,16 @@ std::string faults_of_state(const std::string& state, const std::vector<FaultRow
       first = false;
     }
   }
-  return ink(style, Ink::heading, "State " + state) + '\n' + table.text(style.width, 2) + needs + '\n';
+  return ink(style, Ink::heading, "State " + state) + '\n' + table.text(style.width) + needs + '\n';
 }
 
 std::string title_line(const models::Network& network, const TextStyle& style, const std::string& what) {
   std::string out;
   if (!network.title.empty()) out += ink(style, Ink::heading, network.title) + '\n';
-  out += fmt::format("{}; rules {}", what, network.rules_name);
-  if (!style.date.empty()) out += "; calculated " + style.date;
-  if (!style.program.empty()) out += " by " + style.program;
-  return out + "\n\n";
+  std::string line = fmt::format("{}; rules {}", what, network.rules_name);
+  if (!style.date.empty()) line += "; calculated " + style.date;
+  if (!style.program.empty()) line += " by " + style.program;
+  return out + wrap(line, style.width) + '\n';
 }
 
 }  // namespace

@@ -2,6 +2,7 @@
 // The latest time at which a line-earth fault at the far end is disconnected, against the rule set.
 #include <fmt/format.h>
 
+#include <algorithm>
 #include <cmath>
 
 #include "solver/checks/check.h"
@@ -68,6 +69,9 @@ std::vector<Finding> judge(const Situation& s) {
   if (std::isnan(finding.value)) finding.reason = "no device is sure to operate at this current";
   finding.verdict = cleared.time <= limit.seconds ? Verdict::meets : Verdict::fails;
   finding.margin = std::isfinite(cleared.needed) ? current.amps / cleared.needed - 1.0 : -1.0;
+  // A residual element needs so little current that the time is what is left to spare.
+  if (cleared.residual && finding.verdict == Verdict::meets)
+    finding.margin = std::min(finding.margin, 1.0 - cleared.time / limit.seconds);
   if (finding.verdict == Verdict::fails && !cleared.residual && !device.interpolated.empty() &&
       device.interpolated.time_at(current.amps) <= limit.seconds)
     lack(finding, "time-current points of the device of " + cleared.by->address,

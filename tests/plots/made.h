@@ -1,0 +1,25 @@
+// SPDX-License-Identifier: Apache-2.0
+/// @file
+/// A small network and results made by hand, so that what is printed can be foreseen.
+#pragma once
+
+#include <vector>
+
+#include "models/network.h"
+#include "solver/results.h"
+
+namespace sunder::test {
+
+/// Board "intake" fed by "grid", submain "S1" to board "workshop", circuit "workshop/W2".
+[[nodiscard]] models::Network small_network();
+
+/// One finding of each verdict: fails, undecided, noted (a pair), meets.
+[[nodiscard]] std::vector<solver::Finding> findings();
+
+/// A fuse above a breaker with a residual part, two damage lines, four currents.
+[[nodiscard]] solver::PathChart path_chart();
+
+/// One flip at 83.2 m, one undecided stretch.
+[[nodiscard]] solver::Sweep sweep();
+
+}  // namespace sunder::test

@@ -1,0 +1,143 @@
+// SPDX-License-Identifier: Apache-2.0
+#include "tests/published/answers.h"
+
+#include <catch2/catch.hpp>
+#include <limits>
+#include <nlohmann/json.hpp>
+
+#include "tests/support/program.h"
+
+namespace sunder::published {
+namespace {
+
+using Json = nlohmann::json;
+
+// Exit status 1 only says that a check is not met.
+Json answer(const std::string& netlist, std::vector<std::string> arguments) {
+  const support::Folder folder;
+  folder.write("net.toml", netlist);
+  arguments.insert(std::next(arguments.begin()), "net.toml");
+  arguments.emplace_back("--json");
+  const support::Outcome outcome = support::run_sunder(arguments, folder);
+  INFO(netlist);
+  INFO(outcome.out.substr(0, 2000));
+  INFO(outcome.err.substr(0, 2000));
+  REQUIRE((outcome.status == 0 || outcome.status == 1));
+  Json json = Json::parse(outcome.out, nullptr, false);
+  REQUIRE_FALSE(json.is_discarded());
+  return json;
+}
+
+double number(const Json& json) {
+  return json.is_number() ? json.get<double>() : std::numeric_limits<double>::quiet_NaN();
+}
+
+std::vector<FindingAnswer> findings_of(const Json& list) {
+  std::vector<FindingAnswer> findings;
+  for (const Json& item : list) {
+    findings.push_back({item.at("check"),
+                        item.at("subject"),
+                        item.at("verdict"),
+                        item.at("confidence"),
+                        item.value("upstream", ""),
+                        item.value("selectivity", ""),
+                        number(item.at("value")),
+                        number(item.at("limit"))});
+  }
+  return findings;
+}
+
+SweepAnswer sweep_of(const Json& json) {
+  SweepAnswer sweep;
+  for (const Json& item : json.at("flips")) {
+    sweep.flips.push_back({item.at("check"),
+                           item.at("subject"),
+                           item.at("before"),
+                           item.at("after"),
+                           number(item.at("at"))});
+  }
+  for (const Json& item : json.at("points"))
+    sweep.points.push_back({number(item.at("value")), findings_of(item.at("findings"))});
+  return sweep;
+}
+
+}  // namespace
+
+std::vector<FaultAnswer> faults(const std::string& netlist) {
+  std::vector<FaultAnswer> rows;
+  const Json json = answer(netlist, {"faults"});
+  for (const Json& item : json.at("results")) {
+    rows.push_back({item.at("condition"),
+                    item.at("node"),
+                    item.at("fault"),
+                    number(item.at("current_A")),
+                    number(item.at("peak_A")),
+                    number(item.at("loop_ohm")),
+                    number(item.at("x_over_r")),
+                    number(item.at("driving_V"))});
+  }
+  return rows;
+}
+
+std::vector<FindingAnswer> check(const std::string& netlist) {
+  return findings_of(answer(netlist, {"check"}).at("findings"));
+}
+
+double drop(const std::string& netlist, const std::string& address) {
+  const Json json = answer(netlist, {"schedule"});
+  for (const Json& item : json.at("rows"))
+    if (item.at("address") == address) return number(item.at("drop_percent")) / 100;
+  FAIL("no row " << address);
+  return 0;
+}
+
+SweepAnswer vary(const std::string& netlist,
+                 const std::string& key,
+                 const std::string& from,
+                 const std::string& to) {
+  return sweep_of(answer(netlist, {"vary", "--set", key, "--from", from, "--to", to}));
+}
+
+SweepAnswer vary_values(const std::string& netlist,
+                        const std::string& key,
+                        const std::string& values) {
+  return sweep_of(answer(netlist, {"vary", "--set", key, "--values", values}));
+}
+
+FaultAnswer at(const std::vector<FaultAnswer>& rows,
+               const std::string& condition,
+               const std::string& node,
+               const std::string& fault) {
+  for (const FaultAnswer& row : rows)
+    if (row.condition == condition && row.node == node && row.fault == fault) return row;
+  FAIL("no " << condition << " " << fault << " current at " << node);
+  return {};
+}
+
+FindingAnswer finding(const std::vector<FindingAnswer>& findings,
+                      const std::string& check,
+                      const std::string& subject) {
+  for (const FindingAnswer& item : findings)
+    if (item.check == check && item.subject == subject) return item;
+  FAIL("no finding on " << check << " of " << subject);
+  return {};
+}
+
+double flip(const SweepAnswer& sweep, const std::string& check, const std::string& subject) {
+  double where = std::numeric_limits<double>::quiet_NaN();
+  int found = 0;
+  for (const FlipAnswer& item : sweep.flips) {
+    if (item.check != check || item.subject != subject) continue;
+    if (item.before != "meets" && item.after != "meets") continue;
+    where = item.at;
+    ++found;
+  }
+  INFO("flips of " << check << " of " << subject << " to or from meets: " << found);
+  REQUIRE(found == 1);
+  for (const PointAnswer& point : sweep.points)
+    for (const FindingAnswer& item : point.findings)
+      if (item.check == check && item.subject == subject) REQUIRE(item.confidence != "low");
+  return where;
+}
+
+}  // namespace sunder::published
