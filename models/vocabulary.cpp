@@ -239,7 +239,7 @@ Kind submain() {
            entry("phases", ValueForm::phases, "Its live conductors.").unless_given("all that its board has"),
            entry("device", ValueForm::device, "The device at its start.").need(),
            entry("cable", ValueForm::cable, "Construction and size.").need(),
-           entry("cpc", ValueForm::cpc, "Where its protective conductor is.").unless_given("a spare core"),
+           entry("cpc", ValueForm::cpc, "Where its protective conductor is; \"none\" towards a board with an electrode of its own.").unless_given("a spare core"),
            amount("length", Quantity::length, "Its length.").need().above(0, 100000).usual(0.5, 1000),
            number("in_parallel", "Equal cables in parallel.").from(1, 20).unless_given("1"),
            installed(),

@@ -93,7 +93,7 @@ bool split_cable_text(Context& context, const Value& value, const std::string& w
 
 // The parts of a cpc text, joined by '+'.
 bool read_cpc(Context& context, const Value& value, const std::string& what, const CableConstruction& construction,
-              CpcChoice& choice) {
+              bool may_lack, CpcChoice& choice) {
   if (value.form != Value::Form::text) {
     context.complaints.error(value.at, value.width,
                              fmt::format("cpc of {} is {}; a text is expected", what, word(value.form)),
@@ -101,6 +101,12 @@ bool read_cpc(Context& context, const Value& value, const std::string& what, con
     return false;
   }
   const std::string_view text = value.text;
+  if (trimmed(text) == "none") {
+    if (may_lack) return true;
+    context.complaints.error(value.at, value.width, fmt::format("{} cannot do without a cpc", what),
+                             "\"none\" is for a submain to a board that an electrode of its own earths");
+    return false;
+  }
   std::size_t start = 0;
   while (start <= text.size()) {
     const std::size_t end = std::min(text.find('+', start), text.size());
@@ -299,10 +305,11 @@ bool read_cable(Context& context, const PendingRun& run, models::ConductorSet co
     return false;
   }
   const bool neutral = conductors.has(models::Conductor::N);
+  const bool may_lack = !tails && !conductors.has(models::Conductor::PE);
   const int n_loaded = conductors.lines() + (neutral ? 1 : 0);
   CpcChoice choice;
   if (run.cpc != nullptr) {
-    if (!read_cpc(context, *run.cpc, what, *construction, choice)) return false;
+    if (!read_cpc(context, *run.cpc, what, *construction, may_lack, choice)) return false;
   } else if (!default_cpc(context, *construction, value, n_loaded, text.area, what, subject,
                           tails && text.cpc_area == 0, at, choice)) {
     return false;

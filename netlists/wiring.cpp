@@ -226,12 +226,20 @@ class PhaseWalk {
       submain.conductors = has;
       submain.conductors.add(Conductor::PE);
     }
+    if (run.cpc != nullptr && trimmed(run.cpc->text) == "none") {
+      submain.conductors.remove(Conductor::PE);
+      context_.assume(submain.name, "no protective conductor: nothing along it is taken to need one (Class II)",
+                      run.cpc->at);
+    }
     // where the conductors are not known, at least the name, size and cpc are read
     const ConductorSet carried = submain.conductors.lines() > 0 ? submain.conductors : ConductorSet{Conductor::L1};
     if (read_cable(context_, run, carried, what, submain.name, false, submain.at, submain.cable)) assume_close(submain);
     if (submain.to >= 0 && submain.from >= 0 && reached_[at(submain.from)]) {
       // after an error pass on all that could be meant, so that one slip is one complaint
-      reach(submain.to, sound ? submain.conductors : has);
+      // (the phases; where PE begins and ends is the topology's business)
+      ConductorSet phases = sound ? submain.conductors : has;
+      phases.add(Conductor::PE);
+      reach(submain.to, phases);
     }
   }
 

@@ -20,6 +20,8 @@ using models::Network;
 constexpr double kFlipAccuracy = 1e-6;         // relative, of the parameter
 constexpr double kBreakpointAccuracy = 1e-10;  // relative: either side of a step must be the right one
 
+constexpr int kMostTurns = 16;  // of one verdict between two neighbouring values
+
 using ByKey = std::unordered_map<std::string, Finding>;
 
 ByKey by_key(const std::vector<Finding>& findings) {
@@ -71,14 +73,14 @@ class Track {
     }
   }
 
-  // The value at which the verdict leaves that of a, between a and b.
-  double flip(double a, double b) {
+  // The last value with the verdict of a and the first with another one, between a and b.
+  std::pair<double, double> flip(double a, double b) {
     const Verdict before = at(a).verdict;
     while (b - a > kFlipAccuracy * 0.5 * std::max(std::abs(a), std::abs(b))) {
       const double middle = 0.5 * (a + b);
       (at(middle).verdict == before ? a : b) = middle;
     }
-    return 0.5 * (a + b);
+    return {a, b};
   }
 
  private:
@@ -119,13 +121,19 @@ void follow(Retrial& retrial, const Parameter& parameter, const std::vector<doub
   std::sort(values.begin(), values.end());
   double open = track.at(values.front()).verdict == Verdict::undecided ? values.front() : kNone;
   for (std::size_t i = 1; i < values.size(); ++i) {
-    const Finding before = track.at(values[i - 1]);
-    const Finding after = track.at(values[i]);
-    if (before.verdict == after.verdict || !judged(before.verdict) || !judged(after.verdict)) continue;
-    const double where = track.flip(values[i - 1], values[i]);
-    sweep.flips.push_back({before.check, before.subject, before.verdict, after.verdict, where, after.state});
-    if (before.verdict == Verdict::undecided && !std::isnan(open)) add_stretch(sweep, before, open, where);
-    open = after.verdict == Verdict::undecided ? where : kNone;
+    // One verdict may give way to another and that to a third before the next value.
+    double from = values[i - 1];
+    for (int turn = 0; turn < kMostTurns && track.at(from).verdict != track.at(values[i]).verdict; ++turn) {
+      const Finding before = track.at(from);
+      if (!judged(before.verdict) || !judged(track.at(values[i]).verdict)) break;
+      const auto [last, first_after] = track.flip(from, values[i]);
+      const Finding after = track.at(first_after);
+      const double where = 0.5 * (last + first_after);
+      sweep.flips.push_back({before.check, before.subject, before.verdict, after.verdict, where, after.state});
+      if (before.verdict == Verdict::undecided && !std::isnan(open)) add_stretch(sweep, before, open, where);
+      open = after.verdict == Verdict::undecided ? where : kNone;
+      from = first_after;
+    }
   }
   if (!std::isnan(open)) add_stretch(sweep, track.at(values.back()), open, values.back());
 }

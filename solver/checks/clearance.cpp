@@ -97,7 +97,8 @@ std::vector<Finding> judge(const Situation& s) {
       "{} flows at the far end ({}): {} operates {}; {} demanded", say(amps, Quantity::current), word(fault),
       by->device->text, std::isfinite(time) ? "within " + say(time, Quantity::time) : std::string("at no sure time"),
       say(finding.limit, Quantity::time));
-  watch_steps(finding, amps, step_currents(by->device->overcurrent.latest));
+  for (const models::Curve* edge : {&by->device->overcurrent.latest, &by->device->overcurrent.earliest})
+    watch_steps(finding, amps, step_currents(*edge));
   weigh_confidence(finding);
   return {finding};
 }

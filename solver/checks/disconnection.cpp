@@ -14,7 +14,12 @@ using models::Quantity;
 
 constexpr const char* kName = "disconnection time";
 
-bool applies(const Situation& s) { return s.kind == SubjectKind::circuit || s.kind == SubjectKind::submain; }
+// A submain laid without protective conductor has nothing along it that could become live (an
+// assumption that the reader lists).
+bool applies(const Situation& s) {
+  return s.kind == SubjectKind::circuit ||
+         (s.kind == SubjectKind::submain && s.submain->conductors.has(models::Conductor::PE));
+}
 
 void say_working(Finding& finding, const Situation& s, const FaultCurrent& current, const Disconnection& cleared,
                  const TimeLimit& limit) {

@@ -178,7 +178,8 @@ std::vector<Finding> judge(const Situation& s) {
   worst.verdict = Verdict::meets;
   bool any = !base.needs.empty();
   if (any) worst.verdict = Verdict::undecided;
-  const std::vector<double> steps = step_currents(by->device->overcurrent.latest);
+  std::vector<double> steps = step_currents(by->device->overcurrent.latest);
+  for (const double step : step_currents(by->device->overcurrent.earliest)) steps.push_back(step);
   std::vector<double> watched;
   for (const Part& part : parts) {
     Finding finding = base;

@@ -44,7 +44,7 @@ TEST_CASE("On either side of a flip the netlist checks as the sweep says") {
     request.key = address + ".length";
     request.from = metres(0.5);
     request.to = metres(50 + *rc::gen::inRange(0, 400));
-    request.steps = 12;
+    request.steps = *rc::gen::inRange(2, 13);
     const auto result = solver::vary(laws::network_of(site), request, {});
     RC_ASSERT(std::holds_alternative<solver::Sweep>(result));
     for (const solver::Flip& flip : std::get<solver::Sweep>(result).flips) {

@@ -96,3 +96,38 @@ resistance = "60 ohm"
         "are solved in a later edition");
   CHECK(troubles[0].second.line > 0);
 }
+
+TEST_CASE("An outbuilding fed without protective conductor has its own earth", "[topology]") {
+  const models::Network network = read(supply("TT") + R"([board.out]
+[submain.S1]
+from = "main"
+to = "out"
+cpc = "none"
+)" + kCable + R"([electrode.E1]
+board = "main"
+resistance = "40 ohm"
+[electrode.E2]
+board = "out"
+resistance = "60 ohm"
+)");
+  REQUIRE(messages(network).empty());
+  const solver::StateTree tree = solver::state_tree(network, 0);
+  CHECK(tree.electrode[0] == 0);
+  CHECK(tree.electrode[1] == 1);
+  // 0.95 x 230 V over the declared 0.35 ohm, 10 m of 10 mm2 (1.83 mohm/m, IEC 60228) at 70 degC and RA.
+  const double ohms = 0.35 * 0.9 + 10 * 1.83e-3 * 1.2 + 60;
+  for (const solver::FaultRow& row : solver::solve_faults(network))
+    if (row.node == "out" && row.fault == solver::Fault::line_earth && row.condition == solver::Condition::minimum)
+      CHECK_THAT(row.current, Catch::Matchers::WithinRel(0.95 * 230 / ohms, 1e-4));
+}
+
+TEST_CASE("A circuit cannot do without a protective conductor", "[topology]") {
+  const netlists::Reading reading = netlists::read_network_text(
+      supply() + R"([circuit.main]
+C1 = { phases = "L1", device = "B 6 A 6 kA", cable = "singles-pvc-cu 1.5 mm2", cpc = "none", length = "5 m" }
+)",
+      "test.toml");
+  CHECK_FALSE(reading.network.has_value());
+  REQUIRE(reading.diagnostics.size() >= 1);
+  CHECK(reading.diagnostics[0].message == "circuit 'main/C1' cannot do without a cpc");
+}
