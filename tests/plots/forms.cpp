@@ -4,15 +4,15 @@
 
 #include <limits>
 
-#include <nlohmann/json.hpp>
 
 #include "made.h"
 #include "plots/figures/charts.h"
 #include "plots/text/json.h"
+#include "tests/support/json.h"
 #include "plots/text/report.h"
 
 using namespace sunder;
-using Json = nlohmann::json;
+using support::Json;
 
 TEST_CASE("sunder.check/1 has the keys that others build on") {
   const Json json = Json::parse(plots::check_json(test::small_network(), test::findings()));
@@ -38,7 +38,7 @@ TEST_CASE("What never operates or does not exist is null with a reason") {
   CHECK(json["findings"][1]["limit"].is_null());
   findings[0].reason.clear();
   const Json bare = Json::parse(plots::check_json(test::small_network(), findings));
-  CHECK_FALSE(bare["findings"][0]["reason"].get<std::string>().empty());
+  CHECK_FALSE(bare["findings"][0]["reason"].text().empty());
 }
 
 TEST_CASE("Steps carry formula, numbers, result, unit and place") {
@@ -93,7 +93,7 @@ TEST_CASE("Output is valid UTF-8 and JSON whatever bytes a name holds") {
 }
 
 TEST_CASE("The other forms are valid JSON and name themselves") {
-  const auto format = [](const std::string& text) { return Json::parse(text).at("format").get<std::string>(); };
+  const auto format = [](const std::string& text) { return Json::parse(text).at("format").text(); };
   const models::Network network = test::small_network();
   CHECK(format(plots::schedule_json(network, {})) == "sunder.schedule/1");
   CHECK(format(plots::sweep_json(network, test::sweep())) == "sunder.vary/1");

@@ -3,27 +3,20 @@
 
 #include <catch2/catch.hpp>
 
-#include <limits>
-#include <nlohmann/json.hpp>
+#include "tests/support/json.h"
 
 namespace sunder::reference {
 
 std::vector<PrintedCurrent> read_currents(const std::string& json) {
-  const nlohmann::json all = nlohmann::json::parse(json, nullptr, false);
-  if (all.is_discarded()) FAIL("not JSON:\n" << json);
+  const support::Json all = support::Json::parse(json);
+  if (!all.valid()) FAIL("not JSON:\n" << json);
+  REQUIRE(all["format"] == "sunder.faults/1");
   std::vector<PrintedCurrent> rows;
-  const auto number = [](const nlohmann::json& value) {
-    return value.is_null() ? std::numeric_limits<double>::quiet_NaN() : value.get<double>();
-  };
-  try {
-    REQUIRE(all.at("format") == "sunder.faults/1");
-    for (const nlohmann::json& row : all.at("results")) {
-      rows.push_back({row.at("state"), row.at("condition"), row.at("node"), row.at("fault"),
-                      row.at("phases"), number(row.at("current_A")), number(row.at("peak_A")),
-                      number(row.at("x_over_r"))});
-    }
-  } catch (const nlohmann::json::exception& wrong) {
-    FAIL("not of the form sunder.faults/1: " << wrong.what());
+  for (const support::Json& row : all["results"]) {
+    for (const char* key : {"state", "condition", "node", "fault", "phases", "current_A", "peak_A", "x_over_r"})
+      if (!row.contains(key)) FAIL("not of the form sunder.faults/1: a row has no " << key);
+    rows.push_back({row["state"].text(), row["condition"].text(), row["node"].text(), row["fault"].text(),
+                    row["phases"].text(), row["current_A"].number(), row["peak_A"].number(), row["x_over_r"].number()});
   }
   return rows;
 }
