@@ -59,6 +59,7 @@ const char* word(Severity severity) {
 int complain(const Options& options, const std::vector<Diagnostic>& diagnostics) {
   if (options.json) {
     std::vector<plots::Complaint> list;
+    list.reserve(diagnostics.size());
     for (const Diagnostic& d : diagnostics) {
       list.push_back({word(d.severity), d.file, d.line, d.column, d.message, d.source_line, d.hint});
     }
@@ -71,7 +72,7 @@ int complain(const Options& options, const std::vector<Diagnostic>& diagnostics)
     if (d.file.empty()) text = fmt::format("sunder: {}: {}\n{}", word(d.severity), d.message, d.hint.empty() ? "" : "  = " + d.hint + "\n");
     if (!text.empty() && text.back() != '\n') text += '\n';
     fmt::print(stderr, "{}", text);
-    errors += d.severity == Severity::error ? 1U : 0U;
+    errors += d.severity == Severity::error ? d.stands_for : 0U;
   }
   if (!options.net.empty() && errors > 0 && !diagnostics.front().file.empty()) {
     fmt::print(stderr, "{} {}; nothing was calculated\n", errors, errors == 1 ? "error" : "errors");
@@ -127,6 +128,10 @@ std::optional<models::Network> load(const Options& options) {
     std::vector<Diagnostic> all = reading.diagnostics;
     all.insert(all.end(), troubles.begin(), troubles.end());
     complain(options, all);
+    return std::nullopt;
+  }
+  if (const std::string file = plots::same_file(options.output, reading.network->files); !file.empty()) {
+    complain(options, fmt::format("'{}' is read by this netlist; name another file for the output", file));
     return std::nullopt;
   }
   for (const Diagnostic& d : reading.diagnostics) {  // warnings
@@ -348,10 +353,20 @@ int unexpected(const Options& options, const std::string& extra, const CLI::App&
   if (near == wrong) return complain(options, fmt::format("unexpected argument '{}'", extra));  // behind "--"
   std::string hint;
   if (!near.empty()) hint = fmt::format("did you mean '{}'?", near);
+  else if (command && std::filesystem::path(extra).extension() == ".toml") hint = fmt::format("did you mean 'sunder check {}'?", extra);
   else if (command && !names.empty()) hint = "`sunder help` lists the commands";
   else hint = fmt::format("`sunder {}--help` lists the options", where.get_name().empty() || command ? "" : where.get_name() + " ");
   const char* what = extra.front() == '-' && extra.size() > 1 ? "unknown option" : command ? "unknown command" : "unexpected argument";
   return complain(options, fmt::format("{} '{}'", what, wrong), hint);
+}
+
+// The parser's sentences in our words: "--set: 1 required TEXT missing", "--steps: Value 1 not in range 2 to 5".
+std::string plain_complaint(const std::string& sentence) {
+  const std::string option = sentence.substr(0, sentence.find(':'));
+  if (sentence == "NET is required") return "the name of a netlist file is needed";
+  if (sentence.find("required TEXT missing") != std::string::npos) return option + " needs a value";
+  const std::size_t range = sentence.find(" not in range ");
+  return range == std::string::npos ? sentence : option + " takes " + sentence.substr(range + std::string(" not in range ").size());
 }
 
 int run(int argc, char** argv) {
@@ -410,7 +425,7 @@ int run(int argc, char** argv) {
     return app.exit(CLI::CallForHelp());
   } catch (const CLI::ParseError& error) {
     options.json = json;
-    return complain(options, error.what(), "`sunder help` lists the commands, `sunder COMMAND --help` their options");
+    return complain(options, plain_complaint(error.what()), "`sunder help` lists the commands, `sunder COMMAND --help` their options");
   }
   options.json = json;
   options.vary.values = split(options.value_list);

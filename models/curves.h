@@ -57,9 +57,4 @@ struct Band {
 /// Exact on each power-law piece.
 [[nodiscard]] double current_for(const Curve& curve, double time) noexcept;
 
-/// Points against prospective current: greatest let-through I2t [A2s], straight on log-log paper.
-struct LetThroughCurve {
-  std::vector<CurvePoint> points;  ///< current [A], `time` holds I2t [A2s]
-};
-
 }  // namespace sunder::models

@@ -56,10 +56,8 @@ struct Device {
   ResidualType residual_type = ResidualType::AC;
   Band residual;                  ///< driven by the residual current
   LetThrough let_through;
-  int poles = 0;                  ///< 0: from the phases it protects
   Confidence confidence = Confidence::declared;  ///< of the curves
   std::string source;             ///< published source of the curves
-  std::string required_selectivity;  ///< "", "total", or a current as typed
   Origin at{};
 
   [[nodiscard]] bool present() const noexcept { return kind != DeviceKind::none; }

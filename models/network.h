@@ -37,6 +37,7 @@ struct Tails {
   Cable cable;
   double length = 0;  ///< [m]
   int in_parallel = 1;
+  Sourced<double> Iz;  ///< as installed, of all in parallel together [A]
   Origin at{};
 };
 
@@ -64,12 +65,15 @@ struct Source {
   bool link_at_board = false;  ///< N-PE link at its board (PEN until there) instead of at the star point
   Device device;
   Tails tails;
+  Sourced<double> demand;  ///< of the whole installation, in its most loaded line [A]
+  Sourced<double> pf;      ///< of it
 };
 
 /// A device that stands between a board's busbar and some of its ways.
 struct Group {
   std::string name;
   Device device;
+  Sourced<double> demand;         ///< of its ways together, in the most loaded line [A]
   std::vector<std::string> ways;  ///< circuit names on this board, as written
   Origin at{};
 };

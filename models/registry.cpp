@@ -59,12 +59,12 @@ const std::vector<std::string_view>& later_kinds() {
 
 std::string_view nearest_name(std::string_view wrong, const std::vector<std::string_view>& names) {
   constexpr std::size_t kLongest = 200;  // a longer text is no misspelt name
-  if (wrong.empty() || wrong.size() > kLongest) return {};
+  if (wrong.size() < 2 || wrong.size() > kLongest) return {};
   const std::size_t limit = std::max<std::size_t>(1, wrong.size() / 3);
   std::string_view best;
   std::size_t best_distance = limit + 1;
   for (const std::string_view name : names) {
-    if (name.empty()) continue;
+    if (name.size() < 2) continue;  // of one letter any other is as near
     const std::size_t d = distance(wrong, name, limit);
     if (d < best_distance || (d == best_distance && d <= limit && name < best)) {
       best = name;

@@ -58,7 +58,8 @@ struct Kind {
 /// Kinds that design and trade know but this edition refuses by name: "generator", "motor", ...
 [[nodiscard]] const std::vector<std::string_view>& later_kinds();
 
-/// The nearest of `names` by edit distance, "" when none is within max(1, length / 3); ties by spelling.
+/// The nearest of `names` by edit distance, "" when none is within max(1, length / 3); ties by spelling. Names of
+/// one letter are near to nothing.
 [[nodiscard]] std::string_view nearest_name(std::string_view wrong, const std::vector<std::string_view>& names);
 
 }  // namespace sunder::models

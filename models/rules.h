@@ -69,6 +69,8 @@ struct RuleSet {
   std::string additional_clause;
   std::string clearance_clause, heating_clause, capacity_clause, overload_clause, selectivity_clause;
   double I2_factor = 1.45;
+  double ring_device_to = 0;       ///< a ring behind a device up to this [A] needs `ring_Iz`; 0: no such rule
+  double ring_Iz = 0;              ///< least current-carrying capacity of one leg there [A]
   std::vector<AdiabaticRow> k;
   Confidence confidence = Confidence::memory;
   std::string source;

@@ -88,6 +88,28 @@ Kind top() {
                .unless_given("other")}};
 }
 
+Key iz() {
+  return amount("Iz", Quantity::current, "Current-carrying capacity as installed, of all in parallel together.")
+      .above(0, 20000)
+      .usual(5, 3000);
+}
+
+Key pf() {
+  return number("pf", "Power factor of the load.").above(0, 1).usual(0.5, 1).unless_given("1");
+}
+
+// The demand of what a submain or a source feeds.
+Key demand() {
+  return amount("demand", Quantity::current, "Greatest load current in one line, after diversity.")
+      .from(0, 20000)
+      .usual(0.05, 2500)
+      .unless_given("the sum of the loads");
+}
+
+Key mean_pf() {
+  return number("pf", "Power factor of the demand.").above(0, 1).usual(0.5, 1).unless_given("the mean of the loads");
+}
+
 Kind supply() {
   return {"supply",
           "A connection to a network whose most and least currents are declared.",
@@ -105,7 +127,9 @@ Kind supply() {
            entry("maximum", ValueForm::table, "The most that the network may deliver at the terminals."),
            entry("minimum", ValueForm::table, "The least that the network may deliver at the terminals."),
            entry("device", ValueForm::device, "The device at the origin, such as the distributor's fuse."),
-           entry("tails", ValueForm::table, "The conductors from that device to the board.")}};
+           entry("tails", ValueForm::table, "The conductors from that device to the board."),
+           demand(),
+           mean_pf()}};
 }
 
 std::vector<Key> bound_keys() {
@@ -128,7 +152,7 @@ Kind supply_maximum() {
 
 Kind supply_minimum() {
   std::vector<Key> keys = bound_keys();
-  keys.push_back(amount("Ze", Quantity::impedance, "Earth-fault loop impedance outside the installation.")
+  keys.push_back(amount("Ze", Quantity::impedance, "Earth-fault loop impedance outside the installation; in TT the source's side, without RA.")
                      .above(0, 10000)
                      .usual(0.005, 250));
   keys.push_back(amount("Zn", Quantity::impedance, "Line-neutral loop impedance outside the installation.")
@@ -146,7 +170,8 @@ std::vector<Key> tails_keys() {
               .usual(0.2, 200),
           entry("cpc", ValueForm::cpc, "The main earthing conductor that runs with them.")
               .unless_given("as the line conductor"),
-          number("in_parallel", "Equal conductors in parallel.").from(1, 20).unless_given("1")};
+          number("in_parallel", "Equal conductors in parallel.").from(1, 20).unless_given("1"),
+          iz()};
 }
 
 Kind transformer() {
@@ -181,7 +206,9 @@ Kind transformer() {
                .usual(0.3, 10)
                .unless_given("1"),
            entry("device", ValueForm::device, "The device on its low side."),
-           entry("tails", ValueForm::table, "The conductors from its low side to the board.")}};
+           entry("tails", ValueForm::table, "The conductors from its low side to the board."),
+           demand(),
+           mean_pf()}};
 }
 
 Kind fault_level() {
@@ -207,7 +234,8 @@ Kind board_groups() {
           "A device over some of a board's ways.",
           "groups = { sockets = { device = \"RCD 63 A 30 mA A\", ways = [\"W1\", \"W2\"] } }\n",
           {entry("device", ValueForm::device, "The device of the group.").need(),
-           entry("ways", ValueForm::list, "Circuits of the board and submains that leave it.").need()}};
+           entry("ways", ValueForm::list, "Circuits of the board and submains that leave it.").need(),
+           demand()}};
 }
 
 Key installed() {
@@ -217,16 +245,6 @@ Key installed() {
 Key selective() {
   return entry("selective", ValueForm::text,
                "Selectivity that is required of its device: \"total\", or up to a current.");
-}
-
-Key iz() {
-  return amount("Iz", Quantity::current, "Current-carrying capacity as installed, of all in parallel together.")
-      .above(0, 20000)
-      .usual(5, 3000);
-}
-
-Key pf() {
-  return number("pf", "Power factor of the load.").above(0, 1).usual(0.5, 1).unless_given("1");
 }
 
 Kind submain() {
@@ -244,9 +262,7 @@ Kind submain() {
            number("in_parallel", "Equal cables in parallel.").from(1, 20).unless_given("1"),
            installed(),
            iz(),
-           amount("demand", Quantity::current, "Greatest load current in one line.")
-               .from(0, 20000)
-               .usual(0.05, 2500),
+           demand(),
            pf(),
            selective()}};
 }
@@ -300,7 +316,7 @@ Kind electrode() {
            amount("resistance", Quantity::impedance, "Its resistance to earth, RA.")
                .need()
                .above(0, 100000)
-               .usual(0.2, 1000)}};
+               .usual(0.2, 200)}};
 }
 
 Kind state() {

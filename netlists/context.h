@@ -46,6 +46,7 @@ struct Context {
   models::Network network;
   std::string folder;           ///< of the netlist, for schedules
   std::string lost;             ///< text that was left out after errors of form
+  bool states_declared = false;  ///< some state stands in the netlist, be it faulty
   bool refused = false;         ///< an element's name was refused, so that others may miss it
   Names elements;               ///< supplies, transformers, boards, submains, electrodes
   Names states;
@@ -78,7 +79,9 @@ struct Context {
 [[nodiscard]] std::vector<std::string_view> names_of(const Names& names, std::string_view kind);
 
 /// The handle of an element that `value` names, -1 after a complaint.
-[[nodiscard]] int find_element(Context& context, const Value& value, std::string_view kind);
+/// @param lead  begins the hint where no name is near
+[[nodiscard]] int find_element(Context& context, const Value& value, std::string_view kind,
+                               std::string_view lead = {});
 
 /// Checks a new name (characters, unique in `names`) and enters it. @return false after a complaint.
 bool enter_name(Context& context, Names& names, const Member& member, std::string_view kind, int handle);

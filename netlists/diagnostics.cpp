@@ -89,7 +89,13 @@ std::string Complaints::line_of(models::Origin at) const {
   if (!line.empty() && line.back() == '\r') line.remove_suffix(1);
   constexpr std::string_view kMark = "\xEF\xBB\xBF";  // byte order mark
   if (at.line == 1 && line.substr(0, kMark.size()) == kMark) line.remove_prefix(kMark.size());
-  return std::string(line);
+  std::string shown;  // bytes that are not UTF-8 as the sign for such
+  for (std::size_t bad = first_not_utf8(line); bad != std::string_view::npos; bad = first_not_utf8(line)) {
+    shown += line.substr(0, bad);
+    shown += "\xEF\xBF\xBD";
+    line.remove_prefix(bad + 1);
+  }
+  return shown.append(line);
 }
 
 Diagnostic Complaints::make(Severity severity, models::Origin at, int width, std::string message) const {
@@ -145,6 +151,7 @@ std::vector<Diagnostic> Complaints::in_order() const {
   if (n_errors_ > kMost && !files_.empty()) {
     list.push_back(make(Severity::error, {1, 0, 0}, 1,
                         fmt::format("{} further errors are not listed", n_errors_ - kMost)));
+    list.back().stands_for = n_errors_ - kMost;
   }
   return list;
 }

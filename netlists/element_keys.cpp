@@ -11,6 +11,8 @@
 #include <utility>
 #include <variant>
 
+#include "netlists/hints.h"
+
 namespace sunder::netlists {
 
 namespace {
@@ -43,6 +45,15 @@ std::string joined(const std::vector<std::string_view>& words) {
   return text;
 }
 
+// "0,95": how it would be written with a point; "" for anything else.
+std::string comma_hint(std::string_view text) {
+  const std::size_t comma = text.find(',');
+  if (comma == std::string_view::npos || text.find_first_not_of("0123456789,") != std::string_view::npos) return {};
+  std::string point(text);
+  point[comma] = '.';
+  return point.find(',') == std::string::npos ? fmt::format("decimals take a point: {}", point) : std::string{};
+}
+
 // What a later edition will solve is refused with that reason, not as a misspelling.
 std::string_view later_choice(std::string_view key, std::string_view text) noexcept {
   if (key == "earthing" && text == "TN-C") return "TN-C";
@@ -63,20 +74,20 @@ models::Origin inside(const Value& value, std::size_t offset) noexcept {
 ElementKeys::ElementKeys(Context& context, const Value& table, const models::Kind& kind, std::string what,
                models::Origin at)
     : context_(context), table_(table), kind_(kind), what_(std::move(what)), at_(at) {
+  std::vector<std::string_view> meant;  // by unknown keys, and so not missed as well
   for (const Member& member : table.members) {
     if (models::find_key(kind, member.key) != nullptr) continue;
     std::string hint;
+    meant.push_back(meant_key(kind, member.key));
     if (!context.complaints.full()) {
-      std::vector<std::string_view> names;
-      for (const Key& key : kind.keys) names.push_back(key.name);
-      hint = did_you_mean(context, member.key, names);
-      if (hint.empty()) hint = fmt::format("it may have: {}", joined(names));
+      hint = unknown_key_hint(kind, member.key, member.value.form == Value::Form::table);
     }
     context.complaints.error(member.at, member.width, fmt::format("unknown key '{}' in {}", member.key, what_),
                              std::move(hint));
   }
   for (const Key& key : kind.keys) {
     if (!key.required || table.find(key.name) != nullptr || context.maybe_lost(key.name)) continue;
+    if (std::find(meant.begin(), meant.end(), key.name) != meant.end()) continue;
     context.complaints.error(at, 1, fmt::format("{} has no '{}', which is obligatory", what_, key.name),
                              fmt::format("{}: {}", key.name, key.help));
   }
@@ -157,7 +168,8 @@ std::optional<double> ElementKeys::number(std::string_view name) {
     const auto [end, status] = std::from_chars(text.data(), text.data() + text.size(), parsed);
     if (status == std::errc{} && end == text.data() + text.size()) return in_range(*key, *value, parsed);
     context_.complaints.error(value->at, value->width,
-                              fmt::format("{} of {} is '{}'; a number is expected", name, what_, value->text));
+                              fmt::format("{} of {} is '{}'; a number is expected", name, what_, value->text),
+                              comma_hint(text));
     return std::nullopt;
   }
   wrong_form(*value, name, "a number");
@@ -200,7 +212,8 @@ std::optional<std::string> ElementKeys::choice(std::string_view name) {
                               fmt::format("solved are: {}", joined(valid)));
     return std::nullopt;
   }
-  std::string hint = did_you_mean(context_, chosen, valid);
+  const std::string_view meant = meant_choice(name, chosen, valid);
+  std::string hint = meant.empty() ? did_you_mean(context_, chosen, valid) : fmt::format("did you mean '{}'?", meant);
   if (hint.empty()) hint = fmt::format("valid are: {}", joined(valid));
   context_.complaints.error(value->at, value->width, fmt::format("unknown {} '{}' of {}", name, chosen, what_),
                             std::move(hint));
@@ -240,10 +253,27 @@ models::Sourced<double> ElementKeys::sourced(std::string_view name) {
   return made;
 }
 
+// How the table would be written; a single value of a supply's bound is put into it.
+std::string ElementKeys::table_hint(std::string_view name, const Value& value) const {
+  const bool bound = name == "maximum" || name == "minimum";
+  if (bound && value.form == Value::Form::text) {
+    if (std::holds_alternative<double>(models::parse_quantity(value.text, Quantity::current))) {
+      return fmt::format("{} = {{ three_phase = \"{}\" }}", name, value.text);
+    }
+    if (std::holds_alternative<double>(models::parse_quantity(value.text, Quantity::impedance))) {
+      return fmt::format("{} = {{ {} = \"{}\" }}", name, name == "minimum" ? "Ze" : "line_earth", value.text);
+    }
+  }
+  const models::Kind* inner = models::find_kind(fmt::format("{}.{}", kind_.name, name));
+  return inner == nullptr ? std::string{} : fmt::format("such as {}", trimmed(inner->example));
+}
+
 const Value* ElementKeys::table(std::string_view name) {
   const Value* value = find(name);
   if (value == nullptr || value->form == Value::Form::table) return value;
-  wrong_form(*value, name, "a table");
+  context_.complaints.error(value->at, value->width,
+                            fmt::format("{} of {} is {}; a table is expected", name, what_, word(value->form)),
+                            table_hint(name, *value));
   return nullptr;
 }
 

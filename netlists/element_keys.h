@@ -39,6 +39,7 @@ class ElementKeys {
   void wrong_form(const Value& value, std::string_view key, std::string_view expected);
 
  private:
+  [[nodiscard]] std::string table_hint(std::string_view key, const Value& value) const;
   [[nodiscard]] std::optional<double> in_range(const models::Key& key, const Value& value, double si);
 
   Context& context_;

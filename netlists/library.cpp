@@ -253,6 +253,8 @@ models::RuleSet read_rules(Fields& fields) {
       {"additional_IdN", rules.additional_IdN},
       {"additional_sockets_to", rules.additional_sockets_to},
       {"I2_factor", rules.I2_factor},
+      {"ring_device_to", rules.ring_device_to},
+      {"ring_Iz", rules.ring_Iz},
   };
   for (const auto& [key, value] : numbers) fields.number(key, value, true);
   fields.flag("additional_dwelling_lighting", rules.additional_dwelling_lighting);

@@ -9,6 +9,7 @@
 #include <system_error>
 
 #include "netlists/context.h"
+#include "netlists/hints.h"
 
 namespace sunder::netlists {
 
@@ -28,7 +29,7 @@ std::vector<std::string_view> names_of(const Names& names, std::string_view kind
   return list;
 }
 
-int find_element(Context& context, const Value& value, std::string_view kind) {
+int find_element(Context& context, const Value& value, std::string_view kind, std::string_view lead) {
   if (value.form != Value::Form::text) {
     context.complaints.error(value.at, value.width,
                              fmt::format("the name of a {} is expected, got {}", kind, word(value.form)));
@@ -38,7 +39,14 @@ int find_element(Context& context, const Value& value, std::string_view kind) {
   if (found != context.elements.end() && found->second.kind == kind) return found->second.handle;
   if (context.maybe_lost(value.text)) return -1;
   std::string hint;
-  if (!context.complaints.full()) hint = did_you_mean(context, value.text, names_of(context.elements, kind));
+  if (!context.complaints.full()) {
+    const std::vector<std::string_view> names = names_of(context.elements, kind);
+    hint = did_you_mean(context, value.text, names);
+    if (hint.empty()) {
+      const std::string others = listed(fmt::format("{}s", kind), names);
+      hint = fmt::format("{}{}{}", lead, lead.empty() || others.empty() ? "" : "; ", others);
+    }
+  }
   context.complaints.error(value.at, value.width, fmt::format("unknown {} '{}'", kind, value.text), std::move(hint));
   if (found != context.elements.end()) {
     context.complaints.note(found->second.at, fmt::format("'{}' is a {}", value.text, found->second.kind));

@@ -11,6 +11,7 @@
 #include <utility>
 
 #include "netlists/element_keys.h"
+#include "netlists/hints.h"
 #include "netlists/parts.h"
 #include "netlists/toml_document.h"
 
@@ -31,6 +32,14 @@ void take_library(Context& context) {
   }
 }
 
+// Whether the table of a kind holds keys of an element, whose name was forgotten.
+bool nameless(const Member& member) {
+  const models::Kind* kind = models::find_kind(member.key);
+  return kind != nullptr && std::any_of(member.value.members.begin(), member.value.members.end(), [&](const Member& inner) {
+    return inner.value.form != Value::Form::table && models::find_key(*kind, inner.key) != nullptr;
+  });
+}
+
 // Everything at the top of the file is a key of the head or the table of a kind.
 void check_top(Context& context, const Value& root) {
   const models::Kind& head = *models::find_kind("");
@@ -38,6 +47,12 @@ void check_top(Context& context, const Value& root) {
     if (models::find_key(head, member.key) != nullptr) continue;
     const bool kind = member.key.find('.') == std::string::npos && models::find_kind(member.key) != nullptr;
     if (kind) {
+      if (nameless(member)) {
+        context.complaints.error(member.at, member.width, fmt::format("[{}] has no name", member.key),
+                                 fmt::format("its keys stand in [{}.NAME]", member.key));
+        context.lost += fmt::format("{}\n", member.key);
+        continue;
+      }
       if (member.value.form == Value::Form::table) continue;
       context.complaints.error(member.value.at, member.value.width,
                                fmt::format("'{}' is {}; its elements are tables", member.key, word(member.value.form)),
@@ -50,16 +65,25 @@ void check_top(Context& context, const Value& root) {
                                fmt::format("elements of kind '{}' are not solved by this edition", member.key));
       continue;
     }
+    const bool table = member.value.form == Value::Form::table;
     std::vector<std::string_view> names;
-    for (const models::Key& key : head.keys) names.push_back(key.name);
+    if (!table) {
+      for (const models::Key& key : head.keys) names.push_back(key.name);
+    }
     for (const models::Kind& known : models::registry()) {
       if (!known.name.empty() && known.name.find('.') == std::string_view::npos) names.push_back(known.name);
     }
+    std::string hint = table ? std::string{} : key_belongs(nullptr, member.key);
+    if (hint.empty()) hint = did_you_mean(context, member.key, names);
     context.complaints.error(member.at, member.width,
-                             member.value.form == Value::Form::table
-                                 ? fmt::format("unknown kind of element '{}'", member.key)
-                                 : fmt::format("unknown key '{}' at the top of the netlist", member.key),
-                             did_you_mean(context, member.key, names));
+                             table ? fmt::format("unknown kind of element '{}'", member.key)
+                                   : fmt::format("unknown key '{}' at the top of the netlist", member.key),
+                             std::move(hint));
+    if (table) {
+      // its elements are not missed elsewhere as well
+      context.lost += fmt::format("{}\n", models::nearest_name(member.key, names));
+      for (const Member& element : member.value.members) context.lost += fmt::format("{}\n", element.key);
+    }
   }
 }
 
@@ -101,8 +125,9 @@ void read_head(Context& context, const Value& root) {
 }
 
 void read_kind(Context& context, const Value& root, std::string_view kind, void (*read)(Context&, const Value&)) {
-  const Value* table = root.find(kind);
-  if (table != nullptr && table->form == Value::Form::table) read(context, *table);
+  for (const Member& member : root.members) {
+    if (member.key == kind && member.value.form == Value::Form::table && !nameless(member)) read(context, member.value);
+  }
 }
 
 void read_schedules(Context& context, const Value& root) {
@@ -154,9 +179,25 @@ void read_elements(Context& context, const Value& root) {
   read_schedules(context, root);
   read_kind(context, root, "electrode", read_electrodes);
   const Value* states = root.find("state");
-  read_states(context, states != nullptr && states->form == Value::Form::table ? states : nullptr);
+  context.states_declared = states != nullptr;
+  const bool named = std::none_of(root.members.begin(), root.members.end(),
+                                  [](const Member& member) { return member.key == "state" && nameless(member); });
+  read_states(context, named && states != nullptr && states->form == Value::Form::table ? states : nullptr);
   join_up(context);
   add_named_families(context);
+}
+
+// Whether the first line is the heading of a schedule rather than TOML.
+bool is_schedule(std::string_view text, const std::string& name) {
+  constexpr std::string_view kMark = "\xEF\xBB\xBF";  // byte order mark
+  if (text.substr(0, kMark.size()) == kMark) text.remove_prefix(kMark.size());
+  const std::string_view line = trimmed(text.substr(0, text.find('\n')));
+  if (line.empty() || line.front() == '[' || line.front() == '#' || line.find('=') != std::string_view::npos) return false;
+  const std::size_t separator = line.find_first_of(",;\t");
+  if (separator == std::string_view::npos) return false;
+  std::string_view first = trimmed(line.substr(0, separator));
+  if (first.size() > 2 && first.front() == '"') first = first.substr(1, first.size() - 2);
+  return first == "way" || std::filesystem::path(name).extension() == ".csv";
 }
 
 Reading finish(Context& context) {
@@ -175,6 +216,12 @@ Reading read_network_text(const std::string& text, const std::string& name, cons
   context.folder = folder;
   const std::uint32_t file = context.complaints.add_file(name, text);
   if (!sound_text(context, text, file, "netlist")) return finish(context);
+  if (is_schedule(text, name)) {
+    context.complaints.error({file, 1, 1}, 3, "this is a schedule of circuits, not a netlist",
+                             fmt::format("a netlist names it: [board.NAME] with circuits_from = \"{}\"",
+                                         std::filesystem::path(name).filename().string()));
+    return finish(context);
+  }
   const TomlDocument document = parse_toml(text, file, context.complaints);
   context.lost = document.lost;
   if (document.parsed) read_elements(context, document.root);

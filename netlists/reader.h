@@ -23,6 +23,7 @@ struct Diagnostic {
   int width = 1;         ///< characters to underline
   std::string message;   ///< one sentence, no full stop
   std::string source_line;  ///< the line's text, "" where there is none
+  std::size_t stands_for = 1;  ///< errors; more than one where the rest is only counted
   std::string hint;      ///< "did you mean 'swa-xlpe-cu-4c'?", "" if none
 };
 

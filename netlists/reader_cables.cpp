@@ -9,6 +9,7 @@
 #include <variant>
 
 #include "netlists/element_keys.h"
+#include "netlists/hints.h"
 #include "netlists/parts.h"
 
 namespace sunder::netlists {
@@ -58,8 +59,8 @@ std::optional<double> area_of(std::string_view number) {
 }
 
 bool split_cable_text(Context& context, const Value& value, const std::string& what, CableText& out) {
-  auto refuse = [&](std::string message) {
-    context.complaints.error(value.at, value.width, std::move(message), std::string(kForm));
+  auto refuse = [&](std::string message, std::string_view hint = kForm) {
+    context.complaints.error(value.at, value.width, std::move(message), std::string(hint));
     return false;
   };
   if (value.form != Value::Form::text) {
@@ -76,7 +77,8 @@ bool split_cable_text(Context& context, const Value& value, const std::string& w
   }
   const std::size_t blank = text.find_last_of(" \t");
   if (blank == std::string_view::npos) {
-    return refuse(fmt::format("cable '{}' of {} is no construction with a size", value.text, what));
+    return refuse(fmt::format("cable '{}' of {} is no construction with a size", value.text, what),
+                  fmt::format("{}; `sunder help cables` lists the constructions", kForm));
   }
   const std::string_view size = text.substr(blank + 1);
   out.name = std::string(trimmed(text.substr(0, blank)));
@@ -85,6 +87,12 @@ bool split_cable_text(Context& context, const Value& value, const std::string& w
   const std::size_t stroke = size.find('/');
   const auto area = area_of(size.substr(0, stroke));
   const auto cpc = stroke == std::string_view::npos ? std::optional(0.0) : area_of(size.substr(stroke + 1));
+  if (size.find(',') != std::string_view::npos) {
+    std::string point(size);
+    std::replace(point.begin(), point.end(), ',', '.');
+    return refuse(fmt::format("'{}' is no size, in the cable of {}", size, what),
+                  fmt::format("decimals take a point: {} mm2", point));
+  }
   if (!area || !cpc) return refuse(fmt::format("'{}' is no size, in the cable of {}", size, what));
   out.area = *area;
   out.cpc_area = *cpc;
@@ -300,8 +308,10 @@ bool read_cable(Context& context, const PendingRun& run, models::ConductorSet co
     if (!context.complaints.full()) {
       for (const CableConstruction& known : context.network.constructions) names.push_back(known.name);
     }
+    std::string hint = did_you_mean(context, text.name, names);
+    if (hint.empty()) hint = cable_hint(names, text.name);
     context.complaints.error(inside(value, text.name_at), characters(text.name),
-                             fmt::format("unknown cable '{}'", text.name), did_you_mean(context, text.name, names));
+                             fmt::format("unknown cable '{}'", text.name), std::move(hint));
     return false;
   }
   const bool neutral = conductors.has(models::Conductor::N);

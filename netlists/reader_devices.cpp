@@ -10,6 +10,7 @@
 
 #include "netlists/device_points.h"
 #include "netlists/element_keys.h"
+#include "netlists/hints.h"
 #include "netlists/parts.h"
 
 namespace sunder::netlists {
@@ -97,7 +98,7 @@ class SpecReader {
  private:
   bool refuse(const Word& word, std::string message) {
     context_.complaints.error(inside(value_, word.offset), characters(word.text), std::move(message),
-                              "form: <family> <In> [<Icn>] [<IdN> [S] [AC|A|F|B]] [class 1|2|3]");
+                              std::string(kDeviceForm));
     return false;
   }
 
@@ -160,14 +161,23 @@ std::optional<Device> from_text(Context& context, const Value& value, const std:
   }
   if (family == nullptr) {
     // the name is what stands before the first current, if there is one
+    // ("BS 88 16 A": a number before a number is part of the name)
     std::string_view name = trimmed(text);
-    for (const Word& word : words_of(text, start)) {
-      if (word.offset == start || !is_number_start(word.text.front())) continue;
-      name = trimmed(text.substr(start, word.offset - start));
+    const std::vector<Word> words = words_of(text, start);
+    for (std::size_t k = 1; k < words.size(); ++k) {
+      if (!is_number_start(words[k].text.front())) continue;
+      if (k + 1 < words.size() && is_number_start(words[k + 1].text.front()) &&
+          words[k].text.find_first_not_of("0123456789-") == std::string_view::npos) {
+        continue;
+      }
+      name = trimmed(text.substr(start, words[k].offset - start));
       break;
     }
     if (context.maybe_lost(name) && !name.empty()) return std::nullopt;
-    std::string hint = did_you_mean(context, name, device_names(context));
+    std::string hint;
+    if (!context.complaints.full()) {
+      hint = device_hint(context.network.families, text, did_you_mean(context, name, device_names(context)));
+    }
     context.complaints.error(inside(value, start), std::max(1, characters(name)),
                              name.empty() ? fmt::format("{} is empty", what)
                                           : fmt::format("unknown device '{}' ({})", name, what),
@@ -179,7 +189,7 @@ std::optional<Device> from_text(Context& context, const Value& value, const std:
   if (!SpecReader(context, value, what).read(start + family->name.size(), spec)) return std::nullopt;
   if (spec.In == 0) {
     context.complaints.error(value.at, value.width, fmt::format("{}: '{}' has no rated current", what, key),
-                             "form: <family> <In> [<Icn>] [<IdN> [S] [AC|A|F|B]] [class 1|2|3]");
+                             std::string(kDeviceForm));
     return std::nullopt;
   }
   std::optional<Device> device = resolved(context, spec, value, what);
@@ -218,9 +228,10 @@ std::optional<Device> like_family(Context& context, const Value& like, ElementKe
   const DeviceFamily* family = family_named(context, name);
   if (family == nullptr) {
     if (like.form == Value::Form::text) {
+      const std::string near = did_you_mean(context, name, device_names(context));
       context.complaints.error(like.at, like.width,
                                fmt::format("unknown device family '{}' of {}", name, fields.what()),
-                               did_you_mean(context, name, device_names(context)));
+                               near.empty() ? "`sunder help devices` lists the families" : near);
     }
     return std::nullopt;
   }

@@ -42,13 +42,14 @@ void read_groups(Context& context, ElementKeys& fields, int board, Board& made) 
     if (const Value* device = group_fields.find("device")) {
       group.device = read_device(context, *device, fmt::format("device of {}", what)).value_or(models::Device{});
     }
+    group.demand = group_fields.sourced("demand");
     context.groups.push_back({board, static_cast<int>(made.groups.size()), group_fields.list("ways")});
     made.groups.push_back(std::move(group));
   }
 }
 
 // "total" or a current; anything else is a complaint and counts as not required.
-std::string read_selective(Context& context, ElementKeys& fields, models::Device& device) {
+std::string read_selective(Context& context, ElementKeys& fields) {
   const auto text = fields.text("selective");
   if (!text) return {};
   std::string wanted(trimmed(*text));
@@ -62,7 +63,6 @@ std::string read_selective(Context& context, ElementKeys& fields, models::Device
       return {};
     }
   }
-  device.required_selectivity = wanted;
   return wanted;
 }
 
@@ -216,7 +216,7 @@ void read_submains(Context& context, const Value& table) {
       submain.pf.value = 1;
       if (submain.demand) context.assume(submain.name, fmt::format("pf of {} taken as 1", submain.name), submain.at);
     }
-    submain.selective = read_selective(context, fields, submain.device);
+    submain.selective = read_selective(context, fields);
     submain.cpc_given = fields.find("cpc") != nullptr;
     context.submain_runs.push_back({fields.find("cable"), fields.find("cpc"), fields.find("phases")});
     context.network.submains.push_back(std::move(submain));
@@ -232,7 +232,12 @@ void read_circuits(Context& context, const Value& table) {
     name.text = member.key;
     name.at = member.at;
     name.width = member.width;
-    const int board = find_element(context, name, "board");
+    const bool single = std::any_of(member.value.members.begin(), member.value.members.end(), [](const Member& inner) {
+      return models::find_key(*models::find_kind("circuit"), inner.key) != nullptr;
+    });
+    const std::string lead = single ? fmt::format("one circuit by itself is [circuit.BOARD.{}]", member.key)
+                                    : std::string("the circuits of a board stand in [circuit.BOARD]");
+    const int board = find_element(context, name, "board", lead);
     if (board < 0) {
       context.refused = true;
       continue;
@@ -286,14 +291,15 @@ void read_circuit(Context& context, int board, const Member& member, const Value
   circuit.motor = fields.flag("motor").value_or(false);
   circuit.Iz = fields.sourced("Iz");
   circuit.installed = fields.text("installed").value_or("");
-  circuit.selective = read_selective(context, fields, circuit.device);
+  circuit.selective = read_selective(context, fields);
   check_ring(context, fields, circuit);
   const PendingRun run{fields.find("cable"), fields.find("cpc"), fields.find("phases")};
   if (!circuit.conductors.empty() &&
       read_cable(context, run, circuit.conductors, what, address, false, member.at, circuit.cable)) {
     for (const models::Strand& strand : circuit.cable.protective) {
       if (strand.place != models::Place::separate) continue;
-      context.assume(address, fmt::format("the protective conductor beside the cable of {} is taken to run close to it",
+      context.assume(address, fmt::format("the protective conductor beside the cable of {} is taken to run close to it, not bunched with "
+                                          "it: at ambient temperature, k as such",
                                           address), member.at);
     }
   }
@@ -332,6 +338,7 @@ void read_electrodes(Context& context, const Value& table) {
 
 void read_states(Context& context, const Value* table) {
   if (table == nullptr) return;
+  context.states_declared = !table->members.empty();
   for (const Member& member : table->members) {
     const std::string what = fmt::format("state '{}'", member.key);
     if (!is_table(context, member.value, what)) continue;

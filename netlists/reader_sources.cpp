@@ -51,6 +51,12 @@ bool read_voltage(Context& context, ElementKeys& fields, Source& source, bool si
     if (!(volts >= kLeast && volts <= kMost)) {
       return refuse(fmt::format("voltage of {} is '{}'; it must be 50 V to 1000 V", fields.what(), text));
     }
+    constexpr double kMostUsual = 260;  // [V] above it the voltage between lines was meant, as a rule
+    if (volts > kMostUsual) {
+      context.complaints.warn(value->at, value->width,
+                              fmt::format("voltage of {} is '{}' and is taken as single-phase", fields.what(), text),
+                              "three phases are written \"230/400 V\"");
+    }
     source.U0 = volts;
     source.U = volts * kSqrt3;
     source.lines = {Conductor::L1};
@@ -159,6 +165,10 @@ void read_bound(Context& context, ElementKeys& supply, std::string_view key, con
       }
     }
   }
+  if (key == "maximum" && split_open && !bound.three_phase.given() && bound.line_neutral.given()) {
+    context.assume(source.name, fmt::format("no greatest three-phase current of {}: taken as twice the line-neutral one, "
+                                            "which holds while the neutral is no smaller than the line", supply.what()), bound.at);
+  }
   if (key == "minimum") {
     read_alias(context, fields, "Ze", "line_earth", bound.line_earth);
     read_alias(context, fields, "Zn", "line_neutral", bound.line_neutral);
@@ -250,6 +260,7 @@ void read_tails(Context& context, ElementKeys& element, std::string_view kind, S
   source.tails.at = table->at;
   source.tails.length = fields.quantity("length").value_or(0);
   source.tails.in_parallel = fields.whole("in_parallel").value_or(1);
+  source.tails.Iz = fields.sourced("Iz");
   models::ConductorSet conductors = source.lines;
   conductors.add(Conductor::N);
   PendingRun run;
@@ -269,6 +280,8 @@ models::Earthing earthing_named(std::string_view text) noexcept {
 void read_common(Context& context, ElementKeys& fields, Source& source) {
   if (const Value* feeds = fields.find("feeds")) source.board = find_element(context, *feeds, "board");
   if (const auto earthing = fields.choice("earthing")) source.earthing = earthing_named(*earthing);
+  source.demand = fields.sourced("demand");
+  source.pf = fields.sourced("pf");
   if (const Value* device = fields.find("device")) {
     source.device = read_device(context, *device, fmt::format("device of {}", fields.what())).value_or(models::Device{});
   }

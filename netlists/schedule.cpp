@@ -10,6 +10,7 @@
 #include <variant>
 
 #include "netlists/element_keys.h"
+#include "netlists/hints.h"
 #include "netlists/parts.h"
 
 namespace sunder::netlists {
@@ -187,15 +188,20 @@ class ScheduleReader {
       const bool twice = !name.empty() && std::any_of(columns_.begin(), columns_.end(),
                                                       [&](const Column& other) { return other.name == column.name; });
       if (!name.empty() && !known) {
-        std::string hint = did_you_mean(context_, name, valid);
+        std::string hint;
+        if (!context_.complaints.full()) {
+          const bool way = models::nearest_name(name, valid) == "way";
+          hint = way ? std::string("did you mean 'way'?") : unknown_key_hint(kind, name, false);
+        }
         context_.complaints.error(cell.at, column.width, fmt::format("unknown column '{}'", name), std::move(hint));
+        if (!context_.complaints.full()) context_.lost += fmt::format("{}\n", meant_key(kind, name));  // not missed in every row
         column.name.clear();
         complete_ = false;
       } else if (twice) {
         context_.complaints.error(cell.at, column.width, fmt::format("column '{}' stands twice", name));
         column.name.clear();
-      } else if (!column.unit.empty() && !unit_fits(column)) {
-        column.unit.clear();
+      } else if (!column.unit.empty()) {
+        check_unit(column);
       }
       has_way = has_way || column.name == "way";
       columns_.push_back(std::move(column));
@@ -207,7 +213,7 @@ class ScheduleReader {
     return has_way;
   }
 
-  bool unit_fits(const Column& column) {
+  void check_unit(Column& column) {
     const bool measured = column.key != nullptr && column.key->form == ValueForm::quantity;
     const bool fits = measured && std::holds_alternative<double>(models::parse_quantity(
                                       fmt::format("1 {}", column.unit), column.key->quantity));
@@ -217,8 +223,10 @@ class ScheduleReader {
                                          : fmt::format("column '{}' has no unit", column.name),
                                 measured ? fmt::format("units that fit: {}", models::accepted_units(column.key->quantity))
                                          : std::string{});
+      // so that its cells are not complained of as well
+      const std::string_view accepted = measured ? models::accepted_units(column.key->quantity) : std::string_view{};
+      column.unit = std::string(accepted.substr(0, accepted.find(',')));
     }
-    return fits;
   }
 
   void read_row(const Row& row) {
@@ -237,7 +245,7 @@ class ScheduleReader {
                                   "a text that holds the separator stands in quotes; decimals take a point");
         return;
       }
-      const Column& column = columns_[k];
+      Column& column = columns_[k];
       if (column.name.empty()) {
         if (complete_) context_.complaints.error(cell.at, width, fmt::format("column {} has no heading", k + 1));
         continue;
@@ -261,8 +269,18 @@ class ScheduleReader {
     read_circuit(context_, board_, placed, context_.rows.back());
   }
 
+  // One complaint a column of bare numbers, at its heading; the first unit that fits then stands for the rest.
+  void demand_unit(Column& column, const Cell& cell) {
+    const std::string_view accepted = models::accepted_units(column.key->quantity);
+    if (accepted.empty() || std::holds_alternative<double>(models::parse_quantity(cell.text, column.key->quantity))) return;
+    column.unit = std::string(accepted.substr(0, accepted.find(',')));
+    context_.complaints.error(column.at, column.width, fmt::format("column '{}' has bare numbers and no unit", column.name),
+                              fmt::format("write the heading as '{} [{}]', or a unit in every cell", column.name, column.unit));
+    context_.complaints.note(cell.at, fmt::format("such as '{}' here", cell.text));
+  }
+
   // A cell as the value that the netlist would have.
-  Member read_cell(const Cell& cell, const Column& column, int width) {
+  Member read_cell(const Cell& cell, Column& column, int width) {
     Member member{column.name, cell.at, width, {}};
     member.value.form = Value::Form::text;
     member.value.at = cell.at;
@@ -276,6 +294,7 @@ class ScheduleReader {
                                 fmt::format("write {}", with_point));
       member.value.text = std::move(with_point);  // so that the key is not missed as well
     }
+    if (measured && column.unit.empty() && bare_number(member.value.text)) demand_unit(column, cell);
     if (measured && !column.unit.empty() && bare_number(member.value.text)) {
       member.value.text = fmt::format("{} {}", member.value.text, column.unit);
     }

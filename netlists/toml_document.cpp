@@ -10,6 +10,7 @@
 #include <vector>
 
 #include "netlists/toml_parser.h"
+#include "netlists/toml_slips.h"
 
 namespace sunder::netlists {
 
@@ -209,7 +210,7 @@ std::string syntax_sentence(std::string_view description, bool at_line_end) {
   return text;
 }
 
-// A value such as 16 kA without its quotes is the commonest slip; then come names in other alphabets.
+// Names in other alphabets.
 std::string syntax_hint(std::string_view description, std::string_view line, std::size_t offset) {
   const bool beyond_ascii = offset < line.size() && (static_cast<unsigned char>(line[offset]) & 0x80U) != 0;
   if (beyond_ascii) {
@@ -217,16 +218,15 @@ std::string syntax_hint(std::string_view description, std::string_view line, std
       if (description.find(name_expected) != std::string_view::npos) return "a name with such a character stands in quotes";
     }
   }
-  if (description.find("expected a comment or whitespace") == std::string_view::npos &&
-      description.find("expected digit") == std::string_view::npos) {
-    return {};
+  if (description.find("expected ']'") != std::string_view::npos && offset < line.size() && offset > 0 && line[offset - 1] == ' ') {
+    const std::string_view name = trimmed(line);
+    const std::size_t dot = name.find('.');
+    if (dot != std::string_view::npos && name.front() == '[' && name.back() == ']') {
+      return fmt::format("a name with blanks stands in quotes: {}.\"{}\"]", name.substr(0, dot), name.substr(dot + 1, name.size() - dot - 2));
+    }
   }
-  const std::size_t equals = line.find('=');
-  if (equals == std::string_view::npos) return {};
-  const std::string_view value = trimmed(line.substr(equals + 1));
-  const bool bare = !value.empty() && value.front() >= '0' && value.front() <= '9' &&
-                    value.find_first_of("\"'#{[") == std::string_view::npos;
-  return bare ? fmt::format("a value with a unit stands in quotes: \"{}\"", value) : std::string{};
+  if (description.find("expected comma or closing '}'") != std::string_view::npos) return "commas part the values in { }";
+  return {};
 }
 
 class Converter {
@@ -305,6 +305,28 @@ void leave_out(Copy& copy, std::size_t number, std::string& lost) {
   } while (whole && n <= copy.n_lines() && !copy.is_heading(n));
 }
 
+// A table in { } that does not end in its line: one complaint, and all of its lines are left out.
+void complain_of_open_table(Copy& copy, std::size_t number, std::uint32_t file, Complaints& complaints, std::string& lost) {
+  const std::string_view line = copy.line(number);
+  std::size_t above = number;
+  while (above > 1 && !copy.is_heading(above)) --above;
+  const std::size_t open = std::min(line.find('{'), line.size());
+  complaints.error(place(file, number, line, open), 1, "a table in { } does not end in its line",
+                   one_line_hint(heading_name(copy.line(above)), line));
+  int depth = 0;
+  std::size_t last = number;
+  for (std::size_t n = number; n <= copy.n_lines() && (n == number || !copy.is_heading(n)); ++n) {
+    depth += open_braces(copy.line(n));
+    if (depth > 0) continue;
+    last = n;
+    break;
+  }
+  for (std::size_t n = number; n <= last; ++n) {
+    lost += fmt::format("{}\n", copy.line(n));
+    copy.blank(n);
+  }
+}
+
 }  // namespace
 
 TomlDocument parse_toml(std::string_view text, std::uint32_t file, Complaints& complaints) {
@@ -341,6 +363,16 @@ TomlDocument parse_toml(std::string_view text, std::uint32_t file, Complaints& c
       const std::size_t close = description.rfind('\'');
       const std::string_view key = open < close ? description.substr(open + 1, close - open - 1) : description;
       complain_of_key(copy, number, column, key, file, complaints);
+    } else if (const auto slip = find_slip(line)) {
+      complaints.error(place(file, number, line, slip->offset), characters(line.substr(slip->offset, slip->length)),
+                       slip->message, slip->hint);
+    } else if (text_left_open(line) && open_braces(line) > 0) {
+      complaints.error({file, static_cast<std::uint32_t>(number), static_cast<std::uint32_t>(column)}, 1,
+                       "the quotes of this line do not pair", "every text stands between two quotes");
+    } else if (description.find("closing '}'") != std::string_view::npos && open_braces(line) > 0 &&
+               line.find('{') != std::string_view::npos) {
+      complain_of_open_table(copy, number, file, complaints, document.lost);
+      continue;
     } else {
       complaints.error({file, static_cast<std::uint32_t>(number), static_cast<std::uint32_t>(column)}, 1,
                        syntax_sentence(description, column > static_cast<std::size_t>(characters(line))),

@@ -29,7 +29,7 @@ std::size_t at(int handle) noexcept { return static_cast<std::size_t>(handle); }
 void complete_states(Context& context) {
   Network& network = context.network;
   if (network.sources.empty()) {
-    if (!context.maybe_lost("supply") && !context.maybe_lost("transformer")) {
+    if (!context.refused && !context.maybe_lost("supply") && !context.maybe_lost("transformer")) {
       context.complaints.error({1, 0, 0}, 1, "the netlist has no supply and no transformer");
     }
     return;
@@ -37,23 +37,12 @@ void complete_states(Context& context) {
   if (network.states.empty()) {
     if (network.sources.size() == 1) {
       network.states.push_back({"normal", {}, {0}});
-    } else {
+    } else if (!context.states_declared && !context.maybe_lost("state")) {
       context.complaints.error(network.sources[1].at, 1,
                                fmt::format("{} sources need states that say which are connected together",
                                            network.sources.size()),
                                fmt::format("such as [state.normal] with sources = [\"{}\"]", network.sources[0].name));
       context.complaints.note(network.sources[0].at, "the first source is declared here");
-    }
-    return;
-  }
-  if (context.complaints.any_error()) return;  // a state may have lost a source
-  for (std::size_t k = 0; k < network.sources.size(); ++k) {
-    const bool used = std::any_of(network.states.begin(), network.states.end(), [&](const models::SupplyState& state) {
-      return std::find(state.sources.begin(), state.sources.end(), static_cast<int>(k)) != state.sources.end();
-    });
-    if (!used) {
-      context.complaints.warn(network.sources[k].at, 1,
-                              fmt::format("source '{}' is in no state and is not used", network.sources[k].name));
     }
   }
 }
@@ -245,8 +234,12 @@ class PhaseWalk {
 
   void assume_close(const models::Submain& submain) {
     for (const models::Strand& strand : submain.cable.protective) {
+      if (strand.place == models::Place::armour && strand.x <= 0) {
+        context_.assume(submain.name, fmt::format("no reactance of the armour of {} is known", submain.name), submain.cable.at);
+      }
       if (strand.place != models::Place::separate) continue;
-      context_.assume(submain.name, fmt::format("the protective conductor beside the cable of {} is taken to run close to it",
+      context_.assume(submain.name, fmt::format("the protective conductor beside the cable of {} is taken to run close to it, not bunched "
+                                                  "with it: at ambient temperature, k as such",
                                                 submain.name), submain.at);
     }
   }
@@ -300,26 +293,29 @@ void check_demands(Context& context) {
   for (const models::Submain& submain : network.submains) {
     if (submain.from >= 0) add_load(loads[at(submain.from)], submain.conductors, submain.demand);
   }
-  constexpr double kSlack = 1e-9;
-  for (const models::Submain& submain : network.submains) {
-    if (!submain.demand || submain.to < 0) continue;
-    const BoardLoad& load = loads[at(submain.to)];
-    const std::string& board = network.boards[at(submain.to)].name;
-    const double demand = submain.demand.value;
+  const auto compare = [&](const models::Sourced<double>& declared, int handle, const std::string& what) {
+    if (!declared || handle < 0) return;
+    constexpr double kSlack = 1e-9;
+    const BoardLoad& load = loads[at(handle)];
+    const std::string& board = network.boards[at(handle)].name;
+    const double demand = declared.value;
     const double sum = *std::max_element(load.sum.begin(), load.sum.end());
     if (demand < load.largest * (1 - kSlack)) {
-      context.complaints.warn(submain.demand.at, 1,
-                              fmt::format("demand of submain '{}' is {}, below the largest load of board '{}', {}",
-                                          submain.name, models::format_quantity(demand, Quantity::current), board,
+      context.complaints.warn(declared.at, 1,
+                              fmt::format("demand of {} is {}, below the largest load of board '{}', {}", what,
+                                          models::format_quantity(demand, Quantity::current), board,
                                           models::format_quantity(load.largest, Quantity::current)));
     } else if (load.complete && load.n_ways > 0 && demand > sum * (1 + kSlack)) {
-      context.complaints.warn(submain.demand.at, 1,
-                              fmt::format("demand of submain '{}' is {}, above the sum of the loads of board '{}', {} "
-                                          "in one line",
-                                          submain.name, models::format_quantity(demand, Quantity::current), board,
+      context.complaints.warn(declared.at, 1,
+                              fmt::format("demand of {} is {}, above the sum of the loads of board '{}', {} in one line",
+                                          what, models::format_quantity(demand, Quantity::current), board,
                                           models::format_quantity(sum, Quantity::current)));
     }
-  }
+  };
+  for (const models::Submain& submain : network.submains)
+    compare(submain.demand, submain.to, fmt::format("submain '{}'", submain.name));
+  for (const models::Source& source : network.sources)
+    compare(source.demand, source.board, fmt::format("source '{}'", source.name));
 }
 
 // A TT installation is nothing without its electrode.

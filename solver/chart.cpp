@@ -14,9 +14,6 @@ namespace {
 
 using models::Network;
 
-constexpr std::initializer_list<Fault> kAllFaults{Fault::three_phase, Fault::line_line, Fault::line_neutral,
-                                                  Fault::line_earth};
-
 // The circuit, submain or board with this address, solved; tails share their source's name and come
 // last. Nothing where it is dead in this state.
 std::optional<Situation> find(const Network& network, const StateSolution& solution, const std::string& address) {

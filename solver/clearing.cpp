@@ -27,15 +27,16 @@ void push_group(std::vector<Protector>& path, const Network& network, int board,
   push(path, of.device, network.boards[at(board)].name + "." + of.name, of.at, board);
 }
 
-// Let-through straight on log-log paper between a maker's points, level beyond the ends.
+// Let-through straight on log-log paper between a maker's points; beyond them he states nothing.
 double points_heat(const std::vector<models::CurvePoint>& points, double current) {
-  if (current <= points.front().current) return points.front().time;
+  if (current < points.front().current) return models::kNever;
+  if (current == points.front().current) return points.front().time;
   for (std::size_t i = 1; i < points.size(); ++i) {
     if (current > points[i].current) continue;
     const double share = std::log(current / points[i - 1].current) / std::log(points[i].current / points[i - 1].current);
     return points[i - 1].time * std::pow(points[i].time / points[i - 1].time, share);
   }
-  return models::kNever;  // beyond what the maker states
+  return models::kNever;
 }
 
 }  // namespace
@@ -78,6 +79,13 @@ std::vector<Protector> path_to_submain(const Network& network, const StateTree& 
   return path;
 }
 
+double residual_capacity(const Device& device) noexcept {
+  constexpr double kMultiple = 10.0, kLeast = 500.0;  // [A] the second; IEC 61008-1, rated residual breaking capacity
+  // Of a combined device that is its breaking capacity; where that is not given its own check says so.
+  if (!device.overcurrent.empty()) return device.Icn > 0 ? device.Icn : models::kNever;
+  return std::max(kMultiple * device.In, kLeast);
+}
+
 const Protector* overcurrent_protector(const std::vector<Protector>& path) noexcept {
   for (auto p = path.rbegin(); p != path.rend(); ++p)
     if (!p->device->overcurrent.empty()) return &*p;
@@ -89,15 +97,14 @@ Disconnection disconnection(const std::vector<Protector>& path, double current, 
   auto consider = [&](const Protector& by, const models::Curve& latest, bool residual) {
     const double time = latest.time_at(current);
     const double needed = models::current_for(latest, limit);
+    // Of equal times (never, too) the device that needs the least current is the one to name.
     const bool better = time < best.time || best.by == nullptr || (time == best.time && needed < best.needed);
-    // Where nothing is guaranteed yet, the device that needs the least current is the one to name.
-    const bool nearer = std::isinf(time) && std::isinf(best.time) && best.by != nullptr && needed < best.needed;
-    if (better || nearer) best = {time, &by, residual, needed};
+    if (better) best = {time, &by, residual, needed};
   };
   if (const Protector* overcurrent = overcurrent_protector(path); overcurrent != nullptr)
     consider(*overcurrent, overcurrent->device->overcurrent.latest, false);
   for (auto p = path.rbegin(); p != path.rend(); ++p)
-    if (!p->device->residual.empty()) consider(*p, p->device->residual.latest, true);
+    if (!p->device->residual.empty() && current <= residual_capacity(*p->device)) consider(*p, p->device->residual.latest, true);
   return best;
 }
 
@@ -115,7 +122,12 @@ Heat greatest_heat(const Device& device, double current, double kappa) {
   constexpr double kFrequency = 50.0;
   if (heat.time > kTenth * (1 + 1e-9)) {
     heat.total = square * heat.time * (1.0 + dc_heat(kappa, heat.time, kFrequency));
-    heat.from_data = true;
+    // A gate is a bound, and so is what is held above the last point of a figure; a sloping piece is the
+    // figure's own.
+    constexpr double kAside = 1e-6;
+    const models::Curve& latest = device.overcurrent.latest;
+    const bool sloping = latest.time_at(current * (1 - kAside)) > latest.time_at(current * (1 + kAside));
+    heat.from_data = (!device.by_gates || sloping) && current <= device.overcurrent.latest.points.back().current;
     heat.basis = "latest operating time";
     // Pre-arcing I2t of a fuse does not rise with current: each gate passed bounds all above it.
     if (device.kind == models::DeviceKind::fuse && device.by_gates)
@@ -129,19 +141,22 @@ Heat greatest_heat(const Device& device, double current, double kappa) {
     heat.total = square * kTenth * (1.0 + dc_heat(kappa, kTenth, kFrequency));
     heat.basis = "safe bound I2 (m + n) 0.1 s";
   }
-  auto bound = [&](double total, const char* basis) {
-    // Data decides even where the general bound is lower: then both are met.
-    heat.from_data = true;
+  // A class or a fuse's limits bound the heat at every current; only a maker's points say what it is.
+  auto bound = [&](double total, const char* basis, bool data_at_this_current = false) {
+    heat.from_data = heat.from_data || data_at_this_current;
     if (total >= heat.total) return;
     heat.total = total;
     heat.basis = basis;
     heat.confidence = models::worse(device.confidence, device.let_through.confidence);
   };
   const LetThrough& data = device.let_through;
+  // Let-through is that of a short-circuit operation: a class or a maker's points say nothing of the
+  // delayed trip at currents where the latest time is longer.
+  const bool short_circuit = heat.time <= kTenth * (1 + 1e-9);
   switch (data.basis) {
     case LetThrough::Basis::none: break;
     case LetThrough::Basis::energy_class:
-      if (heat.time <= kTenth * (1 + 1e-9) && current <= device.Icn) bound(data.total, "energy class");
+      if (short_circuit && current <= device.Icn) bound(data.total, "energy class");
       break;
     case LetThrough::Basis::fuse_limits: {
       // Pre-arcing I2t of a fuse does not rise with current, so its last gate bounds all above it.
@@ -154,7 +169,14 @@ Heat greatest_heat(const Device& device, double current, double kappa) {
       if (current >= data.valid_from) bound(data.total, "last figure point of the fuse");
       break;
     case LetThrough::Basis::points:
-      if (!data.points.empty()) bound(points_heat(data.points, current), "maker's let-through");
+      if (short_circuit && !data.points.empty()) {
+        // Of a breaker it rises with the current, so that the first point bounds what is below it; of a
+        // fuse it falls.
+        const bool rising = device.kind == models::DeviceKind::breaker;
+        const double from = rising ? std::max(current, data.points.front().current) : current;
+        const double total = points_heat(data.points, from);
+        if (std::isfinite(total)) bound(total, "maker's let-through", current >= data.points.front().current);
+      }
       break;
   }
   return heat;

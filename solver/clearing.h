@@ -31,6 +31,11 @@ struct Protector {
 /// The device nearest the fault that breaks overcurrents; nullptr if none on the path does.
 [[nodiscard]] const Protector* overcurrent_protector(const std::vector<Protector>& path) noexcept;
 
+/// Residual current that a residual element breaks by itself [A]: the breaking capacity of a combined
+/// device; else the least that IEC 61008-1 demands, 10 In and no less than 500 A (from memory). Above
+/// it the overcurrent device must act first.
+[[nodiscard]] double residual_capacity(const models::Device& device) noexcept;
+
 /// When a line-earth fault is disconnected.
 struct Disconnection {
   double time = models::kNever;      ///< latest [s]
@@ -47,15 +52,15 @@ struct Disconnection {
 struct Heat {
   double total = models::kNever;  ///< I2t [A2s]
   double time = models::kNever;   ///< latest operating time [s]
-  bool from_data = false;         ///< class, fuse limits, maker's points or a time above 0.1 s
+  bool from_data = false;         ///< what passes, not a mere bound: maker's points or a curve's own time
   const char* basis = "";
   models::Confidence confidence = models::Confidence::declared;
 };
 
 /// Greatest I2t that passes at a prospective current [A]:
 ///
-///     t >= 0.1 s on the latest edge:  I2 t        (a gate of 0.1 s that says "within": below)
-///     within 0.1 s:                   the least of I2 (m + n) 0.1 s, energy class, fuse limits, points
+///     t > 0.1 s on the latest edge:  I2 t (1 + m), of a fuse no more than at a gate it has passed
+///     within 0.1 s:                  the least of I2 (m + n) 0.1 s, energy class, fuse limits, points
 ///
 /// @param kappa  peak factor of the fault, for m (IEC 60909-0, heat of the d.c. component)
 [[nodiscard]] Heat greatest_heat(const models::Device& device, double current, double kappa);

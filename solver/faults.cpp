@@ -136,6 +136,7 @@ FaultCurrent fault_current(const Network& network, const Source& source, const C
       if (!first && !better && !same_but_inductive) continue;
       first = false;
       result.amps = solved.amps;
+      result.loop = solved.loop;
       result.ohms = std::abs(solved.loop);
       result.x_over_r = ratio(solved.loop);
       result.phases = loops.phases;
@@ -210,7 +211,7 @@ namespace {
 
 void add_rows(const Network& network, const Source& source, const ConductorMatrix& net, ConductorSet have,
               Condition condition, FaultRow row, std::vector<FaultRow>& rows) {
-  for (const Fault fault : {Fault::three_phase, Fault::line_line, Fault::line_neutral, Fault::line_earth}) {
+  for (const Fault fault : kAllFaults) {
     const FaultCurrent current = fault_current(network, source, net, have, condition, fault);
     if (!current.possible) continue;
     row.fault = fault;

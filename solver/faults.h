@@ -20,6 +20,7 @@ struct FaultCurrent {
   double peak = kNone;    ///< [A], maximum only
   double x_over_r = 0;    ///< of the loop
   double ohms = 0;        ///< |Z| of the loop that `volts` drives [ohm]
+  Complex loop;           ///< that loop [ohm]
   double volts = 0;       ///< [V]
   double source_ohms = 0; ///< |Z| of the source's part of the loop [ohm]
   const char* phases = "";

@@ -25,6 +25,7 @@ struct Load {
   double amps;
   double pf;
   double Iz;  // <= 0: not known
+  double neutral = 0;  // current in the neutral of three lines [A]
 };
 
 double temperature(const Network& network, const Cable& cable, const Load& load) {
@@ -45,9 +46,12 @@ double run_drop(const Network& network, const Cable& cable, ConductorSet conduct
   const double degc = temperature(network, cable, load);
   const double line = per_metre(network, cable.line, degc, load.pf) * metres * load.amps;
   const int lines = conductors.lines();
-  if (lines == 3) return line / source.U0;
-  if (lines == 2) return 2.0 * line / source.U;
   const models::Strand& neutral = cable.neutral ? *cable.neutral : cable.line;
+  if (lines == 3) {
+    const double back = conductors.has(Conductor::N) ? per_metre(network, neutral, degc, load.pf) * metres * load.neutral : 0;
+    return (line + back) / source.U0;
+  }
+  if (lines == 2) return 2.0 * line / source.U;
   return (line + per_metre(network, neutral, degc, load.pf) * metres * load.amps) / source.U0;
 }
 
@@ -66,13 +70,34 @@ struct PerLine {
     }
     all += demand.amps * lines.lines();
     active += demand.amps * demand.pf * lines.lines();
+    const bool each = demand.unbalance() > 0;
     for (std::size_t i = 0; i < 3; ++i)
-      if (lines.has(static_cast<Conductor>(i))) amps[i] += demand.amps;
+      if (lines.has(static_cast<Conductor>(i))) amps[i] += each ? demand.lines[i] : demand.amps;
   }
   [[nodiscard]] double pf() const { return all > 0 ? active / all : 1.0; }
+
+  [[nodiscard]] Demand demand() const {
+    return {*std::max_element(amps.begin(), amps.end()), pf(), known, false, needs, amps};
+  }
 };
 
+Demand of_circuit(const Network& network, const models::Circuit& circuit) {
+  Demand demand{circuit.load.value, pf_or_one(circuit.pf), circuit.load.given, true, "", {}};
+  if (!circuit.load.given) demand.needs = "load of " + models::address(network, circuit);
+  return demand;
+}
+
+// What is declared goes before what is summed up.
+Demand declared_or(const models::Sourced<double>& declared, const models::Sourced<double>& pf, const Demand& sum) {
+  if (!declared.given) return sum;
+  return {declared.value, pf.given ? pf.value : sum.pf, true, true, "", {}};
+}
+
 }  // namespace
+
+double Demand::unbalance() const {
+  return *std::max_element(lines.begin(), lines.end()) - *std::min_element(lines.begin(), lines.end());
+}
 
 Drop circuit_drop(const Network& network, const models::Circuit& circuit, const Source& source) {
   Drop drop;
@@ -85,7 +110,7 @@ Drop circuit_drop(const Network& network, const models::Circuit& circuit, const 
     if (end.spur >= 0) metres += circuit.spurs[at(end.spur)].length;
   }
   drop.share = run_drop(network, circuit.cable, circuit.conductors, metres,
-                        {circuit.load.value, pf_or_one(circuit.pf), circuit.Iz.given ? circuit.Iz.value : 0.0}, source);
+                        {circuit.load.value, pf_or_one(circuit.pf), circuit.Iz.given ? circuit.Iz.value : 0.0, 0.0}, source);
   return drop;
 }
 
@@ -96,38 +121,48 @@ Loading load_network(const Network& network, const StateTree& tree) {
   loading.submain.resize(network.submains.size());
   loading.drop.resize(n);
   loading.motors.assign(network.sources.size(), 0.0);
+  loading.motors_unknown.resize(network.sources.size());
+  loading.source.resize(network.sources.size());
+  std::vector<int> ways(n, 0);
   std::vector<PerLine> lines(n);
   for (const models::Circuit& circuit : network.circuits) {
     if (!tree.live(circuit.board)) continue;
-    Demand demand{circuit.load.value, pf_or_one(circuit.pf), circuit.load.given, true, ""};
-    if (!circuit.load.given) demand.needs = "load of " + models::address(network, circuit);
-    lines[at(circuit.board)].add(circuit.conductors, demand);
-    if (circuit.motor && circuit.load.given)
-      loading.motors[at(tree.source_of[at(circuit.board)])] += circuit.load.value;
+    lines[at(circuit.board)].add(circuit.conductors, of_circuit(network, circuit));
+    ++ways[at(circuit.board)];
+    if (!circuit.motor) continue;
+    const std::size_t source = at(tree.source_of[at(circuit.board)]);
+    loading.motors[source] += circuit.load.value;
+    if (!circuit.load.given) loading.motors_unknown[source] = models::address(network, circuit);
   }
   for (auto b = tree.order.rbegin(); b != tree.order.rend(); ++b) {
-    const PerLine& here = lines[at(*b)];
-    loading.demand[at(*b)] = {*std::max_element(here.amps.begin(), here.amps.end()), here.pf(), here.known, false,
-                                 here.needs};
+    PerLine& here = lines[at(*b)];
     const int f = tree.feeder[at(*b)];
+    if (ways[at(*b)] == 0) {
+      // A board that feeds nothing yet: what it will deliver is not known.
+      here.known = false;
+      here.needs = f < 0 ? "demand of board " + network.boards[at(*b)].name : "demand of " + network.submains[at(f)].name;
+    }
+    loading.demand[at(*b)] = here.demand();
     if (f < 0) continue;
     const models::Submain& submain = network.submains[at(f)];
     Demand& demand = loading.submain[at(f)];
-    demand = submain.demand.given ? Demand{submain.demand.value, pf_or_one(submain.pf), true, true, ""} : loading.demand[at(*b)];
+    demand = declared_or(submain.demand, submain.pf, loading.demand[at(*b)]);
     lines[at(submain.from)].add(submain.conductors, demand);
+    ++ways[at(submain.from)];
   }
   for (const int b : tree.order) {
     Drop& drop = loading.drop[at(b)];
     const Source& source = network.sources[at(tree.source_of[at(b)])];
     const int f = tree.feeder[at(b)];
     if (f < 0) {
-      const Demand& demand = loading.demand[at(b)];
+      Demand& demand = loading.source[at(tree.source_of[at(b)])];
+      demand = declared_or(source.demand, source.pf, loading.demand[at(b)]);
       if (!source.tails.present && !source.transformer) continue;
       if (!demand.known) {
         drop = {0, false, demand.needs, 0};
         continue;
       }
-      const Load load{demand.amps, demand.pf, 0.0};
+      const Load load{demand.amps, demand.pf, source.tails.Iz.given ? source.tails.Iz.value : 0.0, demand.unbalance()};
       if (source.tails.present) {
         ConductorSet all = source.lines;
         all.add(Conductor::N);
@@ -150,10 +185,21 @@ Loading load_network(const Network& network, const StateTree& tree) {
       drop.needs = demand.needs;
     }
     drop.share += run_drop(network, submain.cable, submain.conductors, submain.length.value / submain.in_parallel,
-                           {demand.amps, demand.pf, submain.Iz.given ? submain.Iz.value : 0.0}, source);
+                           {demand.amps, demand.pf, submain.Iz.given ? submain.Iz.value : 0.0, demand.unbalance()}, source);
     drop.length += submain.length.value;
   }
   return loading;
+}
+
+Demand group_demand(const Network& network, const Loading& loading, int board, int group) {
+  PerLine sum;
+  for (const models::Circuit& circuit : network.circuits)
+    if (circuit.board == board && circuit.group == group) sum.add(circuit.conductors, of_circuit(network, circuit));
+  for (std::size_t m = 0; m < network.submains.size(); ++m)
+    if (network.submains[m].from == board && network.submains[m].group == group)
+      sum.add(network.submains[m].conductors, loading.submain[m]);
+  const models::Group& of = network.boards[at(board)].groups[at(group)];
+  return declared_or(of.demand, {}, sum.demand());
 }
 
 }  // namespace sunder::solver

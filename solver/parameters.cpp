@@ -7,6 +7,7 @@
 #include <cmath>
 
 #include "models/registry.h"
+#include "solver/faults.h"
 
 namespace sunder::solver {
 namespace {
@@ -62,6 +63,12 @@ std::optional<std::string> change_cable(const Network& network, Cable& cable, co
     if (c.name == "singles-pvc-cu") singles = &c;
   }
   if (of == nullptr || singles == nullptr) return "no cable construction '" + name + "'";
+  // Where the cpc is follows the construction, as it does where the netlist does not say.
+  if (of->built_in_cpc != cpc.built_in && (cpc.built_in || cpc.core)) {
+    cpc.built_in = of->built_in_cpc;
+    cpc.core = !of->built_in_cpc;
+    cpc.core_area = 0;
+  }
   Cable changed;
   if (auto error = models::resolve_cable(*of, std::get<double>(area), cpc, cable.n_loaded, cable.with_neutral, *singles, changed))
     return error->message;
@@ -70,32 +77,58 @@ std::optional<std::string> change_cable(const Network& network, Cable& cable, co
   return std::nullopt;
 }
 
+std::vector<std::string> sizes_of(const Network& network, const Cable& cable) {
+  std::vector<std::string> sizes;
+  for (const models::CableConstruction& c : network.constructions) {
+    if (c.name != cable.construction) continue;
+    for (const models::CableSize& size : c.sizes) sizes.push_back(models::format_quantity(size.area, Quantity::area));
+  }
+  return sizes;
+}
+
+// The same text with every rating of the family: "B 16 A 6 kA class 3", "B 20 A 6 kA class 3", ...
+std::vector<std::string> ratings_of(const Network& network, const models::Device& device) {
+  std::vector<std::string> texts;
+  const std::string rating = " " + models::format_number(device.In) + " A";
+  const std::size_t at = device.text.find(rating);
+  if (at == std::string::npos) return texts;
+  for (const models::DeviceFamily& family : network.families) {
+    if (family.name != device.family) continue;
+    for (const double In : family.ratings)
+      texts.push_back(device.text.substr(0, at) + " " + models::format_number(In) + " A" + device.text.substr(at + rating.size()));
+  }
+  return texts;
+}
+
 // Keys that circuits and submains share. `get` finds the element again in the copy that is changed.
 template <class Get>
-std::vector<Parameter> run_parameters(const std::string& address, const VaryRequest& request, Get get, bool circuit) {
+std::vector<Parameter> run_parameters(const std::string& address, const VaryRequest& request, Network network, Get get,
+                                      bool circuit) {
   std::vector<Parameter> all;
   auto value = [&](const char* key, Quantity unit, auto member) {
     all.push_back(number(address + "." + key, unit,
-                         [get, member](Network& network, double v) {
-                           auto& target = get(network).*member;
+                         [get, member](Network& n, double v) {
+                           auto& target = get(n).*member;
                            target.value = v;
                            target.given = true;
                          },
-                         circuit && std::string(key) != "load"));
+                         // a power factor moves the mean of every feed above
+                         circuit && std::string(key) != "pf"));
   };
   using Element = std::remove_reference_t<decltype(get(std::declval<Network&>()))>;
   value("length", Quantity::length, &Element::length);
   value("Iz", Quantity::current, &Element::Iz);
   value("pf", Quantity::ratio, &Element::pf);
   all.push_back(number(address + ".in_parallel", Quantity::count,
-                       [get](Network& network, double v) { get(network).in_parallel = std::max(1, static_cast<int>(std::lround(v))); },
+                       [get](Network& n, double v) { get(n).in_parallel = std::max(1, static_cast<int>(std::lround(v))); },
                        circuit));
   Parameter cable;
   cable.address = address + ".cable";
   cable.numeric = false;
   cable.unit = Quantity::area;
   cable.own_run_only = circuit;
-  cable.set_text = [get](Network& network, const std::string& text) { return change_cable(network, get(network).cable, text); };
+  cable.catalogue = sizes_of(network, get(network).cable);
+  cable.set_text = [get](Network& n, const std::string& text) { return change_cable(n, get(n).cable, text); };
   all.push_back(cable);
   if (request.read_device) {
     Parameter device;
@@ -103,10 +136,11 @@ std::vector<Parameter> run_parameters(const std::string& address, const VaryRequ
     device.numeric = false;
     device.unit = Quantity::current;
     device.own_run_only = circuit;
-    device.set_text = [get, read = request.read_device](Network& network, const std::string& text) -> std::optional<std::string> {
-      auto read_it = read(network, text);
+    device.catalogue = ratings_of(network, get(network).device);
+    device.set_text = [get, read = request.read_device](Network& n, const std::string& text) -> std::optional<std::string> {
+      auto read_it = read(n, text);
       if (auto* error = std::get_if<std::string>(&read_it)) return *error;
-      auto& element = get(network);
+      auto& element = get(n);
       const models::Origin at = element.device.at;
       element.device = std::get<models::Device>(read_it);
       element.device.at = at;
@@ -166,6 +200,10 @@ std::vector<Parameter> source_parameters(const Source& source, std::size_t index
     add_loops(all, name, index, true, loop_unit);
     add_loops(all, name, index, false, loop_unit);
   }
+  all.push_back(number(name + ".demand", Quantity::current, [index](Network& network, double v) {
+    network.sources[index].demand.value = v;
+    network.sources[index].demand.given = true;
+  }));
   if (source.tails.present)
     all.push_back(number(name + ".tails.length", Quantity::length,
                          [index](Network& network, double v) { network.sources[index].tails.length = v; }));
@@ -185,7 +223,7 @@ std::vector<Parameter> parameters_of(const Network& network, const VaryRequest& 
     if (network.sources[i].name == element) return source_parameters(network.sources[i], i, loop_unit(request));
   for (std::size_t i = 0; i < network.submains.size(); ++i)
     if (network.submains[i].name == element) {
-      all = run_parameters(element, request, [i](Network& n) -> Submain& { return n.submains[i]; }, false);
+      all = run_parameters(element, request, network, [i](Network& n) -> Submain& { return n.submains[i]; }, false);
       all.push_back(number(element + ".demand", Quantity::current, [i](Network& n, double v) {
         n.submains[i].demand.value = v;
         n.submains[i].demand.given = true;
@@ -194,7 +232,10 @@ std::vector<Parameter> parameters_of(const Network& network, const VaryRequest& 
     }
   for (std::size_t i = 0; i < network.circuits.size(); ++i)
     if (models::address(network, network.circuits[i]) == element) {
-      all = run_parameters(element, request, [i](Network& n) -> Circuit& { return n.circuits[i]; }, true);
+      all = run_parameters(element, request, network, [i](Network& n) -> Circuit& { return n.circuits[i]; }, true);
+      if (network.circuits[i].ring)
+        all.erase(std::remove_if(all.begin(), all.end(), [&](const Parameter& p) { return p.address == element + ".in_parallel"; }),
+                  all.end());
       // A ring reaches as far as its last spur.
       for (const models::Spur& spur : network.circuits[i].spurs) all.front().least = std::max(all.front().least, spur.at);
       all.push_back(number(element + ".load", Quantity::current, [i](Network& n, double v) {
@@ -211,6 +252,58 @@ std::vector<Parameter> parameters_of(const Network& network, const VaryRequest& 
 }
 
 }  // namespace
+
+namespace {
+
+std::string_view kind_of(const Network& network, const std::string& element) {
+  for (const Source& source : network.sources)
+    if (source.name == element) return source.transformer ? "transformer" : "supply";
+  for (const Submain& submain : network.submains)
+    if (submain.name == element) return "submain";
+  for (const models::Electrode& electrode : network.electrodes)
+    if (electrode.name == element) return "electrode";
+  return "circuit";
+}
+
+// The range that the netlist's vocabulary gives a key: "minimum.Ze" of a supply is Ze of supply.minimum.
+Parameter within_range(Parameter parameter, std::string_view element_kind, const std::string& key) {
+  std::string kind_name(element_kind);
+  std::string name = key;
+  if (const std::size_t dot = key.find('.'); dot != std::string::npos) {
+    kind_name += "." + key.substr(0, dot);
+    name = key.substr(dot + 1);
+  }
+  parameter.whole = parameter.unit == Quantity::count;
+  const models::Kind* kind = models::find_kind(kind_name);
+  const models::Key* found = kind == nullptr ? nullptr : models::find_key(*kind, name);
+  if (found == nullptr || (found->least == 0 && found->most == 0)) return parameter;
+  parameter.least = std::max(parameter.least, found->least);
+  parameter.most = found->most;
+  parameter.zero_allowed = parameter.least > found->least ? false : !found->above;
+  return parameter;
+}
+
+}  // namespace
+
+std::optional<std::string> contradiction(const Network& network) {
+  for (const Source& source : network.sources) {
+    models::ConductorSet all = source.lines;
+    all.add(models::Conductor::N);
+    all.add(models::Conductor::PE);
+    for (const Fault fault : kAllFaults) {
+      const auto at = [&](Condition condition) {
+        return fault_current(network, source, ConductorMatrix::Zero(), all, condition, fault);
+      };
+      const FaultCurrent most = at(Condition::maximum);
+      const FaultCurrent least = at(Condition::minimum);
+      if (!most.usable() || !least.usable() || least.amps <= most.amps * (1 + 1e-9)) continue;
+      return fmt::format("the least {} current of '{}' would be {}, above its greatest of {}", word(fault), source.name,
+                         models::format_quantity(least.amps, Quantity::current),
+                         models::format_quantity(most.amps, Quantity::current));
+    }
+  }
+  return std::nullopt;
+}
 
 std::variant<Parameter, std::string> find_parameter(const Network& network, const VaryRequest& request) {
   const std::string& key = request.key;
@@ -235,7 +328,7 @@ std::variant<Parameter, std::string> find_parameter(const Network& network, cons
   }
   std::vector<std::string_view> keys;
   for (const Parameter& parameter : all) {
-    if (parameter.address == key) return parameter;
+    if (parameter.address == key) return within_range(parameter, kind_of(network, element), key.substr(dot + 1));
     keys.emplace_back(std::string_view(parameter.address).substr(dot + 1));
   }
   const std::string_view near = models::nearest_name(key.substr(dot + 1), keys);
@@ -252,6 +345,10 @@ std::variant<double, std::string> read_value(const Parameter& parameter, const s
     return fmt::format("{}: {}", parameter.address, error->message);
   const double value = std::get<double>(parsed);
   const bool possible = parameter.zero_allowed ? value >= parameter.least : value > parameter.least;
+  if (parameter.whole && value != std::floor(value)) return fmt::format("{} is {}; it must be a whole number", parameter.address, text);
+  if (value > parameter.most)
+    return fmt::format("{} is {}; it must be at most {}", parameter.address, text,
+                       models::format_quantity(parameter.most, parameter.unit));
   if (!possible || !std::isfinite(value))
     return fmt::format("{} is {}; it must be {} {}", parameter.address, text, parameter.zero_allowed ? "at least" : "above",
                        models::format_quantity(parameter.least, parameter.unit));

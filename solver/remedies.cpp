@@ -38,16 +38,12 @@ std::optional<Run> find_run(Network& network, const std::string& address) {
   return std::nullopt;
 }
 
-int rank(Verdict verdict) {
-  return verdict == Verdict::fails ? 0 : verdict == Verdict::undecided ? 1 : 2;
-}
-
 class Mender {
  public:
   explicit Mender(const Network& network, const std::vector<Finding>& findings) : retrial_(network) {
     for (const Finding& finding : findings) {
-      const auto [place, added] = before_.try_emplace(finding_key(finding), rank(finding.verdict));
-      if (!added) place->second = std::min(place->second, rank(finding.verdict));
+      const auto [place, added] = before_.try_emplace(finding_key(finding), std::min(2, severity(finding.verdict)));
+      if (!added) place->second = std::min(place->second, std::min(2, severity(finding.verdict)));
     }
   }
 
@@ -78,7 +74,7 @@ class Mender {
     for (const Finding& finding : now) {
       const auto earlier = before_.find(finding_key(finding));
       const bool own = finding.subject == subject_;
-      const bool worse = earlier != before_.end() && rank(finding.verdict) < earlier->second;
+      const bool worse = earlier != before_.end() && std::min(2, severity(finding.verdict)) < earlier->second;
       const bool unmet = own && finding.verdict != Verdict::meets && finding.verdict != Verdict::noted;
       if (!worse && !unmet) continue;
       remedy.holds = false;

@@ -4,6 +4,7 @@
 /// only; text is made when they are printed (plots/).
 #pragma once
 
+#include <initializer_list>
 #include <limits>
 #include <optional>
 #include <string>
@@ -19,6 +20,14 @@ inline constexpr double kNone = std::numeric_limits<double>::quiet_NaN();  ///< 
 enum class Condition { maximum, minimum };
 enum class Fault { three_phase, line_line, line_neutral, line_earth };
 enum class Verdict { meets, fails, undecided, noted };
+
+inline constexpr std::initializer_list<Fault> kAllFaults{Fault::three_phase, Fault::line_line, Fault::line_neutral,
+                                                        Fault::line_earth};
+
+/// 0 fails, 1 undecided, 2 meets, 3 noted: the less, the more it governs.
+[[nodiscard]] constexpr int severity(Verdict verdict) noexcept {
+  return verdict == Verdict::fails ? 0 : verdict == Verdict::undecided ? 1 : verdict == Verdict::meets ? 2 : 3;
+}
 
 [[nodiscard]] const char* word(Condition condition) noexcept;  ///< "maximum"
 [[nodiscard]] const char* word(Fault fault) noexcept;          ///< "line-earth"
@@ -98,7 +107,7 @@ struct ScheduleRow {
   double Ib = kNone, In = kNone, Iz = kNone;  ///< [A]
   double drop = kNone;     ///< [1] from the supply terminals
   double Zs = kNone;       ///< [ohm] at the minimum condition
-  double least = kNone;    ///< [A] least line-earth or line-neutral current at the far end
+  double least = kNone;    ///< [A] least line-earth, line-neutral or line-line current at the far end
   double greatest = kNone; ///< [A] greatest current at the device
   double time = kNone;     ///< [s] latest disconnection, infinite: never
   double limit = kNone;    ///< [s]

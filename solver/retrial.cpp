@@ -9,13 +9,13 @@ namespace sunder::solver {
 
 Retrial::Retrial(const models::Network& network) : network_(network) {
   auto put = [&](const std::string& address, SubjectKind kind, std::size_t index) {
-    places_.emplace(address, Place{kind, static_cast<int>(index)});
+    places_.emplace(address, Subject{kind, static_cast<int>(index)});
   };
   for (std::size_t i = 0; i < network_.circuits.size(); ++i)
     put(models::address(network_, network_.circuits[i]), SubjectKind::circuit, i);
   for (std::size_t i = 0; i < network_.submains.size(); ++i) put(network_.submains[i].name, SubjectKind::submain, i);
   for (std::size_t i = 0; i < network_.sources.size(); ++i)
-    if (network_.sources[i].tails.present) put(network_.sources[i].name, SubjectKind::tails, i);
+    if (has_origin(network_.sources[i])) put(network_.sources[i].name, SubjectKind::tails, i);
   for (std::size_t i = 0; i < network_.boards.size(); ++i) {
     put(network_.boards[i].name, SubjectKind::board, i);
     for (const models::Group& group : network_.boards[i].groups)
@@ -35,12 +35,8 @@ std::vector<Finding> Retrial::findings(const std::string& address, const std::st
   const auto [first, last] = places_.equal_range(address);
   for (auto place = first; place != last; ++place) {
     for (const StateSolution& solution : solutions_) {
-      const std::vector<Subject> live = subjects(network_, solution);
-      const bool present = std::any_of(live.begin(), live.end(), [&](const Subject& s) {
-        return s.kind == place->second.kind && s.index == place->second.index;
-      });
-      if (!present) continue;
-      const Situation s = situation(network_, solution, {place->second.kind, place->second.index});
+      if (!is_live(network_, solution, place->second)) continue;
+      const Situation s = situation(network_, solution, place->second);
       for (const Check& candidate : checks()) {
         if (check != nullptr && candidate.info.name != *check) continue;
         if (!candidate.applies(s)) continue;

@@ -31,15 +31,11 @@ class Retrial {
   [[nodiscard]] std::optional<Finding> one(const std::string& subject, const std::string& key) const;
 
  private:
-  struct Place {
-    SubjectKind kind;
-    int index;
-  };
   [[nodiscard]] std::vector<Finding> findings(const std::string& address, const std::string* check) const;
 
   models::Network network_;
   std::vector<StateSolution> solutions_;
-  std::unordered_multimap<std::string, Place> places_;
+  std::unordered_multimap<std::string, Subject> places_;
 };
 
 }  // namespace sunder::solver

@@ -19,11 +19,10 @@ using models::Quantity;
 // Worst verdict of each subject; what is only noted counts as met.
 std::unordered_map<std::string, Verdict> worst_verdicts(const Network& network) {
   std::unordered_map<std::string, Verdict> worst;
-  auto rank = [](Verdict v) { return v == Verdict::fails ? 0 : v == Verdict::undecided ? 1 : 2; };
   for (const Finding& finding : judge_network(network)) {
     const auto [place, added] = worst.try_emplace(finding.subject, Verdict::meets);
     const Verdict verdict = finding.verdict == Verdict::noted ? Verdict::meets : finding.verdict;
-    if (rank(verdict) < rank(place->second)) place->second = verdict;
+    if (severity(verdict) < severity(place->second)) place->second = verdict;
   }
   return worst;
 }
@@ -57,17 +56,15 @@ ScheduleRow row_of(const Situation& s) {
   if (s.device->present()) row.In = s.device->In;
   if (s.drop.known) row.drop = s.drop.share;
   const FaultCurrent& earth = of(s.far_min, Fault::line_earth);
+  row.limit = time_limit(s).seconds;
   if (earth.usable()) {
     row.Zs = earth.ohms;
-    const TimeLimit limit = time_limit(s);
-    row.limit = limit.seconds;
-    const Disconnection cleared = disconnection(s.path, earth.amps, limit.seconds);
+    const Disconnection cleared = disconnection(s.path, earth.amps, row.limit);
     if (cleared.by != nullptr) row.time = cleared.time;
   }
   const FaultCurrent* low = least(s.far_min, {Fault::line_earth, Fault::line_neutral, Fault::line_line}, nullptr);
   if (low != nullptr && low->known) row.least = low->amps;
-  const FaultCurrent* high = greatest(
-      s.origin_max, {Fault::three_phase, Fault::line_line, Fault::line_neutral, Fault::line_earth}, nullptr);
+  const FaultCurrent* high = greatest(s.origin_max, kAllFaults, nullptr);
   if (high != nullptr && high->known) row.greatest = high->amps;
   return row;
 }
@@ -99,6 +96,7 @@ std::vector<ScheduleRow> schedule(const Network& network) {
       harder(kept.least, row.least, false);
       harder(kept.greatest, row.greatest, true);
       harder(kept.time, row.time, true);
+      harder(kept.limit, row.limit, false);
     }
   }
   std::stable_partition(rows.begin(), rows.end(), [](const ScheduleRow& row) { return row.submain; });

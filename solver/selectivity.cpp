@@ -113,7 +113,6 @@ PairVerdict overcurrent_selectivity(const Device& down, const Device& up, double
   }
   if (good == 0) {
     verdict.selectivity = Selectivity::none;
-    verdict.limit = from;
     verdict.basis = "curves meet where " + down.text + " first operates";
     return verdict;
   }
@@ -141,14 +140,19 @@ PairVerdict residual_selectivity(const Device& down, const Device& up, double av
   }
   const bool ratio = up.IdN >= kRatio * down.IdN * (1 - 1e-12);
   const bool delayed = up.selective_residual && !down.selective_residual;
-  if (ratio && delayed) {
+  const bool types = up.residual_type >= down.residual_type;  // AC < A < F < B must not fall going upstream
+  if (ratio && delayed && types) {
     verdict.selectivity = Selectivity::total;
     verdict.limit = available;
-    verdict.basis = "residual: ratio of at least 3 : 1, upstream delayed";
+    verdict.basis = "residual: ratio of at least 3 : 1, upstream delayed, type no lower";
     return verdict;
   }
   verdict.selectivity = Selectivity::none;
   verdict.limit = up.IdN / 2;
+  if (!types) {
+    verdict.basis = "residual: the type upstream (AC < A < F < B) is below the one downstream, whose currents may blind it";
+    return verdict;
+  }
   verdict.basis = !delayed ? "residual: the upstream device is not delayed above the downstream one"
                            : "residual: rated currents are less than 3 : 1";
   return verdict;

@@ -34,7 +34,8 @@ struct PairVerdict {
 [[nodiscard]] PairVerdict overcurrent_selectivity(const models::Device& downstream, const models::Device& upstream,
                                                   double available, double kappa);
 
-/// Residual currents: IdN at least 3 : 1 and the upstream one delayed (type S) above one that is not.
+/// Residual currents: IdN at least 3 : 1, the upstream one delayed (type S) above one that is not, its
+/// type (AC < A < F < B) no lower.
 /// An upstream one above a device that has none is not selective above half its IdN.
 [[nodiscard]] PairVerdict residual_selectivity(const models::Device& downstream, const models::Device& upstream,
                                                double available);

@@ -11,12 +11,10 @@ using models::Network;
 
 std::size_t at(int handle) { return static_cast<std::size_t>(handle); }
 
-constexpr std::array<Fault, 4> kFaults{Fault::three_phase, Fault::line_line, Fault::line_neutral, Fault::line_earth};
-
 Currents currents(const Network& network, const models::Source& source, const ConductorMatrix& net,
                   models::ConductorSet have, Condition condition) {
   Currents all;
-  for (const Fault fault : kFaults)
+  for (const Fault fault : kAllFaults)
     all[static_cast<std::size_t>(fault)] = fault_current(network, source, net, have, condition, fault);
   return all;
 }
@@ -86,9 +84,9 @@ void fill_tails(Situation& s, const StateSolution& solution, int index) {
   const Network& network = *s.network;
   const models::Source& source = network.sources[at(index)];
   s.address = source.name;
-  s.at = source.tails.at;
+  s.at = source.tails.present ? source.tails.at : source.at;
   s.device = &source.device;
-  s.cable = &source.tails.cable;
+  if (source.tails.present) s.cable = &source.tails.cable;
   s.length = source.tails.length;
   s.in_parallel = source.tails.in_parallel;
   s.use = models::Use::distribution;
@@ -98,6 +96,7 @@ void fill_tails(Situation& s, const StateSolution& solution, int index) {
   if (source.device.present()) s.path.push_back({&source.device, source.name, source.at, -1});
   s.far_min = currents(network, source, solution.minimum.boards[at(source.board)], s.conductors, Condition::minimum);
   s.origin_max = currents(network, source, ConductorMatrix::Zero(), s.conductors, Condition::maximum);
+  s.drop = solution.loading.drop[at(source.board)];
 }
 
 void fill_board(Situation& s, const StateSolution& solution, int index) {
@@ -115,7 +114,7 @@ void fill_board(Situation& s, const StateSolution& solution, int index) {
 }
 
 template <class Better>
-const FaultCurrent* pick(const Currents& currents, std::initializer_list<Fault> faults, Fault* which, Better better) {
+const FaultCurrent* pick(const Currents& currents, FaultList faults, Fault* which, Better better) {
   const FaultCurrent* best = nullptr;
   for (const Fault fault : faults) {
     const FaultCurrent& current = of(currents, fault);
@@ -130,6 +129,8 @@ const FaultCurrent* pick(const Currents& currents, std::initializer_list<Fault> 
 
 }  // namespace
 
+bool has_origin(const models::Source& source) { return source.tails.present || source.device.present(); }
+
 StateSolution solve_state(const Network& network, int state) {
   StateSolution solution;
   solution.tree = state_tree(network, state);
@@ -139,15 +140,28 @@ StateSolution solve_state(const Network& network, int state) {
   return solution;
 }
 
+bool is_live(const Network& network, const StateSolution& solution, Subject subject) {
+  const auto index = at(subject.index);
+  switch (subject.kind) {
+    case SubjectKind::circuit: return solution.tree.live(network.circuits[index].board);
+    // Live and feeding: a submain whose far board has a source of its own in this state is open.
+    case SubjectKind::submain: return solution.tree.feeder[at(network.submains[index].to)] == subject.index;
+    case SubjectKind::board: return solution.tree.live(subject.index);
+    case SubjectKind::tails: break;
+  }
+  const std::vector<int>& active = network.states[at(solution.tree.state)].sources;
+  return has_origin(network.sources[index]) && std::find(active.begin(), active.end(), subject.index) != active.end();
+}
+
 std::vector<Subject> subjects(const Network& network, const StateSolution& solution) {
   std::vector<Subject> all;
-  for (int c = 0; c < static_cast<int>(network.circuits.size()); ++c)
-    if (solution.tree.live(network.circuits[at(c)].board)) all.push_back({SubjectKind::circuit, c});
-  for (int m = 0; m < static_cast<int>(network.submains.size()); ++m)
-    // Live and feeding: a submain whose far board has a source of its own in this state is open.
-    if (solution.tree.feeder[at(network.submains[at(m)].to)] == m) all.push_back({SubjectKind::submain, m});
-  for (const int s : network.states[at(solution.tree.state)].sources)
-    if (network.sources[at(s)].tails.present) all.push_back({SubjectKind::tails, s});
+  auto add = [&](SubjectKind kind, std::size_t n) {
+    for (int i = 0; i < static_cast<int>(n); ++i)
+      if (is_live(network, solution, {kind, i})) all.push_back({kind, i});
+  };
+  add(SubjectKind::circuit, network.circuits.size());
+  add(SubjectKind::submain, network.submains.size());
+  add(SubjectKind::tails, network.sources.size());
   for (const int b : solution.tree.order) all.push_back({SubjectKind::board, b});
   return all;
 }
@@ -169,6 +183,7 @@ Situation situation(const Network& network, const StateSolution& solution, Subje
   }
   s.source = &network.sources[at(source)];
   s.motors = solution.loading.motors[at(source)];
+  s.motors_unknown = solution.loading.motors_unknown[at(source)];
   switch (subject.kind) {
     case SubjectKind::circuit: fill_circuit(s, solution, subject.index); break;
     case SubjectKind::submain: fill_submain(s, solution, subject.index); break;
@@ -179,20 +194,27 @@ Situation situation(const Network& network, const StateSolution& solution, Subje
   return s;
 }
 
-const FaultCurrent* greatest(const Currents& currents, std::initializer_list<Fault> faults, Fault* which) {
+const FaultCurrent* greatest(const Currents& currents, FaultList faults, Fault* which) {
   return pick(currents, faults, which, [](double a, double b) { return a > b; });
 }
 
-const FaultCurrent* least(const Currents& currents, std::initializer_list<Fault> faults, Fault* which) {
+const FaultCurrent* least(const Currents& currents, FaultList faults, Fault* which) {
   return pick(currents, faults, which, [](double a, double b) { return a < b; });
 }
+
+namespace {
+// 240 V systems are of the nominal voltage 230 V (IEC 60038): 240/230 and a hair.
+constexpr double kSameNominal = 1.045;
+}  // namespace
 
 TimeLimit time_limit(const Situation& s) {
   const models::RuleSet& rules = s.network->rules;
   const bool tt = s.source->earthing == models::Earthing::TT;
   TimeLimit limit;
   limit.assumed_use = s.kind == SubjectKind::circuit && s.use == models::Use::unknown;
-  const double In = s.device != nullptr && s.device->present() ? s.device->In : 0;
+  // A switch or residual device without overcurrent release does not rate a circuit.
+  const Protector* by = overcurrent_protector(s.path);
+  const double In = by != nullptr ? by->device->In : 0;
   const bool sockets = s.use == models::Use::sockets || s.use == models::Use::unknown;
   const bool final_circuit = s.kind == SubjectKind::circuit && s.use != models::Use::distribution &&
                              In <= (sockets ? rules.sockets_to : rules.fixed_to);
@@ -200,7 +222,7 @@ TimeLimit time_limit(const Situation& s) {
   limit.seconds = tt ? rules.distribution_tt : rules.distribution_tn;
   if (!final_circuit) return limit;
   for (const models::TimeRow& row : rules.times)
-    if (row.earthing == s.source->earthing && s.source->U0 <= row.U0_to) {
+    if (row.earthing == s.source->earthing && s.source->U0 <= row.U0_to * kSameNominal) {
       limit.seconds = row.final_circuit;
       break;
     }

@@ -52,12 +52,12 @@ struct Situation {
   bool ring = false;
   models::ConductorSet conductors;  ///< that reach its far end
   models::Use use = models::Use::unknown;
-  bool use_assumed = false;
   std::vector<Protector> path;      ///< source first
   Currents origin_max;              ///< at the line side of its device, maximum
   Currents far_min;                 ///< at its far end (ring: worst place), minimum
   Drop drop;                        ///< at its far end, from the supply terminals
   double motors = 0;                ///< rated current of all motors in this part of the network [A]
+  std::string motors_unknown;       ///< a motor there whose current is not given, "" if none
 };
 
 /// What is solved once per state and shared by every subject in it.
@@ -69,15 +69,23 @@ struct StateSolution {
 
 [[nodiscard]] StateSolution solve_state(const models::Network& network, int state);
 
+/// Whether a source has a device or conductors of its own before its board (subject kind `tails`).
+[[nodiscard]] bool has_origin(const models::Source& source);
+
 /// Subjects that are live in a state, circuits first.
 [[nodiscard]] std::vector<Subject> subjects(const models::Network& network, const StateSolution& solution);
 
+/// Whether a subject is one of them.
+[[nodiscard]] bool is_live(const models::Network& network, const StateSolution& solution, Subject subject);
+
 [[nodiscard]] Situation situation(const models::Network& network, const StateSolution& solution, Subject subject);
 
+using FaultList = std::initializer_list<Fault>;
+
 /// Greatest of the usable currents; nullptr if none is possible, an unknown one if any possible is not known.
-[[nodiscard]] const FaultCurrent* greatest(const Currents& currents, std::initializer_list<Fault> faults, Fault* which);
+[[nodiscard]] const FaultCurrent* greatest(const Currents& currents, FaultList faults, Fault* which);
 /// Least, in the same way.
-[[nodiscard]] const FaultCurrent* least(const Currents& currents, std::initializer_list<Fault> faults, Fault* which);
+[[nodiscard]] const FaultCurrent* least(const Currents& currents, FaultList faults, Fault* which);
 
 /// The disconnection time the rule set allows this run [s], with its clause.
 struct TimeLimit {

@@ -36,8 +36,9 @@ Choice missing(const Source& source, const char* condition, const char* key) {
 }
 
 // Maximum: what is not declared is bounded by what is. Without return impedance every fault current
-// equals the three-phase one; without a three-phase value Ik3 <= 2 Ik(L-N), as the line is at least
-// half of nothing less than the loop.
+// equals the three-phase one. Without a three-phase value the line is taken as half of the line-neutral
+// loop (Ik3 <= 2 Ik(L-N), which holds while the neutral is no smaller than the line; the reader lists it).
+// Nothing is bounded by the line-earth current alone: the other returns may be of less impedance.
 Choice greatest(const Source& source, const Bound& bound, Fault fault, double volts, double volts_to_neutral) {
   const bool through_return = fault == Fault::line_neutral || fault == Fault::line_earth;
   if (fault == Fault::line_neutral && bound.line_neutral.given()) return from_loop(bound.line_neutral, volts);
@@ -46,15 +47,15 @@ Choice greatest(const Source& source, const Bound& bound, Fault fault, double vo
     if (through_return && bound.three_phase.amps > 0) return from_loop(bound.three_phase, volts_to_neutral);
     return from_loop(bound.three_phase, volts);
   }
-  // One line only: the greater of the declared loop currents bounds the other.
-  const Loop* best = nullptr;
-  for (const Loop* loop : {&bound.line_neutral, &bound.line_earth})
-    if (loop->given() && (best == nullptr || loop_ohms(*loop, volts_to_neutral) < loop_ohms(*best, volts_to_neutral)))
-      best = loop;
-  if (best == nullptr) return missing(source, "maximum", source.lines.lines() > 1 ? "three_phase" : "line_neutral");
-  Choice choice = from_loop(*best, volts_to_neutral);
-  // The line may hold as little as half of the loop where the return equals it, or less: a return of
-  // greater impedance than the line is common, a smaller one is not.
+  const bool combined = source.earthing == models::Earthing::TN_C_S;
+  const Loop& neutral = bound.line_neutral.given() || !combined ? bound.line_neutral : bound.line_earth;
+  if (!neutral.given()) {
+    if (fault == Fault::line_earth) return missing(source, "maximum", "line_earth");
+    return missing(source, "maximum", source.lines.lines() > 1 ? "three_phase" : "line_neutral");
+  }
+  // In TN-S the protective return has an impedance of its own; an electrode's is never less than a neutral's.
+  if (fault == Fault::line_earth && source.earthing == models::Earthing::TN_S) return missing(source, "maximum", "line_earth");
+  Choice choice = from_loop(neutral, volts_to_neutral);
   if (!through_return) choice.ohms /= 2;
   return choice;
 }

@@ -15,17 +15,6 @@ namespace {
 
 using models::Network;
 
-// fails over undecided over meets; what is only noted last.
-int rank(Verdict verdict) {
-  switch (verdict) {
-    case Verdict::fails: return 0;
-    case Verdict::undecided: return 1;
-    case Verdict::meets: return 2;
-    case Verdict::noted: break;
-  }
-  return 3;
-}
-
 double margin_or_last(const Finding& finding) {
   return std::isnan(finding.margin) ? std::numeric_limits<double>::infinity() : finding.margin;
 }
@@ -33,7 +22,7 @@ double margin_or_last(const Finding& finding) {
 }  // namespace
 
 bool governs(const Finding& a, const Finding& b) {
-  if (rank(a.verdict) != rank(b.verdict)) return rank(a.verdict) < rank(b.verdict);
+  if (severity(a.verdict) != severity(b.verdict)) return severity(a.verdict) < severity(b.verdict);
   return margin_or_last(a) < margin_or_last(b);
 }
 
@@ -48,6 +37,8 @@ std::vector<Finding> judge_network(const Network& network, bool every_state,
   for (std::size_t state = 0; state < network.states.size(); ++state) {
     const StateSolution solution = solve_state(network, static_cast<int>(state));
     const std::vector<Subject> list = subjects(network, solution);
+    // Findings are large: growing the list again and again would cost more than judging.
+    if (every_state || all.empty()) all.reserve(all.size() + list.size() * checks().size());
     for (std::size_t i = 0; i < list.size(); ++i) {
       if (progress) progress(state * list.size() + i, network.states.size() * list.size());
       const Situation s = situation(network, solution, list[i]);
@@ -75,12 +66,19 @@ std::vector<Finding> run_checks(const Network& network, const CheckOptions& opti
   std::vector<Finding> findings = judge_network(network, options.every_state, options.progress);
   auto order = [](const Finding& a, const Finding& b) {
     static constexpr int kOrder[] = {0, 1, 3, 2};  // fails, undecided, noted before meets
-    const int ra = kOrder[rank(a.verdict)];
-    const int rb = kOrder[rank(b.verdict)];
+    const int ra = kOrder[severity(a.verdict)];
+    const int rb = kOrder[severity(b.verdict)];
     if (ra != rb) return ra < rb;
     return margin_or_last(a) < margin_or_last(b);
   };
-  std::stable_sort(findings.begin(), findings.end(), order);
+  std::vector<std::size_t> places(findings.size());
+  for (std::size_t i = 0; i < places.size(); ++i) places[i] = i;
+  std::stable_sort(places.begin(), places.end(),
+                   [&](std::size_t a, std::size_t b) { return order(findings[a], findings[b]); });
+  std::vector<Finding> sorted;
+  sorted.reserve(findings.size());
+  for (const std::size_t place : places) sorted.push_back(std::move(findings[place]));
+  findings = std::move(sorted);
   if (options.remedies) add_remedies(network, findings);
   return findings;
 }

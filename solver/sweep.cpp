@@ -7,6 +7,7 @@
 #include <cmath>
 #include <map>
 #include <unordered_map>
+#include <unordered_set>
 
 #include "solver/parameters.h"
 #include "solver/retrial.h"
@@ -112,8 +113,8 @@ void add_stretch(Sweep& sweep, const Finding& finding, double from, double to) {
 
 void follow(Retrial& retrial, const Parameter& parameter, const std::vector<double>& grid,
             const std::vector<ByKey>& sampled, const std::string& key, Sweep& sweep) {
-  const Finding& first = sampled.front().at(key);
-  Track track(retrial, parameter, first.subject, key);
+  const auto with = std::find_if(sampled.begin(), sampled.end(), [&](const ByKey& map) { return map.count(key) > 0; });
+  Track track(retrial, parameter, with->at(key).subject, key);
   for (std::size_t i = 0; i < grid.size(); ++i)
     if (const auto found = sampled[i].find(key); found != sampled[i].end()) track.put(grid[i], found->second);
   std::vector<double> values = grid;
@@ -140,12 +141,19 @@ void follow(Retrial& retrial, const Parameter& parameter, const std::vector<doub
 
 std::variant<Sweep, std::string> vary_range(const Network& network, const Parameter& parameter, std::vector<double> grid,
                                             const std::function<void(std::size_t, std::size_t)>& progress) {
+  Network ends = network;
+  for (const double end : {grid.front(), grid.back()}) {
+    parameter.set(ends, end);
+    if (auto why = contradiction(ends))
+      return fmt::format("{} = {}: {}", parameter.address, models::format_quantity(end, parameter.unit), *why);
+  }
   Sweep sweep;
   sweep.key = parameter.address;
   sweep.unit = parameter.unit;
   Retrial retrial(network);
   std::vector<ByKey> sampled;
   std::vector<std::string> keys;
+  std::unordered_set<std::string> known_keys;
   for (std::size_t i = 0; i < grid.size(); ++i) {
     parameter.set(retrial.network(), grid[i]);
     const std::vector<Finding> findings = judge_network(retrial.network());
@@ -153,7 +161,7 @@ std::variant<Sweep, std::string> vary_range(const Network& network, const Parame
     point.value = grid[i];
     for (const Finding& finding : findings) {
       point.findings.push_back(light(finding));
-      if (i == 0) keys.push_back(finding_key(finding));
+      if (known_keys.insert(finding_key(finding)).second) keys.push_back(finding_key(finding));
     }
     sampled.push_back(by_key(point.findings));
     sweep.points.push_back(std::move(point));
@@ -161,7 +169,7 @@ std::variant<Sweep, std::string> vary_range(const Network& network, const Parame
   }
   std::size_t done = grid.size();
   for (const std::string& key : keys) {
-    if (judged(sampled.front().at(key).verdict)) follow(retrial, parameter, grid, sampled, key, sweep);
+    follow(retrial, parameter, grid, sampled, key, sweep);
     if (progress) progress(++done, grid.size() + keys.size());
   }
   std::stable_sort(sweep.flips.begin(), sweep.flips.end(), [](const Flip& a, const Flip& b) { return a.at < b.at; });
@@ -169,7 +177,7 @@ std::variant<Sweep, std::string> vary_range(const Network& network, const Parame
 }
 
 std::variant<Sweep, std::string> vary_catalogue(const Network& network, const Parameter& parameter,
-                                                const std::vector<std::string>& values,
+                                                const std::vector<std::string>& values, bool leave_out_unfit,
                                                 const std::function<void(std::size_t, std::size_t)>& progress) {
   Sweep sweep;
   sweep.key = parameter.address;
@@ -177,12 +185,15 @@ std::variant<Sweep, std::string> vary_catalogue(const Network& network, const Pa
   sweep.catalogue = true;
   Network changed = network;
   for (std::size_t i = 0; i < values.size(); ++i) {
-    if (auto error = parameter.set_text(changed, values[i])) return fmt::format("{}: {}", parameter.address, *error);
+    if (auto error = parameter.set_text(changed, values[i])) {
+      if (leave_out_unfit) continue;
+      return fmt::format("{}: {}", parameter.address, *error);
+    }
     SweepPoint point;
-    point.value = static_cast<double>(i);
+    point.value = static_cast<double>(sweep.points.size());
     point.text = values[i];
     for (const Finding& finding : judge_network(changed)) point.findings.push_back(light(finding));
-    if (i > 0) {
+    if (!sweep.points.empty()) {
       const ByKey before = by_key(sweep.points.back().findings);
       for (const Finding& finding : point.findings) {
         const auto earlier = before.find(finding_key(finding));
@@ -198,6 +209,7 @@ std::variant<Sweep, std::string> vary_catalogue(const Network& network, const Pa
     sweep.points.push_back(std::move(point));
     if (progress) progress(i + 1, values.size());
   }
+  if (sweep.points.empty()) return fmt::format("{}: none of the values fits", parameter.address);
   return sweep;
 }
 
@@ -209,10 +221,13 @@ std::variant<Sweep, std::string> vary(const Network& network, const VaryRequest&
   if (auto* error = std::get_if<std::string>(&found)) return *error;
   const Parameter& parameter = std::get<Parameter>(found);
   if (!parameter.numeric) {
+    if (request.values.size() == 1 && request.values.front() == "all" && !parameter.catalogue.empty())
+      return vary_catalogue(network, parameter, parameter.catalogue, true, progress);
     if (request.values.empty())
-      return fmt::format("{} is not a range; give its values with --values, for example --values \"25 mm2\",\"35 mm2\"",
+      return fmt::format("{} is not a range; give its values with --values, for example --values \"25 mm2,35 mm2\", or "
+                         "--values all",
                          parameter.address);
-    return vary_catalogue(network, parameter, request.values, progress);
+    return vary_catalogue(network, parameter, request.values, false, progress);
   }
   std::vector<double> grid;
   if (!request.values.empty()) {
@@ -225,6 +240,7 @@ std::variant<Sweep, std::string> vary(const Network& network, const VaryRequest&
     grid.erase(std::unique(grid.begin(), grid.end()), grid.end());
     return vary_range(network, parameter, grid, progress);
   }
+  if (parameter.whole) return fmt::format("{} is a count; give its values with --values, for example --values 1,2,3", parameter.address);
   auto from = read_value(parameter, request.from);
   if (auto* error = std::get_if<std::string>(&from)) return *error;
   auto to = read_value(parameter, request.to);

@@ -84,4 +84,13 @@ std::optional<std::string> write_file(const std::string& path, std::string_view 
   return pending.commit(if_exists);
 }
 
+std::string same_file(const std::string& path, const std::vector<std::string>& files) {
+  if (path.empty()) return {};
+  for (const std::string& file : files) {
+    std::error_code trouble;  // a file that does not exist is no other
+    if (!file.empty() && std::filesystem::equivalent(path, file, trouble) && !trouble) return file;
+  }
+  return {};
+}
+
 }  // namespace sunder::plots

@@ -6,6 +6,7 @@
 #include <optional>
 #include <string>
 #include <string_view>
+#include <vector>
 
 namespace sunder::plots {
 
@@ -37,5 +38,8 @@ class PendingFile {
 /// file that already exists.
 [[nodiscard]] std::optional<std::string> write_file(const std::string& path, std::string_view text,
                                                     IfExists if_exists = IfExists::replace);
+
+/// The first of `files` that `path` names, by whatever way or link; "" where it is none of them.
+[[nodiscard]] std::string same_file(const std::string& path, const std::vector<std::string>& files);
 
 }  // namespace sunder::plots

@@ -138,9 +138,8 @@ class BoardOf {
   }
   [[nodiscard]] std::string operator()(const std::string& subject) const {
     if (const auto found = boards_.find(subject); found != boards_.end()) return found->second;
-    const std::string front = subject.substr(0, subject.find_first_of("/("));
-    const std::string trimmed = front.substr(0, front.find_last_not_of(' ') + 1);
-    if (const auto found = boards_.find(trimmed); found != boards_.end()) return found->second;
+    const std::string front = subject.substr(0, subject.find_first_of("/."));
+    if (const auto found = boards_.find(front); found != boards_.end()) return found->second;
     return "(elsewhere)";
   }
 

@@ -27,8 +27,7 @@ Finding judge_device(const Situation& s, const Device& device, const std::string
   finding.condition = word(Condition::maximum);
   finding.clause = s.network->rules.capacity_clause;
   Fault fault = Fault::three_phase;
-  const FaultCurrent* current = greatest(
-      s.origin_max, {Fault::three_phase, Fault::line_line, Fault::line_neutral, Fault::line_earth}, &fault);
+  const FaultCurrent* current = greatest(s.origin_max, kAllFaults, &fault);
   if (current == nullptr) {
     lack(finding, "conductors of " + s.address, "no fault is possible on the conductors given");
     return finding;
@@ -60,6 +59,8 @@ Finding judge_device(const Situation& s, const Device& device, const std::string
     return finding;
   }
   compare_upper(finding, amps, device.Icn, Quantity::current);
+  if (finding.verdict == Verdict::meets && !s.motors_unknown.empty())
+    lack(finding, "load of " + s.motors_unknown, "a motor's rated current is not given, so its part is not bounded");
   finding.summary = fmt::format("{} may flow ({}); {} breaks {}", say(amps, Quantity::current), word(fault),
                                 device.text, say(device.Icn, Quantity::current));
   weigh_confidence(finding);
@@ -67,7 +68,8 @@ Finding judge_device(const Situation& s, const Device& device, const std::string
 }
 
 bool applies(const Situation& s) {
-  if (s.kind == SubjectKind::tails) return false;  // the distributor's device
+  // A supply's device is the distributor's; a transformer's is not.
+  if (s.kind == SubjectKind::tails) return s.source->transformer && breaks(*s.device);
   if (s.kind != SubjectKind::board) return breaks(*s.device);
   if (breaks(s.board->incomer)) return true;
   for (const models::Group& group : s.board->groups)

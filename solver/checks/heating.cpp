@@ -20,6 +20,7 @@ struct Interval {
   double low = 0, high = 0;  // prospective, through the device [A]
   double kappa = 1.02;
   bool earth = false;        // a line-earth fault: residual elements act too
+  Fault least = Fault::line_neutral, most = Fault::line_neutral;  // what flows at either end
 };
 
 struct Worst {
@@ -34,8 +35,9 @@ Heat heat_at(const Situation& s, const Protector& by, double current, const Inte
   if (!interval.earth) return heat;
   for (const Protector& p : s.path) {
     if (p.device->residual.empty()) continue;
+    if (current > residual_capacity(*p.device)) continue;
     const double time = p.device->residual.latest.time_at(current);
-    const double total = current * current * time;
+    const double total = current * current * time * (1.0 + dc_heat(interval.kappa, time, s.network->frequency));
     if (!std::isfinite(time) || total >= heat.total) continue;
     heat.total = total;
     heat.time = time;  // a gate bounds it: whether the heat is data stays as the overcurrent part has it
@@ -45,12 +47,21 @@ Heat heat_at(const Situation& s, const Protector& by, double current, const Inte
   return heat;
 }
 
-// The greatest heat over the interval, ends and corners of the curves included.
-Worst worst_over(const Situation& s, const Protector& by, const Interval& interval) {
+// Currents at which what the residual element does may jump.
+std::vector<double> residual_steps(const models::Device& device) {
+  if (device.residual.empty()) return {};
+  std::vector<double> steps = step_currents(device.residual.latest);
+  steps.push_back(residual_capacity(device));
+  return steps;
+}
+
+// The greatest heat over the interval, ends and corners of the curves included; with `decisive`, of
+// that which is data and not a mere bound.
+Worst worst_over(const Situation& s, const Protector& by, const Interval& interval, bool decisive) {
   std::vector<double> currents = heat_corners(*by.device, interval.low, interval.high);
   if (interval.earth)
     for (const Protector& p : s.path)
-      for (const double step : step_currents(p.device->residual.latest))
+      for (const double step : residual_steps(*p.device))
         for (const double near : {step * (1 - 1e-9), step * (1 + 1e-9)})
           if (near > interval.low && near < interval.high) currents.push_back(near);
   currents.push_back(interval.low);
@@ -59,13 +70,13 @@ Worst worst_over(const Situation& s, const Protector& by, const Interval& interv
   for (const double current : currents) {
     const Heat heat = heat_at(s, by, current, interval);
     if (!(heat.time <= kLongest)) continue;  // fault clearance and disconnection judge those
-    if (heat.total <= worst.heat) continue;
+    if (heat.total <= worst.heat || (decisive && !heat.from_data)) continue;
     worst = {heat.total, current, heat.time, heat.from_data, heat.basis, heat.confidence};
   }
   return worst;
 }
 
-bool applies(const Situation& s) { return s.kind != SubjectKind::board; }
+bool applies(const Situation& s) { return s.cable != nullptr; }
 
 struct Part {
   const models::Strand* strand;
@@ -75,10 +86,10 @@ struct Part {
 };
 
 // Currents at the far end (minimum) and at the device (maximum) for a set of faults.
-bool interval_of(const Situation& s, std::initializer_list<Fault> faults, bool earth, Interval& out, std::string& needs,
+bool interval_of(const Situation& s, FaultList faults, bool earth, Interval& out, std::string& needs,
                  bool& possible) {
-  const FaultCurrent* low = least(s.far_min, faults, nullptr);
-  const FaultCurrent* high = greatest(s.origin_max, faults, nullptr);
+  const FaultCurrent* low = least(s.far_min, faults, &out.least);
+  const FaultCurrent* high = greatest(s.origin_max, faults, &out.most);
   possible = low != nullptr && high != nullptr;
   if (!possible) return false;
   if (!low->known || !high->known) {
@@ -94,7 +105,7 @@ bool interval_of(const Situation& s, std::initializer_list<Fault> faults, bool e
 
 std::vector<Part> parts_of(const Situation& s, Finding& finding) {
   std::vector<Part> parts;
-  auto add = [&](const models::Strand& strand, double share, std::initializer_list<Fault> faults, bool earth,
+  auto add = [&](const models::Strand& strand, double share, FaultList faults, bool earth,
                  const std::string& name) {
     Interval interval;
     std::string needs;
@@ -123,15 +134,18 @@ void judge_part(const Situation& s, const Protector& by, const Part& part, Findi
     return;
   }
   const double withstand = k->k * k->k * part.strand->area * part.strand->area;
-  const Worst worst = worst_over(s, by, part.interval);
-  finding.condition = word(part.interval.earth || worst.current < part.interval.high ? Condition::minimum : Condition::maximum);
-  if (worst.current >= part.interval.high) finding.condition = word(Condition::maximum);
-  finding.fault = part.interval.earth ? word(Fault::line_earth) : word(Fault::line_neutral);
+  const double square = part.share * part.share;
+  // Data that condemns the conductor somewhere is not outdone by a bound elsewhere.
+  const Worst by_data = worst_over(s, by, part.interval, true);
+  const Worst worst = by_data.heat * square > withstand ? by_data : worst_over(s, by, part.interval, false);
+  const bool at_device = worst.current >= part.interval.high;
+  finding.condition = word(at_device ? Condition::maximum : Condition::minimum);
+  finding.fault = word(at_device ? part.interval.most : part.interval.least);
   finding.confidence = models::worse(models::worse(path_confidence(s, true), worst.confidence),
                                      models::worse(k->confidence, part.strand->confidence));
   const Heat at_low = heat_at(s, by, part.interval.low, part.interval);
   if (worst.current > 0) {
-    const double heat = worst.heat * part.share * part.share;
+    const double heat = worst.heat * square;
     compare_upper(finding, heat, withstand, Quantity::let_through);
     const std::string share = part.share < 1 - 1e-12 ? fmt::format(" ({} of the current)", models::format_number(part.share, 3)) : "";
     finding.steps.push_back({"what the " + part.name + " stands", "k2 S2",
@@ -146,17 +160,18 @@ void judge_part(const Situation& s, const Protector& by, const Part& part, Findi
                                   say(heat, Quantity::let_through), say(worst.current, Quantity::current), worst.basis,
                                   say(withstand, Quantity::let_through));
     if (finding.verdict == Verdict::fails && !worst.decisive &&
-        least_heat(*by.device, worst.current) * part.share * part.share <= withstand)
-      lack(finding, fmt::format("let-through (energy class or points) of the device of {}", by.address),
-           "only a safe bound of the let-through is known and it is above what the conductor stands");
+        least_heat(*by.device, worst.current) * square <= withstand)
+      lack(finding,
+           fmt::format("{} of the device of {}",
+                       by.device->let_through.basis == models::LetThrough::Basis::energy_class
+                           ? "maker's let-through points"
+                           : "let-through (energy class or points)",
+                       by.address),
+           "only a bound of the let-through is known and it is above what the conductor stands");
   }
   if (!(at_low.time <= kLongest) && finding.verdict != Verdict::fails)
     lack(finding, "a device of " + s.address + " that clears within 5 s",
          "the least current is cleared later than 5 s: adiabatic heating proves nothing");
-}
-
-int rank(Verdict verdict) {
-  return verdict == Verdict::fails ? 0 : verdict == Verdict::undecided ? 1 : 2;
 }
 
 std::vector<Finding> judge(const Situation& s) {
@@ -192,12 +207,12 @@ std::vector<Finding> judge(const Situation& s) {
     }
     if (part.interval.earth) {
       for (const Protector& p : s.path)
-        for (const double step : step_currents(p.device->residual.latest))
-          watched.push_back(std::log(part.interval.low / step));
+        for (const double step : residual_steps(*p.device)) watched.push_back(std::log(part.interval.low / step));
     }
     weigh_confidence(finding);
-    const bool worse = rank(finding.verdict) < rank(worst.verdict) ||
-                       (rank(finding.verdict) == rank(worst.verdict) &&
+    if (finding.verdict == Verdict::undecided) finding.margin = kNone;
+    const bool worse = severity(finding.verdict) < severity(worst.verdict) ||
+                       (severity(finding.verdict) == severity(worst.verdict) &&
                         (std::isnan(worst.margin) || finding.margin < worst.margin));
     if (!any || worse) worst = finding;
     any = true;

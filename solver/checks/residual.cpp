@@ -11,6 +11,7 @@ using models::Quantity;
 
 constexpr const char* kAdditional = "additional protection";
 constexpr const char* kElectrode = "earth electrode";
+constexpr double kStable = 200;  // [ohm] above it an electrode may not be stable (BS 7671 Table 41.5, note)
 
 // The most sensitive residual current device on the way.
 const Protector* most_sensitive(const Situation& s) {
@@ -65,11 +66,18 @@ std::vector<Finding> judge_additional(const Situation& s) {
 }
 
 bool in_tt(const Situation& s) {
-  if (s.kind == SubjectKind::board || s.kind == SubjectKind::tails) return false;
-  return s.source->earthing == models::Earthing::TT && most_sensitive(s) != nullptr;
+  if (s.kind == SubjectKind::tails || s.source->earthing != models::Earthing::TT) return false;
+  return s.kind == SubjectKind::board || most_sensitive(s) != nullptr;
 }
 
-std::vector<Finding> judge_electrode(const Situation& s) {
+// A board's own enclosure is protected by what stands before its incomer.
+Situation before_incomer(Situation s) {
+  if (s.board->incomer.present()) s.path.pop_back();
+  return s;
+}
+
+std::vector<Finding> judge_electrode(const Situation& given) {
+  const Situation s = given.kind == SubjectKind::board ? before_incomer(given) : given;
   Finding finding = begin_finding(s, kElectrode);
   const models::RuleSet& rules = s.network->rules;
   finding.unit = Quantity::voltage;
@@ -83,6 +91,15 @@ std::vector<Finding> judge_electrode(const Situation& s) {
   }
   const models::Electrode& electrode = s.network->electrodes[static_cast<std::size_t>(handle)];
   const Protector* by = most_sensitive(s);
+  if (by == nullptr) {
+    // Common practice: the board and what leads to it are of Class II. That is for the inspector to see.
+    finding.verdict = Verdict::noted;
+    finding.limit = rules.touch_limit;
+    finding.reason = "no residual current device stands before the board";
+    finding.summary = "no residual current device before it: the board and what leads to it must be Class II or equivalent";
+    finding.needs.push_back("Class II (or equivalent) up to the first residual current device");
+    return {finding};
+  }
   compare_upper(finding, electrode.resistance * by->device->IdN, rules.touch_limit, Quantity::voltage);
   finding.steps.push_back({"voltage at the electrode at the rated residual current", "RA IdN",
                            fmt::format("{} x {}", say(electrode.resistance, Quantity::impedance),
@@ -91,6 +108,8 @@ std::vector<Finding> judge_electrode(const Situation& s) {
   finding.summary = fmt::format("RA {} with {} of {}: {}; {} allowed", say(electrode.resistance, Quantity::impedance),
                                 say(by->device->IdN, Quantity::current), by->address,
                                 say(finding.value, Quantity::voltage), say(finding.limit, Quantity::voltage));
+  if (electrode.resistance > kStable)
+    finding.assumptions.push_back("RA is above 200 ohm and taken as stable all the year (Table 41.5 doubts it)");
   return {finding};
 }
 
@@ -106,7 +125,8 @@ Check additional_protection_check() {
 }
 
 Check earth_electrode_check() {
-  return {{kElectrode, "RA IdN <= 50 V in a TT installation", "circuits and submains of a TT installation behind a residual current device",
+  return {{kElectrode, "RA IdN <= 50 V in a TT installation; before a board without any residual device the need for Class II is noted",
+           "circuits, submains and boards of a TT installation",
            "electrode; IdN"},
           in_tt,
           judge_electrode};

@@ -38,25 +38,25 @@ void demand(Finding& finding, const std::string& required, double limit, Selecti
   finding.value = limit;
   finding.limit = wanted;
   finding.margin = limit / wanted - 1.0;
-  if (found == Selectivity::total || limit >= wanted) {
-    finding.verdict = Verdict::meets;
-  } else if (found == Selectivity::none) {
+  if (found == Selectivity::none) {
     finding.verdict = Verdict::fails;
+    finding.reason = "the pair is not selective";
+  } else if (found == Selectivity::total || limit >= wanted) {
+    finding.verdict = Verdict::meets;
   } else {
     finding.verdict = Verdict::undecided;
     finding.reason = "selectivity is proven only up to the limit current";
   }
 }
 
-Finding judge_pair(const Situation& s, const Protector& down, const Protector& up) {
+Finding judge_pair(const Situation& s, const Protector& down, const Protector& up, bool overcurrents) {
   Finding finding = begin_finding(s, kName);
   finding.upstream = up.address;
   finding.unit = Quantity::current;
   finding.condition = word(Condition::maximum);
   finding.clause = s.network->rules.selectivity_clause;
   Fault fault = Fault::three_phase;
-  const FaultCurrent* most = greatest(
-      s.origin_max, {Fault::three_phase, Fault::line_line, Fault::line_neutral, Fault::line_earth}, &fault);
+  const FaultCurrent* most = greatest(s.origin_max, kAllFaults, &fault);
   const std::string required = required_of(s);
   finding.verdict = required.empty() ? Verdict::noted : Verdict::undecided;
   if (most == nullptr || !most->known) {
@@ -70,7 +70,6 @@ Finding judge_pair(const Situation& s, const Protector& down, const Protector& u
   finding.available_A = most->amps;
   finding.confidence = models::worse(down.device->confidence, up.device->confidence);
   PairVerdict pair;
-  const bool overcurrents = !down.device->overcurrent.empty() && !up.device->overcurrent.empty();
   if (overcurrents)
     pair = overcurrent_selectivity(*down.device, *up.device, most->amps,
                                    std::isfinite(most->peak) ? most->peak / (std::sqrt(2.0) * most->amps) : 1.02);
@@ -113,12 +112,13 @@ Finding judge_pair(const Situation& s, const Protector& down, const Protector& u
 std::vector<Finding> judge(const Situation& s) {
   std::vector<Finding> findings;
   const Protector& down = s.path.back();
+  // Up to the next device that breaks overcurrents; beyond it only residual elements still see what
+  // the downstream device sees.
+  bool beyond = false;
   for (auto up = std::next(s.path.rbegin()); up != s.path.rend(); ++up) {
-    if (!trips(*up->device)) continue;
-    const bool comparable = (!down.device->overcurrent.empty() && !up->device->overcurrent.empty()) ||
-                            !up->device->residual.empty();
-    if (comparable) findings.push_back(judge_pair(s, down, *up));
-    if (!up->device->overcurrent.empty()) break;
+    const bool overcurrents = !beyond && !down.device->overcurrent.empty() && !up->device->overcurrent.empty();
+    if (overcurrents || !up->device->residual.empty()) findings.push_back(judge_pair(s, down, *up, overcurrents));
+    beyond = beyond || !up->device->overcurrent.empty();
   }
   return findings;
 }

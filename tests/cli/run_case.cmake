@@ -10,6 +10,9 @@
 #   === file NAME              writes the body to NAME in the scratch folder, which starts empty
 #   === copy PATH              copies a file or folder of the project (examples/...) into it
 #   === folder NAME            makes a folder
+#   === bytes NAME             writes what printf makes of the body: \377 and \000 are single bytes
+#   === size NAME N            writes a file of N bytes
+#   === environment NAME=VALUE holds for the commands that follow
 #   === command                runs the body, one line: sunder check net.toml --json
 #                              (words as a shell splits them; the current directory is the folder)
 #   --- about the last command:
@@ -20,9 +23,12 @@
 #   === stdout lacks           none of the lines of the body is found in it
 #   === stdout json            it is one JSON value; each line of the body names a member and its value:
 #                                  results 0 node = intake
+#                              or its type (NULL, NUMBER, STRING, BOOLEAN, ARRAY, OBJECT):
+#                                  results 0 peak_A : NULL
 #   === stderr ...             the same forms for standard error; without any it must be empty
 #   === wrote NAME ...         the same forms for a file: "=== wrote chart.svg contains"
 #   === no file NAME           it does not exist
+#   === files                  the scratch folder holds the files named, one a line, and nothing else
 #
 # Several commands may follow one another. All mismatches of a case are reported, not only the first.
 cmake_minimum_required(VERSION 3.25)
@@ -99,9 +105,11 @@ function(compare what form actual body)
     endif()
     while(at LESS length)
       next_line()
-      if(line MATCHES "^ *(.*[^ ]) = (.*)$")
-        set(member "${CMAKE_MATCH_1}")
-        set(wanted "${CMAKE_MATCH_2}")
+      string(FIND "${line}" " = " mark)
+      if(mark GREATER 0)
+        string(SUBSTRING "${line}" 0 ${mark} member)
+        math(EXPR mark "${mark} + 3")
+        string(SUBSTRING "${line}" ${mark} -1 wanted)
         separate_arguments(members UNIX_COMMAND "${member}")
         string(JSON value ERROR_VARIABLE wrong GET "${actual}" ${members})
         if(wrong)
@@ -109,8 +117,18 @@ function(compare what form actual body)
         elseif(NOT "${value}" STREQUAL "${wanted}")
           complain("${what}: ${member} is '${value}', expected '${wanted}'")
         endif()
+      elseif(line MATCHES "^ *(.*[^ ]) : ([A-Z]+)$")
+        set(member "${CMAKE_MATCH_1}")
+        set(wanted "${CMAKE_MATCH_2}")
+        separate_arguments(members UNIX_COMMAND "${member}")
+        string(JSON type ERROR_VARIABLE wrong TYPE "${actual}" ${members})
+        if(wrong)
+          complain("${what}: ${member}: ${wrong}")
+        elseif(NOT "${type}" STREQUAL "${wanted}")
+          complain("${what}: ${member} is of type ${type}, expected ${wanted}")
+        endif()
       elseif(NOT line MATCHES "^ *$")
-        complain("not of the form 'member = value': ${line}")
+        complain("not of the form 'member = value' or 'member : TYPE': ${line}")
       endif()
     endwhile()
   else()
@@ -166,6 +184,14 @@ while(more)
     endif()
   elseif(section MATCHES "^folder (.+)$")
     file(MAKE_DIRECTORY "${FOLDER}/${CMAKE_MATCH_1}")
+  elseif(section MATCHES "^bytes (.+)$")
+    set(name "${CMAKE_MATCH_1}")
+    without_end_blanks("${body}" format)
+    execute_process(COMMAND printf "${format}" OUTPUT_FILE "${FOLDER}/${name}" COMMAND_ERROR_IS_FATAL ANY)
+  elseif(section MATCHES "^size ([^ ]+) ([0-9]+)$")
+    execute_process(COMMAND truncate -s ${CMAKE_MATCH_2} "${FOLDER}/${CMAKE_MATCH_1}" COMMAND_ERROR_IS_FATAL ANY)
+  elseif(section MATCHES "^environment ([^=]+)=(.*)$")
+    set(ENV{${CMAKE_MATCH_1}} "${CMAKE_MATCH_2}")
   elseif(section STREQUAL "command")
     finish_command()
     string(STRIP "${body}" command)
@@ -206,6 +232,11 @@ while(more)
     if(EXISTS "${FOLDER}/${CMAKE_MATCH_1}")
       complain("${CMAKE_MATCH_1} exists")
     endif()
+  elseif(section STREQUAL "files")
+    file(GLOB_RECURSE there LIST_DIRECTORIES TRUE RELATIVE "${FOLDER}" "${FOLDER}/*")
+    list(SORT there)
+    list(JOIN there "\n" there)
+    compare("what '${command}' left in the folder" "" "${there}" "${body}")
   elseif(NOT section STREQUAL "")
     complain("no such section: '=== ${section}'")
   endif()

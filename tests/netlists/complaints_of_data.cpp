@@ -16,13 +16,13 @@ TEST_CASE("A device that cannot be understood is refused with the reason", "[net
        R"~(20:11+7 error: device of submain 'S1': 'gG' has no rating of 64 A; the nearest are 63 and 80 A
 )~"},
       {20, R"~(device = "gg 63 A")~",
-       R"~(20:11+2 error: unknown device 'gg' (device of submain 'S1') | did you mean 'gG'?
+       R"~(20:11+2 error: unknown device 'gg' (device of submain 'S1') | did you mean 'gG 63 A'? form: <family> <In> [<Icn>] [<IdN> [S] [AC|A|F|B]] [class 1|2|3]
 )~"},
       {20, R"~(device = "gG")~",
        R"~(20:11+2 error: device of submain 'S1': 'gG' has no rated current | form: <family> <In> [<Icn>] [<IdN> [S] [AC|A|F|B]] [class 1|2|3]
 )~"},
       {20, R"~(device = "")~",
-       R"~(20:11+1 error: device of submain 'S1' is empty
+       R"~(20:11+1 error: device of submain 'S1' is empty | form: <family> <In> [<Icn>] [<IdN> [S] [AC|A|F|B]] [class 1|2|3]; `sunder help devices` lists the families
 )~"},
       {20, R"~(device = "gG 63 A 80 kA 9 kA")~",
        R"~(20:25+4 error: '9 kA' is one current too many in device of submain 'S1' | form: <family> <In> [<Icn>] [<IdN> [S] [AC|A|F|B]] [class 1|2|3]
@@ -155,7 +155,7 @@ TEST_CASE("A cable that cannot be understood is refused with the reason", "[netl
        R"~(21:10+23 error: cable 'multicore-xlpe-cu-5c 16' of submain 'S1' has a size without the unit mm2 | form: <construction> <size> mm2, or <construction> <size>/<cpc size> mm2
 )~"},
       {21, R"~(cable = "multicore-xlpe-cu-5c")~",
-       R"~(21:10+20 error: cable 'multicore-xlpe-cu-5c' of submain 'S1' is no construction with a size | form: <construction> <size> mm2, or <construction> <size>/<cpc size> mm2
+       R"~(21:10+20 error: cable 'multicore-xlpe-cu-5c' of submain 'S1' is no construction with a size | form: <construction> <size> mm2, or <construction> <size>/<cpc size> mm2; `sunder help cables` lists the constructions
 )~"},
       {21, R"~(cable = "multicore-xlpe-cu-5c x mm2")~",
        R"~(21:10+26 error: 'x' is no size, in the cable of submain 'S1' | form: <construction> <size> mm2, or <construction> <size>/<cpc size> mm2

@@ -14,7 +14,7 @@ TEST_CASE("A submain is read strictly and unusual values are warned about", "[ne
 19:7+6 error: submain 'S1' leads from board 'intake' to itself
 )~"},
       {18, R"~(from = "shed")~",
-       R"~(18:9+4 error: unknown board 'shed'
+       R"~(18:9+4 error: unknown board 'shed' | boards are: intake, shop
 )~"},
       {20, R"~()~",
        R"~(17:10+1 error: submain 'S1' has no 'device', which is obligatory | device: The device at its start.

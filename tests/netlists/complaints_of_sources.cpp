@@ -16,7 +16,7 @@ TEST_CASE("A supply that cannot be is refused with the reason", "[netlists]") {
        R"~(6:10+5 error: unknown board 'intak' | did you mean 'intake'?
 )~"},
       {6, R"~(feeds = "S1")~",
-       R"~(6:10+2 error: unknown board 'S1'
+       R"~(6:10+2 error: unknown board 'S1' | boards are: intake, shop
 )~"},
       {6, R"~(feeds = 3)~",
        R"~(6:9+1 error: the name of a board is expected, got a number
@@ -46,7 +46,7 @@ TEST_CASE("A supply that cannot be is refused with the reason", "[netlists]") {
        R"~(8:13+2 error: earthing 'IT' of supply 'grid' is not solved by this edition | solved are: TN-S, TN-C-S, TT
 )~"},
       {8, R"~(earthing = "TNCS")~",
-       R"~(8:13+4 error: unknown earthing 'TNCS' of supply 'grid' | did you mean 'TN-S'?
+       R"~(8:13+4 error: unknown earthing 'TNCS' of supply 'grid' | did you mean 'TN-C-S'?
 )~"},
       {9, R"~(phases = "L1")~",
        R"~(9:11+2 error: supply 'grid' is three-phase and delivers L1 L2 L3 | phases is for a single-phase supply: "L1", "L2" or "L3"
@@ -70,7 +70,7 @@ TEST_CASE("A supply that cannot be is refused with the reason", "[netlists]") {
        R"~(10:27+2 error: three_phase of the maximum of supply 'grid' is a number; a current or an impedance is expected | such as "16 kA" or "0.35 ohm"
 )~"},
       {10, R"~(maximum = "16 kA")~",
-       R"~(10:12+5 error: maximum of supply 'grid' is a text; a table is expected
+       R"~(10:12+5 error: maximum of supply 'grid' is a text; a table is expected | maximum = { three_phase = "16 kA" }
 )~"},
       {10, R"~(maximum = {})~",
        R"~(10:11+1 error: the maximum of supply 'grid' is empty
@@ -95,7 +95,7 @@ TEST_CASE("A supply that cannot be is refused with the reason", "[netlists]") {
 10:28+1 note: the maximum is given here
 )~"},
       {10, R"~(maximum = { three_phase = "16 kA", Ze = "0.1 ohm" })~",
-       R"~(10:36+2 error: unknown key 'Ze' in the maximum of supply 'grid' | it may have: three_phase, line_neutral, line_earth, power_factor, x_over_r
+       R"~(10:36+2 error: unknown key 'Ze' in the maximum of supply 'grid' | 'Ze' is a key of: supply.minimum; here may stand: three_phase, line_neutral, line_earth, power_factor, x_over_r
 )~"},
       {11, R"~(minimum = { Ze = "0.35 ohm", line_earth = "700 A" })~",
        R"~(11:19+8 error: the minimum of supply 'grid' has both Ze and line_earth, which mean the same

@@ -113,7 +113,8 @@ TEST_CASE("Every assumption taken is listed with its subject", "[netlists]") {
       {9, "tails = { cable = \"singles-pvc-cu 25 mm2\", length = \"2 m\" }", "grid",
        "main earthing conductor of the tails of supply 'grid' taken as large as the line conductor"},
       {24, "", "S1", "pf of S1 taken as 1"},
-      {24, "cpc = \"16 mm2\"", "S1", "the protective conductor beside the cable of S1 is taken to run close to it"},
+      {24, "cpc = \"16 mm2\"", "S1", "the protective conductor beside the cable of S1 is taken to run close to it, not bunched with it: "
+       "at ambient temperature, k as such"},
       {27, R"(W2 = { phases = "L1", device = "B 6 A", cable = "flat-pvc-cu 1.5/1 mm2", length = "21 m", load = "4 A" })",
        "shop/W2", "use of shop/W2 not given: the strictest limits are taken"},
       {27, R"(W2 = { phases = "L1", device = "B 6 A", cable = "flat-pvc-cu 1.5/1 mm2", length = "21 m", load = "4 A" })",
@@ -255,7 +256,7 @@ TEST_CASE("All errors of a file come in one run, in order of place", "[netlists]
   text.replace(text.find("cable = \"multicore-xlpe-cu-5c"), 29, "cable = \"multicore-xlpe-5c");
   text += "[board.shop]\n[state.x\nsources = [\"grid\"]\n[electrode.rod]\nboard = \"shp\"\nresistance = \"9 ohm\"\n";
   CHECK(said(read_network_text(text, "base.toml")) ==
-        R"(7:14+1 error: expected digit, got '/' | a value with a unit stands in quotes: "230/400 V"
+        R"(7:11+9 error: voltage is a text without quotes | a text needs quotes: voltage = "230/400 V"
 21:10+17 error: unknown cable 'multicore-xlpe-5c' | did you mean 'multicore-xlpe-cu-5c'?
 22:11+5 error: length of submain 'S1' is -35 m; it must be above 0 m
 28:1+12 error: board 'shop' is declared twice
