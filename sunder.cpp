@@ -1,8 +1,10 @@
 // SPDX-License-Identifier: Apache-2.0
 /// @file
 /// The program: one command a function, each a few lines that call the libraries.
+#include <fmt/format.h>
 #include <unistd.h>
 
+#include <CLI/CLI.hpp>
 #include <algorithm>
 #include <cstdio>
 #include <filesystem>
@@ -10,9 +12,6 @@
 #include <optional>
 #include <string>
 #include <vector>
-
-#include <CLI/CLI.hpp>
-#include <fmt/format.h>
 
 #include "models/registry.h"
 #include "netlists/library.h"
@@ -47,9 +46,12 @@ struct Options {
 
 const char* word(Severity severity) {
   switch (severity) {
-    case Severity::error: return "error";
-    case Severity::warning: return "warning";
-    case Severity::note: return "note";
+    case Severity::error:
+      return "error";
+    case Severity::warning:
+      return "warning";
+    case Severity::note:
+      return "note";
   }
   return "error";
 }
@@ -69,7 +71,9 @@ int complain(const Options& options, const std::vector<Diagnostic>& diagnostics)
   std::size_t errors = 0;
   for (const Diagnostic& d : diagnostics) {
     std::string text = netlists::format_diagnostic(d);
-    if (d.file.empty()) text = fmt::format("sunder: {}: {}\n{}", word(d.severity), d.message, d.hint.empty() ? "" : "  = " + d.hint + "\n");
+    if (d.file.empty())
+      text =
+          fmt::format("sunder: {}: {}\n{}", word(d.severity), d.message, d.hint.empty() ? "" : "  = " + d.hint + "\n");
     if (!text.empty() && text.back() != '\n') text += '\n';
     fmt::print(stderr, "{}", text);
     errors += d.severity == Severity::error ? d.stands_for : 0U;
@@ -98,8 +102,8 @@ std::string line_of(const std::string& file, std::uint32_t line) {
   return text;
 }
 
-Diagnostic diagnostic_at(const models::Network& network, Severity severity, const std::string& message, models::Origin at,
-                         const std::string& fallback) {
+Diagnostic diagnostic_at(const models::Network& network, Severity severity, const std::string& message,
+                         models::Origin at, const std::string& fallback) {
   Diagnostic d;
   d.severity = severity;
   d.message = message;
@@ -166,7 +170,8 @@ int deliver(const Options& options, const std::string& text, int status) {
 // Counts on a terminal only, on one line that is taken away again.
 class Progress {
  public:
-  Progress(const Options& options, const char* what) : on_(!options.json && ::isatty(STDERR_FILENO) == 1), what_(what) {}
+  Progress(const Options& options, const char* what)
+      : on_(!options.json && ::isatty(STDERR_FILENO) == 1), what_(what) {}
   ~Progress() {
     if (shown_) fmt::print(stderr, "\r{:60}\r", "");
   }
@@ -204,8 +209,8 @@ int run_check(const Options& options) {
   const bool met = std::none_of(findings.begin(), findings.end(), [](const solver::Finding& f) {
     return f.verdict == solver::Verdict::fails || f.verdict == solver::Verdict::undecided;
   });
-  const std::string text = options.json ? plots::check_json(*network, findings)
-                                        : plots::check_report(*network, findings, style_of(options));
+  const std::string text =
+      options.json ? plots::check_json(*network, findings) : plots::check_report(*network, findings, style_of(options));
   return deliver(options, text, met ? kAllMet : kNotMet);
 }
 
@@ -213,8 +218,10 @@ int run_faults(const Options& options) {
   const auto network = load(options);
   if (!network) return kCouldNotRun;
   const auto rows = solver::solve_faults(*network);
-  return deliver(options, options.json ? plots::faults_json(*network, rows)
-                                       : plots::faults_report(*network, rows, style_of(options)), kAllMet);
+  return deliver(
+      options,
+      options.json ? plots::faults_json(*network, rows) : plots::faults_report(*network, rows, style_of(options)),
+      kAllMet);
 }
 
 int run_schedule(const Options& options) {
@@ -228,7 +235,8 @@ int run_schedule(const Options& options) {
 
 int run_draw(const Options& options) {
   if (options.output.empty() && !options.json) {
-    return complain(options, "draw needs -o FILE, the drawing to write", "the ending decides the form: .svg, .png or .pdf");
+    return complain(options, "draw needs -o FILE, the drawing to write",
+                    "the ending decides the form: .svg, .png or .pdf");
   }
   const auto network = load(options);
   if (!network) return kCouldNotRun;
@@ -240,14 +248,16 @@ int run_draw(const Options& options) {
   }
   Options to_screen = options;
   to_screen.output.clear();
-  return deliver(to_screen, options.json ? plots::chart_json(chart) : fmt::format("written: {}\n", options.output), kAllMet);
+  return deliver(to_screen, options.json ? plots::chart_json(chart) : fmt::format("written: {}\n", options.output),
+                 kAllMet);
 }
 
 int run_vary(const Options& options) {
   const bool range = !options.vary.from.empty() || !options.vary.to.empty();
   const bool list = !options.vary.values.empty();
   if (range == list) {
-    return complain(options, range ? "vary takes a range or a list, not both" : "vary needs a range or a list of values",
+    return complain(options,
+                    range ? "vary takes a range or a list, not both" : "vary needs a range or a list of values",
                     "--from \"10 m\" --to \"200 m\", or --values \"2.5 mm2,4 mm2\"");
   }
   if (range && (options.vary.from.empty() || options.vary.to.empty())) {
@@ -269,15 +279,19 @@ int run_vary(const Options& options) {
   }
   Options to_screen = options;
   to_screen.output.clear();
-  return deliver(to_screen, options.json ? plots::sweep_json(*network, sweep)
-                                         : plots::sweep_report(*network, sweep, style_of(to_screen)), kAllMet);
+  return deliver(
+      to_screen,
+      options.json ? plots::sweep_json(*network, sweep) : plots::sweep_report(*network, sweep, style_of(to_screen)),
+      kAllMet);
 }
 
 int run_new(const Options& options) {
   const std::string title = std::filesystem::path(options.net).stem().string();
   const std::string text = netlists::starter_netlist(title);
-  if (const auto trouble = plots::write_file(options.net, text, plots::IfExists::refuse)) return complain(options, *trouble);
-  if (options.json) return deliver({}, plots::record_json("sunder.new/1", {{"file", options.net}, {"title", title}}), kAllMet);
+  if (const auto trouble = plots::write_file(options.net, text, plots::IfExists::refuse))
+    return complain(options, *trouble);
+  if (options.json)
+    return deliver({}, plots::record_json("sunder.new/1", {{"file", options.net}, {"title", title}}), kAllMet);
   return deliver({}, fmt::format("written: {}\nnext: sunder check {}\n", options.net, options.net), kAllMet);
 }
 
@@ -294,22 +308,32 @@ int run_help(const Options& options, const CLI::App& app) {
       commands.entries.push_back({command->get_name(), command->get_description()});
     }
     plots::HelpSection more{"topics of `sunder help TOPIC`", "", "", {}};
-    const char* about[] = {"kinds and keys of the file", "what is compared with what", "device families and their data",
-                           "cable constructions and their data", "rule sets and their limits", "the forms of --json"};
+    const char* about[] = {"kinds and keys of the file",     "what is compared with what",
+                           "device families and their data", "cable constructions and their data",
+                           "rule sets and their limits",     "the forms of --json"};
     for (std::size_t i = 0; i < topics().size(); ++i) more.entries.push_back({std::string(topics()[i]), about[i]});
-    topic = {"", "sunder: proves that every fault in a low-voltage installation is cleared",
-             "Usage: sunder COMMAND NET [OPTIONS]. `sunder COMMAND --help` lists the options of a command; all take --json.",
-             {commands, more}};
-  } else if (options.topic == "netlist") topic = plots::help_netlist();
-  else if (options.topic == "checks") topic = plots::help_checks(solver::list_checks());
-  else if (options.topic == "devices") topic = plots::help_devices(netlists::library().families);
-  else if (options.topic == "cables") topic = plots::help_cables(netlists::library().constructions);
-  else if (options.topic == "rules") topic = plots::help_rules(netlists::library().rule_sets);
-  else if (options.topic == "json") topic = plots::help_json_forms();
+    topic = {
+        "",
+        "sunder: proves that every fault in a low-voltage installation is cleared",
+        "Usage: sunder COMMAND NET [OPTIONS]. `sunder COMMAND --help` lists the options of a command; all take --json.",
+        {commands, more}};
+  } else if (options.topic == "netlist")
+    topic = plots::help_netlist();
+  else if (options.topic == "checks")
+    topic = plots::help_checks(solver::list_checks());
+  else if (options.topic == "devices")
+    topic = plots::help_devices(netlists::library().families);
+  else if (options.topic == "cables")
+    topic = plots::help_cables(netlists::library().constructions);
+  else if (options.topic == "rules")
+    topic = plots::help_rules(netlists::library().rule_sets);
+  else if (options.topic == "json")
+    topic = plots::help_json_forms();
   else {
     const std::string_view near = models::nearest_name(options.topic, topics());
     return complain(options, "there is no help topic '" + options.topic + "'",
-                    near.empty() ? "topics: netlist, checks, devices, cables, rules, json" : fmt::format("did you mean '{}'?", near));
+                    near.empty() ? "topics: netlist, checks, devices, cables, rules, json"
+                                 : fmt::format("did you mean '{}'?", near));
   }
   return deliver(options, options.json ? plots::help_json(topic) : plots::help_text(topic, style_of(options)), kAllMet);
 }
@@ -318,7 +342,10 @@ int print_version(const Options& options) {
   std::vector<std::string> rules;
   for (const models::RuleSet& set : netlists::library().rule_sets) rules.push_back(set.name);
   if (options.json) {
-    return deliver(options, plots::record_json("sunder.version/1", {{"program", "sunder"}, {"version", SUNDER_VERSION}, {"rules", rules}}), kAllMet);
+    return deliver(
+        options,
+        plots::record_json("sunder.version/1", {{"program", "sunder"}, {"version", SUNDER_VERSION}, {"rules", rules}}),
+        kAllMet);
   }
   return deliver(options, "sunder " SUNDER_VERSION "\n", kAllMet);
 }
@@ -352,11 +379,18 @@ int unexpected(const Options& options, const std::string& extra, const CLI::App&
   const std::string_view near = models::nearest_name(wrong, views);
   if (near == wrong) return complain(options, fmt::format("unexpected argument '{}'", extra));  // behind "--"
   std::string hint;
-  if (!near.empty()) hint = fmt::format("did you mean '{}'?", near);
-  else if (command && std::filesystem::path(extra).extension() == ".toml") hint = fmt::format("did you mean 'sunder check {}'?", extra);
-  else if (command && !names.empty()) hint = "`sunder help` lists the commands";
-  else hint = fmt::format("`sunder {}--help` lists the options", where.get_name().empty() || command ? "" : where.get_name() + " ");
-  const char* what = extra.front() == '-' && extra.size() > 1 ? "unknown option" : command ? "unknown command" : "unexpected argument";
+  if (!near.empty())
+    hint = fmt::format("did you mean '{}'?", near);
+  else if (command && std::filesystem::path(extra).extension() == ".toml")
+    hint = fmt::format("did you mean 'sunder check {}'?", extra);
+  else if (command && !names.empty())
+    hint = "`sunder help` lists the commands";
+  else
+    hint = fmt::format("`sunder {}--help` lists the options",
+                       where.get_name().empty() || command ? "" : where.get_name() + " ");
+  const char* what = extra.front() == '-' && extra.size() > 1 ? "unknown option"
+                     : command                                ? "unknown command"
+                                                              : "unexpected argument";
   return complain(options, fmt::format("{} '{}'", what, wrong), hint);
 }
 
@@ -366,7 +400,9 @@ std::string plain_complaint(const std::string& sentence) {
   if (sentence == "NET is required") return "the name of a netlist file is needed";
   if (sentence.find("required TEXT missing") != std::string::npos) return option + " needs a value";
   const std::size_t range = sentence.find(" not in range ");
-  return range == std::string::npos ? sentence : option + " takes " + sentence.substr(range + std::string(" not in range ").size());
+  return range == std::string::npos
+             ? sentence
+             : option + " takes " + sentence.substr(range + std::string(" not in range ").size());
 }
 
 int run(int argc, char** argv) {
@@ -408,7 +444,9 @@ int run(int argc, char** argv) {
   vary->add_option("--set", options.vary.key, "Address of the value, such as S1.length")->required();
   vary->add_option("--from", options.vary.from, "Start of the range, with its unit");
   vary->add_option("--to", options.vary.to, "End of the range, with its unit");
-  vary->add_option("--steps", options.vary.steps, "Values tried along the range")->check(CLI::Range(2, 100000))->capture_default_str();
+  vary->add_option("--steps", options.vary.steps, "Values tried along the range")
+      ->check(CLI::Range(2, 100000))
+      ->capture_default_str();
   vary->add_option("--values", options.value_list, "Values to try instead, separated by commas");
   output(vary, "Drawing to write: .svg, .png or .pdf");
   CLI::App* fresh = command("new", "Write a commented starter netlist");
@@ -417,7 +455,8 @@ int run(int argc, char** argv) {
   help->add_option("TOPIC", options.topic, "Topic");
 
   // --json decides the form of errors too, also of those that parsing itself finds.
-  for (int i = 1; i < argc && std::string(argv[i]) != "--"; ++i) options.json = options.json || std::string(argv[i]) == "--json";
+  for (int i = 1; i < argc && std::string(argv[i]) != "--"; ++i)
+    options.json = options.json || std::string(argv[i]) == "--json";
   const bool json = options.json;
   try {
     app.parse(argc, argv);
@@ -425,7 +464,8 @@ int run(int argc, char** argv) {
     return app.exit(CLI::CallForHelp());
   } catch (const CLI::ParseError& error) {
     options.json = json;
-    return complain(options, plain_complaint(error.what()), "`sunder help` lists the commands, `sunder COMMAND --help` their options");
+    return complain(options, plain_complaint(error.what()),
+                    "`sunder help` lists the commands, `sunder COMMAND --help` their options");
   }
   options.json = json;
   options.vary.values = split(options.value_list);
@@ -454,10 +494,14 @@ int main(int argc, char** argv) {
   try {
     return run(argc, argv);
   } catch (const std::exception& error) {
-    std::fprintf(stderr, "sunder: internal error: %s\nThis is a defect of sunder; please report it, with the netlist if you may share it.\n",
+    std::fprintf(stderr,
+                 "sunder: internal error: %s\nThis is a defect of sunder; please report it, with the netlist if you "
+                 "may share it.\n",
                  error.what());
   } catch (...) {
-    std::fprintf(stderr, "sunder: internal error\nThis is a defect of sunder; please report it, with the netlist if you may share it.\n");
+    std::fprintf(stderr,
+                 "sunder: internal error\nThis is a defect of sunder; please report it, with the netlist if you may "
+                 "share it.\n");
   }
   return kCouldNotRun;
 }

@@ -34,15 +34,13 @@ double Curve::time_at(double current) const noexcept {
 }
 
 double current_for(const Curve& curve, double time) noexcept {
-  const auto reached = std::find_if(curve.points.begin(),
-                                    curve.points.end(),
-                                    [time](const CurvePoint& p) { return p.time <= time; });
+  const auto reached =
+      std::find_if(curve.points.begin(), curve.points.end(), [time](const CurvePoint& p) { return p.time <= time; });
   if (reached == curve.points.end()) return kNever;
   if (reached == curve.points.begin() || reached->time == time) return reached->current;
   const CurvePoint& before = *std::prev(reached);
   if (before.current == reached->current) return reached->current;
-  const double slope =
-      std::log(reached->current / before.current) / std::log(reached->time / before.time);
+  const double slope = std::log(reached->current / before.current) / std::log(reached->time / before.time);
   return before.current * std::pow(time / before.time, slope);
 }
 

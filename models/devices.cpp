@@ -50,40 +50,31 @@ bool same_rating(double a, double b) noexcept { return std::abs(a - b) <= 1e-9 *
 std::string nearest_ratings(const std::vector<double>& ratings, double In) {
   const auto above = std::upper_bound(ratings.begin(), ratings.end(), In);
   if (above == ratings.begin()) return fmt::format("the smallest is {} A", format_number(*above));
-  if (above == ratings.end())
-    return fmt::format("the largest is {} A", format_number(ratings.back()));
-  return fmt::format(
-      "the nearest are {} and {} A", format_number(*std::prev(above)), format_number(*above));
+  if (above == ratings.end()) return fmt::format("the largest is {} A", format_number(ratings.back()));
+  return fmt::format("the nearest are {} and {} A", format_number(*std::prev(above)), format_number(*above));
 }
 
 const FamilyRow* find_row(const DeviceFamily& family, double In) noexcept {
-  const auto found = std::find_if(family.rows.begin(),
-                                  family.rows.end(),
+  const auto found = std::find_if(family.rows.begin(), family.rows.end(),
                                   [In](const FamilyRow& row) { return same_rating(row.In, In); });
   return found == family.rows.end() ? nullptr : &*found;
 }
 
 std::optional<DeviceError> check_rating(const DeviceSpec& spec, const DeviceFamily& family) {
   if (spec.In <= 0) {
-    return DeviceError{
-        fmt::format("'{}' needs its rated current, such as '{} 32 A'", spec.family, spec.family)};
+    return DeviceError{fmt::format("'{}' needs its rated current, such as '{} 32 A'", spec.family, spec.family)};
   }
   if (family.ratings.empty()) return std::nullopt;
-  const bool known = std::any_of(family.ratings.begin(),
-                                 family.ratings.end(),
+  const bool known = std::any_of(family.ratings.begin(), family.ratings.end(),
                                  [&spec](double rating) { return same_rating(rating, spec.In); });
   if (known) return std::nullopt;
-  return DeviceError{fmt::format("'{}' has no rating of {} A; {}",
-                                 family.name,
-                                 format_number(spec.In),
+  return DeviceError{fmt::format("'{}' has no rating of {} A; {}", family.name, format_number(spec.In),
                                  nearest_ratings(family.ratings, spec.In))};
 }
 
 // --- circuit-breakers ------------------------------------------------------------------------
 
-std::optional<DeviceError> breaker_band(const DeviceSpec& spec,
-                                        const DeviceFamily& family,
-                                        Device& out) {
+std::optional<DeviceError> breaker_band(const DeviceSpec& spec, const DeviceFamily& family, Device& out) {
   double low = family.magnetic_low;
   double high = family.magnetic_high;
   const bool own = spec.multiple_low > 0 || spec.multiple_high > 0;
@@ -91,10 +82,8 @@ std::optional<DeviceError> breaker_band(const DeviceSpec& spec,
     low = spec.multiple_low;
     high = spec.multiple_high;
     if (!(low > 1) || !(high > low)) {
-      return DeviceError{fmt::format(
-          "instantaneous multiples {} and {} are out of order: above 1, the lower one first",
-          format_number(low),
-          format_number(high))};
+      return DeviceError{fmt::format("instantaneous multiples {} and {} are out of order: above 1, the lower one first",
+                                     format_number(low), format_number(high))};
     }
   }
   const double In = spec.In;
@@ -125,18 +114,12 @@ std::optional<DeviceError> breaker_band(const DeviceSpec& spec,
   return std::nullopt;
 }
 
-std::optional<DeviceError> energy_limit(const DeviceSpec& spec,
-                                        const DeviceFamily& family,
-                                        Device& out) {
+std::optional<DeviceError> energy_limit(const DeviceSpec& spec, const DeviceFamily& family, Device& out) {
   if (spec.energy_class == 0) return std::nullopt;
   if (spec.energy_class == 1) return std::nullopt;  // class 1 sets no limit
   if (spec.Icn <= 0) {
-    return DeviceError{
-        fmt::format("energy class {} needs the breaking capacity, such as '{} {} A 6 kA class {}'",
-                    spec.energy_class,
-                    spec.family,
-                    format_number(spec.In),
-                    spec.energy_class)};
+    return DeviceError{fmt::format("energy class {} needs the breaking capacity, such as '{} {} A 6 kA class {}'",
+                                   spec.energy_class, spec.family, format_number(spec.In), spec.energy_class)};
   }
   for (const EnergyRow& row : family.energy) {
     if (row.energy_class != spec.energy_class || !same_rating(row.Icn, spec.Icn)) continue;
@@ -148,11 +131,8 @@ std::optional<DeviceError> energy_limit(const DeviceSpec& spec,
     out.let_through.source = "EN 60898-1, Annex ZA";
     return std::nullopt;
   }
-  return DeviceError{fmt::format("EN 60898-1 has no energy class {} for type {} of {} A and {}",
-                                 spec.energy_class,
-                                 family.name,
-                                 format_number(spec.In),
-                                 format_quantity(spec.Icn, Quantity::current))};
+  return DeviceError{fmt::format("EN 60898-1 has no energy class {} for type {} of {} A and {}", spec.energy_class,
+                                 family.name, format_number(spec.In), format_quantity(spec.Icn, Quantity::current))};
 }
 
 // --- fuses -----------------------------------------------------------------------------------
@@ -160,8 +140,7 @@ std::optional<DeviceError> energy_limit(const DeviceSpec& spec,
 /// Least pre-arcing I2t of the rating two steps up in the R10 series; 0 where there is none.
 double pre_arcing_two_steps_up(const DeviceFamily& family, double In) noexcept {
   for (const FamilyRow& row : family.rows) {
-    if (row.In >= kTwoStepsUp * In && row.pre_arcing_min > 0)
-      return row.In <= 1.7 * In ? row.pre_arcing_min : 0;
+    if (row.In >= kTwoStepsUp * In && row.pre_arcing_min > 0) return row.In <= 1.7 * In ? row.pre_arcing_min : 0;
   }
   return 0;
 }
@@ -180,9 +159,8 @@ void fuse_let_through(const DeviceFamily& family, const FamilyRow& row, Device& 
   }
   if (!family.falling_let_through || row.latest.empty()) return;
   // The greatest time not above 0.4 s, else the last point there is.
-  const auto point = std::find_if(row.latest.begin(), row.latest.end(), [](const CurvePoint& p) {
-    return p.time <= kDisconnection;
-  });
+  const auto point =
+      std::find_if(row.latest.begin(), row.latest.end(), [](const CurvePoint& p) { return p.time <= kDisconnection; });
   const CurvePoint& last = point == row.latest.end() ? row.latest.back() : *point;
   let.basis = LetThrough::Basis::falling;
   let.total = last.current * last.current * last.time;
@@ -194,8 +172,7 @@ void fuse_let_through(const DeviceFamily& family, const FamilyRow& row, Device& 
 void fuse_band(const DeviceFamily& family, const FamilyRow& row, Device& out) {
   const bool gates = family.form == DeviceFamily::Form::gates;
   out.overcurrent.latest = gates ? latest_staircase(row.latest) : Curve{row.latest, AtStep::lower};
-  if (!row.earliest.empty())
-    out.overcurrent.earliest = earliest_staircase(row.earliest, kImmediately);
+  if (!row.earliest.empty()) out.overcurrent.earliest = earliest_staircase(row.earliest, kImmediately);
   out.by_gates = gates || !row.between.empty();
   if (!row.between.empty()) out.interpolated = Curve{row.between, AtStep::lower};
   out.confidence = row.confidence;
@@ -209,20 +186,16 @@ void fuse_band(const DeviceFamily& family, const FamilyRow& row, Device& out) {
 std::vector<CurvePoint> in_amperes(const std::vector<CurvePoint>& multiples, double IdN) {
   std::vector<CurvePoint> points;
   points.reserve(multiples.size());
-  for (const CurvePoint& multiple : multiples)
-    points.push_back({multiple.current * IdN, multiple.time});
+  for (const CurvePoint& multiple : multiples) points.push_back({multiple.current * IdN, multiple.time});
   return points;
 }
 
-std::optional<DeviceError> residual_band(const DeviceSpec& spec,
-                                         const DeviceFamily* family,
-                                         Device& out) {
+std::optional<DeviceError> residual_band(const DeviceSpec& spec, const DeviceFamily* family, Device& out) {
   if (spec.IdN <= 0) return std::nullopt;
   if (family == nullptr) return DeviceError{"no data on residual current devices"};
   const double smallest_selective = kSmallResidual * (1 + 1e-9);
   if (spec.selective && spec.IdN <= smallest_selective) {
-    return DeviceError{fmt::format("type S exists above 30 mA only, not with {} mA",
-                                   format_number(spec.IdN * 1e3))};
+    return DeviceError{fmt::format("type S exists above 30 mA only, not with {} mA", format_number(spec.IdN * 1e3))};
   }
   out.IdN = spec.IdN;
   out.selective_residual = spec.selective;
@@ -235,8 +208,7 @@ std::optional<DeviceError> residual_band(const DeviceSpec& spec,
   }
   std::vector<CurvePoint> earliest = {{family->residual_no_trip * spec.IdN, kNotOperating}};
   if (spec.selective) {
-    for (const CurvePoint& point : in_amperes(family->residual_earliest_s, spec.IdN))
-      earliest.push_back(point);
+    for (const CurvePoint& point : in_amperes(family->residual_earliest_s, spec.IdN)) earliest.push_back(point);
     if (family->residual_earliest_s_500 > 0) {
       earliest.push_back({kGreatResidualTest, family->residual_earliest_s_500});
     }
@@ -253,10 +225,8 @@ std::string joined_source(const std::string& a, const std::string& b) {
 
 }  // namespace
 
-std::optional<DeviceError> resolve_device(const DeviceSpec& spec,
-                                          const DeviceFamily* family,
-                                          const DeviceFamily* residual,
-                                          Device& out) {
+std::optional<DeviceError> resolve_device(const DeviceSpec& spec, const DeviceFamily* family,
+                                          const DeviceFamily* residual, Device& out) {
   out = Device{};
   if (family != nullptr && family->form == DeviceFamily::Form::residual) {
     residual = family;
@@ -270,12 +240,10 @@ std::optional<DeviceError> resolve_device(const DeviceSpec& spec,
   if (family == nullptr || family->form == DeviceFamily::Form::isolator) {
     const bool alone = family == nullptr && residual != nullptr;
     if (alone && spec.IdN <= 0) {
-      return DeviceError{
-          fmt::format("'{}' needs its residual operating current, such as '30 mA'", spec.family)};
+      return DeviceError{fmt::format("'{}' needs its residual operating current, such as '30 mA'", spec.family)};
     }
     if (spec.In <= 0) {
-      return DeviceError{
-          fmt::format("'{}' needs its rated current, such as '{} 63 A'", spec.family, spec.family)};
+      return DeviceError{fmt::format("'{}' needs its rated current, such as '{} 63 A'", spec.family, spec.family)};
     }
     if (spec.energy_class > 0 || spec.multiple_low > 0 || spec.multiple_high > 0) {
       return DeviceError{fmt::format("'{}' has no overcurrent release", spec.family)};
@@ -298,30 +266,26 @@ std::optional<DeviceError> resolve_device(const DeviceSpec& spec,
       if (auto error = energy_limit(spec, *family, out)) return error;
     } else {
       if (spec.energy_class > 0 || spec.multiple_low > 0 || spec.multiple_high > 0) {
-        return DeviceError{fmt::format(
-            "'{}' is a fuse: it has neither energy class nor instantaneous release", spec.family)};
+        return DeviceError{
+            fmt::format("'{}' is a fuse: it has neither energy class nor instantaneous release", spec.family)};
       }
       if (spec.IdN > 0)
-        return DeviceError{
-            fmt::format("'{}' is a fuse: it does not act on residual current", spec.family)};
+        return DeviceError{fmt::format("'{}' is a fuse: it does not act on residual current", spec.family)};
       const FamilyRow* row = find_row(*family, spec.In);
       if (row == nullptr) {
-        return DeviceError{
-            fmt::format("no data on '{}' of {} A", family->name, format_number(spec.In))};
+        return DeviceError{fmt::format("no data on '{}' of {} A", family->name, format_number(spec.In))};
       }
       fuse_band(*family, *row, out);
     }
   }
   if (spec.IdN > 0) {
     if (auto error = residual_band(spec, residual, out)) return error;
-    out.confidence = out.kind == DeviceKind::residual ? residual->confidence
-                                                      : worse(out.confidence, residual->confidence);
+    out.confidence =
+        out.kind == DeviceKind::residual ? residual->confidence : worse(out.confidence, residual->confidence);
     out.source = joined_source(out.source, residual->source);
   } else if (spec.selective || spec.has_type) {
-    return DeviceError{
-        fmt::format("'{}' has no residual operating current, so type {} means nothing",
-                    spec.family,
-                    spec.selective ? "S" : type_word(spec.type))};
+    return DeviceError{fmt::format("'{}' has no residual operating current, so type {} means nothing", spec.family,
+                                   spec.selective ? "S" : type_word(spec.type))};
   }
   return std::nullopt;
 }

@@ -18,16 +18,16 @@ namespace sunder::models {
 /// One declared bound of a supply: the most or the least it may deliver. Each value is either a
 /// current (at that condition's voltage factor) or a loop impedance (in ohms as it stands).
 struct Loop {
-  double ohms = 0;   ///< |Z| [ohm]; 0: not declared this way
-  double amps = 0;   ///< current [A]; 0: not declared this way
+  double ohms = 0;  ///< |Z| [ohm]; 0: not declared this way
+  double amps = 0;  ///< current [A]; 0: not declared this way
   Origin at{};
   [[nodiscard]] bool given() const noexcept { return ohms > 0 || amps > 0; }
 };
 
 struct Bound {
-  Loop three_phase;   ///< line impedance, or three-phase current
-  Loop line_neutral;  ///< loop through N
-  Loop line_earth;    ///< loop through PE (Ze)
+  Loop three_phase;          ///< line impedance, or three-phase current
+  Loop line_neutral;         ///< loop through N
+  Loop line_earth;           ///< loop through PE (Ze)
   double power_factor = -1;  ///< of the loop, 0..1; -1: not declared (an angle range is taken)
   Origin at{};
 };
@@ -48,21 +48,21 @@ struct Source {
   bool transformer = false;
   int board = -1;
   ConductorSet lines{Conductor::L1, Conductor::L2, Conductor::L3};  ///< lines it delivers
-  double U0 = 230;   ///< line to neutral [V]
-  double U = 400;    ///< line to line [V]
+  double U0 = 230;                                                  ///< line to neutral [V]
+  double U = 400;                                                   ///< line to line [V]
   Earthing earthing = Earthing::TN_S;
   bool own_transformer = false;  ///< decides voltage-drop limits
   Bound maximum, minimum;        ///< supply
   // transformer
-  double rating = 0;       ///< [VA]
-  double uk = 0;           ///< [1]
-  double losses = 0;       ///< load losses [W]; 0: from x_over_r
-  double x_over_r = 0;     ///< 0: from losses
-  double secondary = 0;    ///< rated no-load line voltage on the low side [V]
+  double rating = 0;                ///< [VA]
+  double uk = 0;                    ///< [1]
+  double losses = 0;                ///< load losses [W]; 0: from x_over_r
+  double x_over_r = 0;              ///< 0: from losses
+  double secondary = 0;             ///< rated no-load line voltage on the low side [V]
   double fault_level_max = kNever;  ///< before it, greatest [VA]; infinite: stiff
   double fault_level_min = 0;       ///< before it, least [VA]; 0: not declared, so the least currents are unknown
-  double z0_over_z1 = 1;   ///< zero-sequence impedance of the transformer
-  bool link_at_board = false;  ///< N-PE link at its board (PEN until there) instead of at the star point
+  double z0_over_z1 = 1;            ///< zero-sequence impedance of the transformer
+  bool link_at_board = false;       ///< N-PE link at its board (PEN until there) instead of at the star point
   Device device;
   Tails tails;
   Sourced<double> demand;  ///< of the whole installation, in its most loaded line [A]
@@ -91,7 +91,7 @@ struct Submain {
   std::string name;
   Origin at{};
   int from = -1, to = -1;
-  int group = -1;   ///< index into the from-board's groups
+  int group = -1;           ///< index into the from-board's groups
   ConductorSet conductors;  ///< L.., N where carried; PE iff a protective conductor is carried
   Device device;
   Cable cable;
@@ -101,7 +101,7 @@ struct Submain {
   Sourced<double> demand;  ///< [A]
   Sourced<double> pf;      ///< 0..1
   std::string installed;
-  std::string selective;   ///< "", "total", or a current as typed
+  std::string selective;  ///< "", "total", or a current as typed
   bool cpc_given = false;
 };
 
@@ -112,10 +112,10 @@ struct Spur {
 };
 
 struct Circuit {
-  std::string name;   ///< "W2"; address "workshop/W2"
+  std::string name;  ///< "W2"; address "workshop/W2"
   Origin at{};
   int board = -1;
-  int group = -1;     ///< index into the board's groups
+  int group = -1;  ///< index into the board's groups
   std::string serves;
   Use use = Use::unknown;
   ConductorSet conductors;  ///< lines, N, PE
@@ -125,10 +125,10 @@ struct Circuit {
   int in_parallel = 1;
   bool ring = false;
   std::vector<Spur> spurs;
-  Sourced<double> load;    ///< Ib [A]
+  Sourced<double> load;  ///< Ib [A]
   Sourced<double> pf;
-  Sourced<double> Iz;      ///< [A]
-  bool motor = false;      ///< its load is a motor's rated current
+  Sourced<double> Iz;  ///< [A]
+  bool motor = false;  ///< its load is a motor's rated current
   std::string installed;
   std::string selective;
 };
@@ -159,14 +159,14 @@ struct Network {
   std::string rules_name;
   RuleSet rules;
   double ambient_degc = 30;
-  double frequency = 50;     ///< [Hz]
+  double frequency = 50;  ///< [Hz]
   bool dwelling = false;
   std::vector<Source> sources;
   std::vector<Board> boards;
   std::vector<Submain> submains;
   std::vector<Circuit> circuits;
   std::vector<Electrode> electrodes;
-  std::vector<SupplyState> states;   ///< at least one once read
+  std::vector<SupplyState> states;  ///< at least one once read
   std::vector<Assumption> assumptions;
   // what remedies and catalogue sweeps may choose from
   std::vector<CableConstruction> constructions;

@@ -13,19 +13,19 @@
 namespace sunder::models {
 
 enum class ValueForm {
-  quantity,  ///< text with a unit, read by parse_quantity
-  text,      ///< free text
-  choice,    ///< one of `choices`
-  flag,      ///< true or false
-  number,    ///< bare number or text that is one
-  device,    ///< device text, table, or name of a [device.x]
-  cable,     ///< "<construction> <size>"
-  cpc,       ///< "core", "armour", "armour + core", "armour + 16 mm2", "16 mm2"
-  phases,    ///< "L1", "L1 L2 L3", "L1 L2 L3 N"
-  reference, ///< name of another element
-  list,      ///< list of texts
-  table,     ///< a table with keys of its own, listed as kind "<kind>.<key>"
-  points,    ///< list of pairs [current, time or I2t]
+  quantity,   ///< text with a unit, read by parse_quantity
+  text,       ///< free text
+  choice,     ///< one of `choices`
+  flag,       ///< true or false
+  number,     ///< bare number or text that is one
+  device,     ///< device text, table, or name of a [device.x]
+  cable,      ///< "<construction> <size>"
+  cpc,        ///< "core", "armour", "armour + core", "armour + 16 mm2", "16 mm2"
+  phases,     ///< "L1", "L1 L2 L3", "L1 L2 L3 N"
+  reference,  ///< name of another element
+  list,       ///< list of texts
+  table,      ///< a table with keys of its own, listed as kind "<kind>.<key>"
+  points,     ///< list of pairs [current, time or I2t]
 };
 
 struct Key {
@@ -35,10 +35,10 @@ struct Key {
   bool required = false;
   double least = 0, most = 0;                      ///< possible values, SI; both 0: any
   double plausible_least = 0, plausible_most = 0;  ///< warned about outside; both 0: no band
-  std::string_view choices;       ///< "sockets|fixed|lighting|distribution", separated by |
-  std::string_view by_default;    ///< as text, "" where there is none
-  std::string_view help;          ///< one sentence
-  bool above = false;             ///< `least` itself is not possible: "must be above 0 m"
+  std::string_view choices;                        ///< "sockets|fixed|lighting|distribution", separated by |
+  std::string_view by_default;                     ///< as text, "" where there is none
+  std::string_view help;                           ///< one sentence
+  bool above = false;                              ///< `least` itself is not possible: "must be above 0 m"
 };
 
 struct Kind {

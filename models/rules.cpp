@@ -15,16 +15,13 @@ const char* word(Use use) noexcept {
   return kWords[static_cast<std::size_t>(use)];
 }
 
-const AdiabaticRow* adiabatic(const RuleSet& rules,
-                              const Strand& strand,
-                              const std::string& insulation) noexcept {
+const AdiabaticRow* adiabatic(const RuleSet& rules, const Strand& strand, const std::string& insulation) noexcept {
   const std::string& own = strand.insulation.empty() ? insulation : strand.insulation;
   // Nominal sizes are typed and divided: 300 mm2 must count as "up to 300 mm2".
   const double area = strand.area * (1 - 1e-9);
   const AdiabaticRow* best = nullptr;
   for (const AdiabaticRow& row : rules.k) {
-    if (row.place != strand.place || row.material != strand.material || row.insulation != own)
-      continue;
+    if (row.place != strand.place || row.material != strand.material || row.insulation != own) continue;
     if (area > row.area_to) continue;
     if (best == nullptr || row.area_to < best->area_to) best = &row;
   }

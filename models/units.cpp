@@ -83,8 +83,7 @@ const Description& description(Quantity quantity) noexcept {
       Description{"a current", "16 A", "A, kA, mA", "A", 0},
       Description{"a voltage", "230 V", "V, kV, mV", "V", 0},
       Description{"an impedance", "0.35 ohm", "ohm, mohm, uohm, kohm", "ohm", 0},
-      Description{
-          "an impedance per length", "1.15 mohm/m", "mohm/m, ohm/km, ohm/m, uohm/m", "ohm/m", 0},
+      Description{"an impedance per length", "1.15 mohm/m", "mohm/m, ohm/km, ohm/m, uohm/m", "ohm/m", 0},
       Description{"an apparent power", "500 kVA", "VA, kVA, MVA, GVA", "VA", 0},
       Description{"a power", "5.1 kW", "W, kW, MW", "W", 0},
       Description{"a time", "0.4 s", "s, ms, min, h", "s", 0},
@@ -100,8 +99,7 @@ const Description& description(Quantity quantity) noexcept {
 }
 
 void replace_all(std::string& text, std::string_view from, std::string_view to) {
-  for (std::size_t at = text.find(from); at != std::string::npos;
-       at = text.find(from, at + to.size())) {
+  for (std::size_t at = text.find(from); at != std::string::npos; at = text.find(from, at + to.size())) {
     text.replace(at, from.size(), to);
   }
 }
@@ -110,11 +108,10 @@ void replace_all(std::string& text, std::string_view from, std::string_view to) 
 std::string plain_spelling(std::string_view typed) {
   std::string text(typed);
   static constexpr std::pair<std::string_view, std::string_view> kSigns[] = {
-      {"\u00B2", "2"}, {"^2", "2"},         {"\u03A9", "ohm"},  {"\u2126", "ohm"},
-      {"Ohm", "ohm"},  {"\u00B0C", "degC"}, {"\u2103", "degC"}, {"\u00B5", "u"},
-      {"\u03BC", "u"}, {"\u00B7", ""},      {"\u22C5", ""},     {"*", ""},
-      {"\u00A0", " "}, {"\u2009", " "},     {"\u202F", " "},    {"\u2212", "-"},
-      {"\t", " "},     {"sqmm", "mm2"},     {"ohms", "ohm"},
+      {"\u00B2", "2"},     {"^2", "2"},        {"\u03A9", "ohm"}, {"\u2126", "ohm"}, {"Ohm", "ohm"},
+      {"\u00B0C", "degC"}, {"\u2103", "degC"}, {"\u00B5", "u"},   {"\u03BC", "u"},   {"\u00B7", ""},
+      {"\u22C5", ""},      {"*", ""},          {"\u00A0", " "},   {"\u2009", " "},   {"\u202F", " "},
+      {"\u2212", "-"},     {"\t", " "},        {"sqmm", "mm2"},   {"ohms", "ohm"},
   };
   for (const auto& [from, to] : kSigns) replace_all(text, from, to);
   const std::size_t first = text.find_first_not_of(' ');
@@ -163,12 +160,9 @@ UnitError unknown_unit(std::string_view unit, Quantity quantity) {
   }
   for (const Unit& known : kUnits) {
     if (known.symbol == unit) {
-      return {fmt::format(
-          "'{}' is a unit of {}; {} is written in {}",
-          unit,
-          description(known.quantity).name.substr(description(known.quantity).name.find(' ') + 1),
-          about.name,
-          about.accepted)};
+      return {fmt::format("'{}' is a unit of {}; {} is written in {}", unit,
+                          description(known.quantity).name.substr(description(known.quantity).name.find(' ') + 1),
+                          about.name, about.accepted)};
     }
   }
   return {fmt::format("unknown unit '{}'; {} is written in {}", unit, about.name, about.accepted)};
@@ -183,8 +177,7 @@ UnitError comma_in_number(std::string_view typed, const std::string& text) {
   if (end - comma - 1 == 3) {
     std::string joined = text;
     joined.erase(comma, 1);
-    return {
-        fmt::format("'{}' has a comma in its number; write '{}' or '{}'", typed, joined, point)};
+    return {fmt::format("'{}' has a comma in its number; write '{}' or '{}'", typed, joined, point)};
   }
   return {fmt::format("'{}' has a comma in its number; write '{}'", typed, point)};
 }
@@ -206,10 +199,9 @@ std::variant<double, UnitError> parse_quantity(std::string_view typed, Quantity 
   // from_chars would take "inf" and "nan", which are no quantities.
   const std::size_t sign = !rest.empty() && rest.front() == '-' ? 1 : 0;
   const bool has_number =
-      rest.size() > sign && (is_digit(rest[sign]) || (rest[sign] == '.' && rest.size() > sign + 1 &&
-                                                      is_digit(rest[sign + 1])));
-  if (!has_number)
-    return UnitError{fmt::format("'{}' does not begin with a number; {}", typed, expected(about))};
+      rest.size() > sign &&
+      (is_digit(rest[sign]) || (rest[sign] == '.' && rest.size() > sign + 1 && is_digit(rest[sign + 1])));
+  if (!has_number) return UnitError{fmt::format("'{}' does not begin with a number; {}", typed, expected(about))};
 
   double number = 0;
   const auto [end, status] = std::from_chars(rest.data(), rest.data() + rest.size(), number);
@@ -220,15 +212,13 @@ std::variant<double, UnitError> parse_quantity(std::string_view typed, Quantity 
   if (!rest.empty() && rest.front() == ',') return comma_in_number(typed, text);
   const std::size_t blank = rest.find_first_not_of(' ');
   if (blank != std::string_view::npos && blank > 0 && is_digit(rest[blank])) {
-    return UnitError{
-        fmt::format("'{}' has a gap in its number; write the digits without blanks", typed)};
+    return UnitError{fmt::format("'{}' has a gap in its number; write the digits without blanks", typed)};
   }
 
   const std::string unit = without_blanks(rest);
   if (unit.empty()) {
     if (about.bare_factor > 0) return number * about.bare_factor;
-    return UnitError{
-        fmt::format("'{}' has no unit; {} is written in {}", typed, about.name, about.accepted)};
+    return UnitError{fmt::format("'{}' has no unit; {} is written in {}", typed, about.name, about.accepted)};
   }
   for (const Unit& known : kUnits) {
     if (known.quantity == quantity && known.symbol == unit) {
@@ -269,8 +259,7 @@ std::string format_number(double value, int digits) {
     for (const char c : text) {
       if (c != '.') whole += c;
     }
-    const std::size_t length =
-        static_cast<std::size_t>(exponent) + 1 + (whole.front() == '-' ? 1U : 0U);
+    const std::size_t length = static_cast<std::size_t>(exponent) + 1 + (whole.front() == '-' ? 1U : 0U);
     whole.resize(std::max(length, whole.size()), '0');
     return whole;
   }
@@ -305,8 +294,7 @@ std::string format_quantity(double si_value, Quantity quantity, int digits) {
       return size >= 1e3 ? scaled(si_value, 1e3, "kW", digits) : scaled(si_value, 1, "W", digits);
     case Quantity::time:
       if (size < 0.1 && si_value != 0) return scaled(si_value, 1e-3, "ms", digits);
-      if (si_value >= 3600 && std::fmod(si_value, 3600.0) == 0)
-        return scaled(si_value, 3600, "h", digits);
+      if (si_value >= 3600 && std::fmod(si_value, 3600.0) == 0) return scaled(si_value, 3600, "h", digits);
       return scaled(si_value, 1, "s", digits);
     case Quantity::temperature:
       return scaled(si_value, 1, "degC", digits);
@@ -314,8 +302,7 @@ std::string format_quantity(double si_value, Quantity quantity, int digits) {
       return scaled(si_value, 1e-2, "%", digits);
     case Quantity::let_through:
       if (size >= 1e6) return scaled(si_value, 1e6, "MA2s", digits);
-      return size >= 1e3 ? scaled(si_value, 1e3, "kA2s", digits)
-                         : scaled(si_value, 1, "A2s", digits);
+      return size >= 1e3 ? scaled(si_value, 1e3, "kA2s", digits) : scaled(si_value, 1, "A2s", digits);
     case Quantity::adiabatic_k:
       return format_number(si_value / 1e6, digits);
     case Quantity::voltage_drop_per:
@@ -329,8 +316,6 @@ std::string format_quantity(double si_value, Quantity quantity, int digits) {
 
 std::string_view si_symbol(Quantity quantity) noexcept { return description(quantity).si; }
 
-std::string_view accepted_units(Quantity quantity) noexcept {
-  return description(quantity).accepted;
-}
+std::string_view accepted_units(Quantity quantity) noexcept { return description(quantity).accepted; }
 
 }  // namespace sunder::models

@@ -94,9 +94,7 @@ Key iz() {
       .usual(5, 3000);
 }
 
-Key pf() {
-  return number("pf", "Power factor of the load.").above(0, 1).usual(0.5, 1).unless_given("1");
-}
+Key pf() { return number("pf", "Power factor of the load.").above(0, 1).usual(0.5, 1).unless_given("1"); }
 
 // The demand of what a submain or a source feeds.
 Key demand() {
@@ -127,14 +125,11 @@ Kind supply() {
            entry("maximum", ValueForm::table, "The most that the network may deliver at the terminals."),
            entry("minimum", ValueForm::table, "The least that the network may deliver at the terminals."),
            entry("device", ValueForm::device, "The device at the origin, such as the distributor's fuse."),
-           entry("tails", ValueForm::table, "The conductors from that device to the board."),
-           demand(),
-           mean_pf()}};
+           entry("tails", ValueForm::table, "The conductors from that device to the board."), demand(), mean_pf()}};
 }
 
 std::vector<Key> bound_keys() {
-  return {entry("three_phase", ValueForm::text,
-                "Three-phase short-circuit current, or impedance of one line."),
+  return {entry("three_phase", ValueForm::text, "Three-phase short-circuit current, or impedance of one line."),
           entry("line_neutral", ValueForm::text, "Line-neutral short-circuit current, or loop impedance."),
           entry("line_earth", ValueForm::text, "Line-earth fault current, or loop impedance."),
           number("power_factor", "Power factor of the loops; without it and x_over_r a range of angles is taken.")
@@ -152,7 +147,8 @@ Kind supply_maximum() {
 
 Kind supply_minimum() {
   std::vector<Key> keys = bound_keys();
-  keys.push_back(amount("Ze", Quantity::impedance, "Earth-fault loop impedance outside the installation; in TT the source's side, without RA.")
+  keys.push_back(amount("Ze", Quantity::impedance,
+                        "Earth-fault loop impedance outside the installation; in TT the source's side, without RA.")
                      .above(0, 10000)
                      .usual(0.005, 250));
   keys.push_back(amount("Zn", Quantity::impedance, "Line-neutral loop impedance outside the installation.")
@@ -163,15 +159,12 @@ Kind supply_minimum() {
 }
 
 std::vector<Key> tails_keys() {
-  return {entry("cable", ValueForm::cable, "Construction and size.").need(),
-          amount("length", Quantity::length, "Length from the device to the board.")
-              .need()
-              .above(0, 10000)
-              .usual(0.2, 200),
-          entry("cpc", ValueForm::cpc, "The main earthing conductor that runs with them.")
-              .unless_given("as the line conductor"),
-          number("in_parallel", "Equal conductors in parallel.").from(1, 20).unless_given("1"),
-          iz()};
+  return {
+      entry("cable", ValueForm::cable, "Construction and size.").need(),
+      amount("length", Quantity::length, "Length from the device to the board.").need().above(0, 10000).usual(0.2, 200),
+      entry("cpc", ValueForm::cpc, "The main earthing conductor that runs with them.")
+          .unless_given("as the line conductor"),
+      number("in_parallel", "Equal conductors in parallel.").from(1, 20).unless_given("1"), iz()};
 }
 
 Kind transformer() {
@@ -181,10 +174,7 @@ Kind transformer() {
           "losses = \"5.1 kW\"\nearthing = \"TN-S\"\nfault_level = \"250 MVA\"\n",
           {entry("feeds", ValueForm::reference, "The board that it supplies.").need(),
            entry("voltage", ValueForm::text, "Nominal voltage of the low side: \"230/400 V\".").need(),
-           amount("rating", Quantity::apparent_power, "Rated power.")
-               .need()
-               .above(0, 1e9)
-               .usual(5e3, 5e6),
+           amount("rating", Quantity::apparent_power, "Rated power.").need().above(0, 1e9).usual(5e3, 5e6),
            amount("uk", Quantity::percentage, "Short-circuit voltage.").need().above(0, 0.5).usual(0.02, 0.12),
            amount("losses", Quantity::power, "Load losses at rated current; or give x_over_r.")
                .above(0, 1e7)
@@ -206,9 +196,7 @@ Kind transformer() {
                .usual(0.3, 10)
                .unless_given("1"),
            entry("device", ValueForm::device, "The device on its low side."),
-           entry("tails", ValueForm::table, "The conductors from its low side to the board."),
-           demand(),
-           mean_pf()}};
+           entry("tails", ValueForm::table, "The conductors from its low side to the board."), demand(), mean_pf()}};
 }
 
 Kind fault_level() {
@@ -234,8 +222,7 @@ Kind board_groups() {
           "A device over some of a board's ways.",
           "groups = { sockets = { device = \"RCD 63 A 30 mA A\", ways = [\"W1\", \"W2\"] } }\n",
           {entry("device", ValueForm::device, "The device of the group.").need(),
-           entry("ways", ValueForm::list, "Circuits of the board and submains that leave it.").need(),
-           demand()}};
+           entry("ways", ValueForm::list, "Circuits of the board and submains that leave it.").need(), demand()}};
 }
 
 Key installed() {
@@ -257,14 +244,12 @@ Kind submain() {
            entry("phases", ValueForm::phases, "Its live conductors.").unless_given("all that its board has"),
            entry("device", ValueForm::device, "The device at its start.").need(),
            entry("cable", ValueForm::cable, "Construction and size.").need(),
-           entry("cpc", ValueForm::cpc, "Where its protective conductor is; \"none\" towards a board with an electrode of its own.").unless_given("a spare core"),
+           entry("cpc", ValueForm::cpc,
+                 "Where its protective conductor is; \"none\" towards a board with an electrode of its own.")
+               .unless_given("a spare core"),
            amount("length", Quantity::length, "Its length.").need().above(0, 100000).usual(0.5, 1000),
-           number("in_parallel", "Equal cables in parallel.").from(1, 20).unless_given("1"),
-           installed(),
-           iz(),
-           demand(),
-           pf(),
-           selective()}};
+           number("in_parallel", "Equal cables in parallel.").from(1, 20).unless_given("1"), installed(), iz(),
+           demand(), pf(), selective()}};
 }
 
 Kind circuit() {
@@ -289,22 +274,16 @@ Kind circuit() {
            number("in_parallel", "Equal cables in parallel.").from(1, 20).unless_given("1"),
            entry("ring", ValueForm::flag, "Whether both ends are at the board.").unless_given("false"),
            entry("spurs", ValueForm::table, "Spurs off a ring."),
-           amount("load", Quantity::current, "Design current Ib in one line.").from(0, 20000).usual(0.01, 400),
-           pf(),
-           entry("motor", ValueForm::flag, "Whether its load is the rated current of a motor.")
-               .unless_given("false"),
-           iz(),
-           installed(),
-           selective()}};
+           amount("load", Quantity::current, "Design current Ib in one line.").from(0, 20000).usual(0.01, 400), pf(),
+           entry("motor", ValueForm::flag, "Whether its load is the rated current of a motor.").unless_given("false"),
+           iz(), installed(), selective()}};
 }
 
 Kind circuit_spurs() {
   return {"circuit.spurs",
           "One spur off a ring; in a schedule file a cell \"20 m:4 m; 31 m:3 m\" (at:length).",
           "spurs = [{ at = \"20 m\", length = \"4 m\" }]\n",
-          {amount("at", Quantity::length, "Where it leaves the ring, from the ring's start.")
-               .need()
-               .from(0, 100000),
+          {amount("at", Quantity::length, "Where it leaves the ring, from the ring's start.").need().from(0, 100000),
            amount("length", Quantity::length, "Its length.").need().above(0, 100000).usual(0.1, 100)}};
 }
 
@@ -334,22 +313,16 @@ Kind device() {
            entry("kind", ValueForm::choice, "What it is, when given by points.").of("breaker|fuse|residual"),
            amount("In", Quantity::current, "Rated current.").need().above(0, 10000).usual(0.5, 2000),
            amount("Icn", Quantity::current, "Breaking capacity.").above(0, 500000).usual(1000, 200000),
-           amount("IdN", Quantity::current, "Rated residual operating current.")
-               .above(0, 100)
-               .usual(0.01, 30),
+           amount("IdN", Quantity::current, "Rated residual operating current.").above(0, 100).usual(0.01, 30),
            entry("S", ValueForm::flag, "Whether its residual release is delayed, type S.").unless_given("false"),
-           entry("type", ValueForm::choice, "Residual currents that it responds to.")
-               .of("AC|A|F|B")
-               .unless_given("AC"),
+           entry("type", ValueForm::choice, "Residual currents that it responds to.").of("AC|A|F|B").unless_given("AC"),
            number("energy_class", "Energy limiting class.").from(1, 3),
            entry("instantaneous", ValueForm::text,
                  "The maker's multiples of In between which the instantaneous release operates: \"7 10\"."),
            entry("latest", ValueForm::points, "Latest operating time against current."),
            entry("earliest", ValueForm::points, "Earliest operating time against current."),
            entry("let_through", ValueForm::points, "Greatest let-through I2t against prospective current."),
-           amount("pre_arcing", Quantity::let_through, "Least I2t that may melt a fuse.")
-               .above(0, 1e12)
-               .usual(1, 1e9),
+           amount("pre_arcing", Quantity::let_through, "Least I2t that may melt a fuse.").above(0, 1e12).usual(1, 1e9),
            amount("I2", Quantity::current, "Conventional operating current.").above(0, 20000),
            entry("source", ValueForm::text, "Where its points were published.")}};
 }
@@ -362,9 +335,7 @@ Kind cable() {
           "source = \"maker's sheet\"\n",
           {entry("title", ValueForm::text, "What schedules call it."),
            entry("material", ValueForm::choice, "Material of its conductors.").need().of("copper|aluminium"),
-           entry("insulation", ValueForm::choice, "Insulation, which decides k.")
-               .need()
-               .of("pvc70|pvc90|xlpe90"),
+           entry("insulation", ValueForm::choice, "Insulation, which decides k.").need().of("pvc70|pvc90|xlpe90"),
            amount("max", Quantity::temperature, "Greatest conductor temperature in operation.")
                .from(30, 250)
                .usual(60, 105)
@@ -382,39 +353,28 @@ Kind cable() {
 
 Kind cable_sizes() {
   constexpr std::string_view kWords = "found|derived|checked|memory|low|declared";
-  return {"cable.sizes",
-          "One size of a cable construction.",
-          "sizes = [{ size = \"35 mm2\", r20 = \"0.524 mohm/m\", x = \"0.08 mohm/m\" }]\n",
-          {amount("size", Quantity::area, "Nominal area of a line conductor.")
-               .need()
-               .above(0, 0.01)
-               .usual(0.5e-6, 1200e-6),
-           amount("r20", Quantity::impedance_per_length, "Resistance of a line conductor at 20 degC.")
-               .need()
-               .above(0, 10),
-           amount("x", Quantity::impedance_per_length, "Reactance of a conductor.")
-               .from(0, 0.1)
-               .usual(0.04e-3, 0.3e-3)
-               .unless_given("0"),
-           amount("cpc_size", Quantity::area, "Area of the built-in protective conductor.").above(0, 0.01),
-           amount("cpc_r20", Quantity::impedance_per_length, "Its resistance at 20 degC.").above(0, 10),
-           amount("armour_area", Quantity::area, "Area of all armour wires together.")
-               .above(0, 0.1)
-               .usual(5e-6, 1500e-6),
-           amount("armour_r20", Quantity::impedance_per_length, "Resistance of the armour at 20 degC.")
-               .above(0, 10),
-           amount("armour_x", Quantity::impedance_per_length, "Reactance of the armour.")
-               .from(0, 0.1)
-               .unless_given("0"),
-           entry("status", ValueForm::choice, "How well the conductor values are supported.")
-               .of(kWords)
-               .unless_given("declared"),
-           entry("x_status", ValueForm::choice, "How well the reactance is supported.")
-               .of(kWords)
-               .unless_given("declared"),
-           entry("armour_status", ValueForm::choice, "How well the armour values are supported.")
-               .of(kWords)
-               .unless_given("declared")}};
+  return {
+      "cable.sizes",
+      "One size of a cable construction.",
+      "sizes = [{ size = \"35 mm2\", r20 = \"0.524 mohm/m\", x = \"0.08 mohm/m\" }]\n",
+      {amount("size", Quantity::area, "Nominal area of a line conductor.").need().above(0, 0.01).usual(0.5e-6, 1200e-6),
+       amount("r20", Quantity::impedance_per_length, "Resistance of a line conductor at 20 degC.").need().above(0, 10),
+       amount("x", Quantity::impedance_per_length, "Reactance of a conductor.")
+           .from(0, 0.1)
+           .usual(0.04e-3, 0.3e-3)
+           .unless_given("0"),
+       amount("cpc_size", Quantity::area, "Area of the built-in protective conductor.").above(0, 0.01),
+       amount("cpc_r20", Quantity::impedance_per_length, "Its resistance at 20 degC.").above(0, 10),
+       amount("armour_area", Quantity::area, "Area of all armour wires together.").above(0, 0.1).usual(5e-6, 1500e-6),
+       amount("armour_r20", Quantity::impedance_per_length, "Resistance of the armour at 20 degC.").above(0, 10),
+       amount("armour_x", Quantity::impedance_per_length, "Reactance of the armour.").from(0, 0.1).unless_given("0"),
+       entry("status", ValueForm::choice, "How well the conductor values are supported.")
+           .of(kWords)
+           .unless_given("declared"),
+       entry("x_status", ValueForm::choice, "How well the reactance is supported.").of(kWords).unless_given("declared"),
+       entry("armour_status", ValueForm::choice, "How well the armour values are supported.")
+           .of(kWords)
+           .unless_given("declared")}};
 }
 
 }  // namespace

@@ -44,23 +44,23 @@ struct PendingGroup {
 struct Context {
   Complaints complaints;
   models::Network network;
-  std::string folder;           ///< of the netlist, for schedules
-  std::string lost;             ///< text that was left out after errors of form
+  std::string folder;            ///< of the netlist, for schedules
+  std::string lost;              ///< text that was left out after errors of form
   bool states_declared = false;  ///< some state stands in the netlist, be it faulty
-  bool refused = false;         ///< an element's name was refused, so that others may miss it
-  Names elements;               ///< supplies, transformers, boards, submains, electrodes
+  bool refused = false;          ///< an element's name was refused, so that others may miss it
+  Names elements;                ///< supplies, transformers, boards, submains, electrodes
   Names states;
-  Names devices;                ///< [device.x]; handle into `named_devices`
-  Names circuits;               ///< by "board/way"
+  Names devices;   ///< [device.x]; handle into `named_devices`
+  Names circuits;  ///< by "board/way"
   std::vector<models::Device> named_devices;
-  std::unordered_map<std::string, int> constructions;  ///< into network.constructions
-  std::unordered_map<std::string, int> families;       ///< into network.families
+  std::unordered_map<std::string, int> constructions;            ///< into network.constructions
+  std::unordered_map<std::string, int> families;                 ///< into network.families
   std::unordered_map<std::string, models::Device> device_texts;  ///< resolved before
-  std::vector<PendingRun> submain_runs;  ///< parallel to network.submains
-  std::vector<PendingRun> circuit_runs;  ///< parallel to network.circuits
+  std::vector<PendingRun> submain_runs;                          ///< parallel to network.submains
+  std::vector<PendingRun> circuit_runs;                          ///< parallel to network.circuits
   std::vector<PendingGroup> groups;
-  std::deque<Value> rows;                ///< of schedules
-  std::deque<std::string> texts;         ///< of files, so that diagnostics can show their lines
+  std::deque<Value> rows;         ///< of schedules
+  std::deque<std::string> texts;  ///< of files, so that diagnostics can show their lines
 
   void assume(std::string subject, std::string sentence, models::Origin at) {
     network.assumptions.push_back({std::move(subject), std::move(sentence), at});
@@ -80,19 +80,17 @@ struct Context {
 
 /// The handle of an element that `value` names, -1 after a complaint.
 /// @param lead  begins the hint where no name is near
-[[nodiscard]] int find_element(Context& context, const Value& value, std::string_view kind,
-                               std::string_view lead = {});
+[[nodiscard]] int find_element(Context& context, const Value& value, std::string_view kind, std::string_view lead = {});
 
 /// Checks a new name (characters, unique in `names`) and enters it. @return false after a complaint.
 bool enter_name(Context& context, Names& names, const Member& member, std::string_view kind, int handle);
 
 /// Reads a file into `text`: missing, a folder, too large are complaints at `at`, which end in false.
 /// @param what  "schedule file" or "netlist", for the sentence
-[[nodiscard]] bool load_text(Context& context, const std::string& path, std::string_view what,
-                             models::Origin at, int width, std::string& text);
+[[nodiscard]] bool load_text(Context& context, const std::string& path, std::string_view what, models::Origin at,
+                             int width, std::string& text);
 
 /// Empty, binary or not UTF-8: a complaint about `file`, and false.
-[[nodiscard]] bool sound_text(Context& context, std::string_view text, std::uint32_t file,
-                              std::string_view what);
+[[nodiscard]] bool sound_text(Context& context, std::string_view text, std::uint32_t file, std::string_view what);
 
 }  // namespace sunder::netlists

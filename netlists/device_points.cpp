@@ -139,8 +139,9 @@ std::optional<Device> device_by_points(Context& context, ElementKeys& fields, co
   sound = sound && !kind.empty();
   for (const std::string_view key : {"instantaneous", "energy_class"}) {
     if (const Value* extra = fields.find(key)) {
-      context.complaints.error(extra->at, extra->width,
-                               fmt::format("{} is given by points; '{}' goes with a family ('like')", fields.what(), key));
+      context.complaints.error(
+          extra->at, extra->width,
+          fmt::format("{} is given by points; '{}' goes with a family ('like')", fields.what(), key));
       sound = false;
     }
   }

@@ -15,7 +15,7 @@ namespace sunder::netlists {
 
 namespace {
 
-constexpr int kBefore = 60;  // characters of a long line kept before the caret
+constexpr int kBefore = 60;   // characters of a long line kept before the caret
 constexpr int kWidest = 110;  // characters of a line shown at most
 constexpr std::string_view kCut = "...";
 
@@ -48,8 +48,8 @@ std::pair<std::string, std::string> line_and_caret(const Diagnostic& diagnostic)
   std::string under(line.size(), ' ');
   for (int i = first; i < last; ++i) {
     const std::string_view piece = pieces[static_cast<std::size_t>(i)];
-    const bool control = piece.size() == 1 && piece != "\t" &&
-                         (static_cast<unsigned char>(piece[0]) < 0x20U || piece[0] == '\x7f');
+    const bool control =
+        piece.size() == 1 && piece != "\t" && (static_cast<unsigned char>(piece[0]) < 0x20U || piece[0] == '\x7f');
     line += control ? std::string_view{"."} : piece;
     if (i < column - 1) under += piece == "\t" ? '\t' : ' ';
   }
@@ -62,9 +62,12 @@ std::pair<std::string, std::string> line_and_caret(const Diagnostic& diagnostic)
 
 std::string_view severity_word(Severity severity) noexcept {
   switch (severity) {
-    case Severity::error: return "error";
-    case Severity::warning: return "warning";
-    case Severity::note: break;
+    case Severity::error:
+      return "error";
+    case Severity::warning:
+      return "warning";
+    case Severity::note:
+      break;
   }
   return "note";
 }
@@ -149,8 +152,8 @@ std::vector<Diagnostic> Complaints::in_order() const {
     list.insert(list.end(), entry->notes.begin(), entry->notes.end());
   }
   if (n_errors_ > kMost && !files_.empty()) {
-    list.push_back(make(Severity::error, {1, 0, 0}, 1,
-                        fmt::format("{} further errors are not listed", n_errors_ - kMost)));
+    list.push_back(
+        make(Severity::error, {1, 0, 0}, 1, fmt::format("{} further errors are not listed", n_errors_ - kMost)));
     list.back().stands_for = n_errors_ - kMost;
   }
   return list;

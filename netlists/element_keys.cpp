@@ -72,7 +72,7 @@ models::Origin inside(const Value& value, std::size_t offset) noexcept {
 }
 
 ElementKeys::ElementKeys(Context& context, const Value& table, const models::Kind& kind, std::string what,
-               models::Origin at)
+                         models::Origin at)
     : context_(context), table_(table), kind_(kind), what_(std::move(what)), at_(at) {
   std::vector<std::string_view> meant;  // by unknown keys, and so not missed as well
   for (const Member& member : table.members) {
@@ -100,12 +100,12 @@ void ElementKeys::wrong_form(const Value& value, std::string_view key, std::stri
 
 std::optional<double> ElementKeys::in_range(const Key& key, const Value& value, double si) {
   auto refuse = [&](std::string rule) {
-    context_.complaints.error(value.at, value.width, fmt::format("{} of {} is {}; it must be {}", key.name, what_,
-                                                                 shown(key, si), std::move(rule)));
+    context_.complaints.error(
+        value.at, value.width,
+        fmt::format("{} of {} is {}; it must be {}", key.name, what_, shown(key, si), std::move(rule)));
   };
   if (!std::isfinite(si)) {
-    context_.complaints.error(value.at, value.width,
-                              fmt::format("{} of {} is not a finite number", key.name, what_));
+    context_.complaints.error(value.at, value.width, fmt::format("{} of {} is not a finite number", key.name, what_));
     return std::nullopt;
   }
   const bool bounded = key.least != 0 || key.most != 0;
@@ -126,10 +126,9 @@ std::optional<double> ElementKeys::in_range(const Key& key, const Value& value, 
   const bool banded = key.plausible_least != 0 || key.plausible_most != 0;
   if (banded && (si < key.plausible_least - kSlack * std::abs(key.plausible_least) ||
                  si > key.plausible_most + kSlack * std::abs(key.plausible_most))) {
-    context_.complaints.warn(
-        value.at, value.width,
-        fmt::format("{} of {} is {}; usual are {} to {}", key.name, what_, shown(key, si),
-                    shown(key, key.plausible_least), shown(key, key.plausible_most)));
+    context_.complaints.warn(value.at, value.width,
+                             fmt::format("{} of {} is {}; usual are {} to {}", key.name, what_, shown(key, si),
+                                         shown(key, key.plausible_least), shown(key, key.plausible_most)));
   }
   return si;
 }
@@ -244,8 +243,7 @@ std::optional<bool> ElementKeys::flag(std::string_view name) {
 models::Sourced<double> ElementKeys::sourced(std::string_view name) {
   models::Sourced<double> made;
   const Key* key = models::find_key(kind_, name);
-  const std::optional<double> read =
-      key != nullptr && key->form == ValueForm::number ? number(name) : quantity(name);
+  const std::optional<double> read = key != nullptr && key->form == ValueForm::number ? number(name) : quantity(name);
   if (!read) return made;
   made.value = *read;
   made.at = find(name)->at;

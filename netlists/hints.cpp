@@ -149,15 +149,15 @@ std::string_view parent_of(std::string_view kind) noexcept {
 }
 
 // Words that say what a device is and stand in no device text.
-constexpr std::array<std::string_view, 10> kDeviceWords = {"mcb",  "rcbo",    "mccb", "rccb",  "type",
+constexpr std::array<std::string_view, 10> kDeviceWords = {"mcb",   "rcbo",    "mccb", "rccb", "type",
                                                            "curve", "breaker", "fuse", "afdd", "elcb"};
 
 std::string with_unit(std::string_view rest) {
   std::string text(trimmed(rest));
   const std::size_t end = std::min(text.find_first_not_of("0123456789."), text.size());
   const std::size_t next = text.find_first_not_of(' ', end);
-  const bool unit = next != std::string::npos && (text[next] == 'A' || text.compare(next, 2, "mA") == 0 ||
-                                                  text.compare(next, 2, "kA") == 0);
+  const bool unit = next != std::string::npos &&
+                    (text[next] == 'A' || text.compare(next, 2, "mA") == 0 || text.compare(next, 2, "kA") == 0);
   if (end > 0 && !unit) text.insert(end, " A");
   return text;
 }
@@ -218,7 +218,8 @@ std::string_view meant_key(const Kind& kind, std::string_view key) {
 }
 
 std::string unknown_key_hint(const Kind& kind, std::string_view key, bool table) {
-  if (const Key* trade = by_trade(kind, key)) return fmt::format("{} is the key '{}': {}", key, trade->name, trade->help);
+  if (const Key* trade = by_trade(kind, key))
+    return fmt::format("{} is the key '{}': {}", key, trade->name, trade->help);
   std::vector<std::string_view> names;
   for (const Key& known : kind.keys) names.push_back(known.name);
   const std::string_view near = near_key(kind, key);

@@ -155,12 +155,9 @@ models::DeviceFamily read_family(const std::string& name, Fields& fields) {
   fields.text("source", family.source, true);
   fields.status("status", family.confidence, true);
   const bool has_rows = family.form == Form::gates || family.form == Form::points;
-  fields.tables(
-      "rows", has_rows, [&](Fields& row) { family.rows.push_back(read_family_row(row)); });
-  fields.tables(
-      "energy", false, [&](Fields& row) { family.energy.push_back(read_energy_row(row, name)); });
-  if (!std::is_sorted(family.ratings.begin(), family.ratings.end()))
-    fields.complain("ratings are not ascending");
+  fields.tables("rows", has_rows, [&](Fields& row) { family.rows.push_back(read_family_row(row)); });
+  fields.tables("energy", false, [&](Fields& row) { family.energy.push_back(read_energy_row(row, name)); });
+  if (!std::is_sorted(family.ratings.begin(), family.ratings.end())) fields.complain("ratings are not ascending");
   if (has_rows) {
     std::vector<double> of_rows;
     for (const models::FamilyRow& row : family.rows) of_rows.push_back(row.In);
@@ -260,11 +257,9 @@ models::RuleSet read_rules(Fields& fields) {
   fields.flag("additional_dwelling_lighting", rules.additional_dwelling_lighting);
   fields.status("status", rules.confidence, true);
   std::vector<Confidence> statuses;
-  fields.tables(
-      "times", true, [&](Fields& row) { rules.times.push_back(read_time(row, statuses)); });
+  fields.tables("times", true, [&](Fields& row) { rules.times.push_back(read_time(row, statuses)); });
   fields.tables("k", true, [&](Fields& row) { rules.k.push_back(read_k(row)); });
-  for (const Confidence status : statuses)
-    rules.confidence = models::worse(rules.confidence, status);
+  for (const Confidence status : statuses) rules.confidence = models::worse(rules.confidence, status);
   return rules;
 }
 
@@ -272,11 +267,8 @@ models::RuleSet read_rules(Fields& fields) {
 
 /// Calls `read` with name and fields of each table under `kind`.
 template <class Read>
-void each_named(const toml::table& root,
-                std::string_view kind,
-                const std::string& file,
-                std::vector<std::string>& errors,
-                const Read& read) {
+void each_named(const toml::table& root, std::string_view kind, const std::string& file,
+                std::vector<std::string>& errors, const Read& read) {
   const toml::table* tables = root[kind].as_table();
   if (tables == nullptr) return;
   for (const auto& [key, node] : *tables) {
@@ -296,17 +288,15 @@ void read_file(const std::string& name, const std::string& text, Library& librar
   const toml::parse_result parsed = toml::parse(text, name);
   if (!parsed) {
     const toml::parse_error& error = parsed.error();
-    library.errors.push_back(
-        fmt::format("{}:{}: {}", name, error.source().begin.line, error.description()));
+    library.errors.push_back(fmt::format("{}:{}: {}", name, error.source().begin.line, error.description()));
     return;
   }
   const toml::table& root = parsed.table();
   each_named(root, "cable", name, library.errors, [&](const std::string& key, Fields& fields) {
     library.constructions.push_back(read_construction(key, fields));
   });
-  each_named(root, "family", name, library.errors, [&](const std::string& key, Fields& fields) {
-    library.families.push_back(read_family(key, fields));
-  });
+  each_named(root, "family", name, library.errors,
+             [&](const std::string& key, Fields& fields) { library.families.push_back(read_family(key, fields)); });
   if (const toml::table* table = root["rules"].as_table()) {
     Fields fields(*table, name, library.errors);
     library.rule_sets.push_back(read_rules(fields));
@@ -323,8 +313,7 @@ template <class T>
 void sort_by_name(std::vector<T>& items, std::vector<std::string>& errors) {
   std::sort(items.begin(), items.end(), [](const T& a, const T& b) { return a.name < b.name; });
   for (std::size_t i = 1; i < items.size(); ++i) {
-    if (items[i].name == items[i - 1].name)
-      errors.push_back(fmt::format("'{}' is there twice", items[i].name));
+    if (items[i].name == items[i - 1].name) errors.push_back(fmt::format("'{}' is there twice", items[i].name));
   }
 }
 

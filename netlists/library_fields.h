@@ -27,9 +27,7 @@ class Fields {
   Fields(const toml::table& table, std::string where, std::vector<std::string>& errors)
       : table_(table), where_(std::move(where)), errors_(errors) {}
 
-  void complain(const std::string& sentence) {
-    errors_.push_back(fmt::format("{}: {}", where_, sentence));
-  }
+  void complain(const std::string& sentence) { errors_.push_back(fmt::format("{}: {}", where_, sentence)); }
 
   [[nodiscard]] bool has(std::string_view key) const { return table_.contains(key); }
 
@@ -91,9 +89,7 @@ class Fields {
 
   /// One of the words of a closed list, given as (word, value).
   template <class T, std::size_t N>
-  void choice(std::string_view key,
-              const std::array<std::pair<std::string_view, T>, N>& words,
-              T& out,
+  void choice(std::string_view key, const std::array<std::pair<std::string_view, T>, N>& words, T& out,
               bool required = false) {
     std::string typed;
     text(key, typed, required);
@@ -144,13 +140,10 @@ class Fields {
       const double current = two ? pair->get(0)->value_or(0.0) : 0.0;
       const double time = two ? pair->get(1)->value_or(0.0) : 0.0;
       if (current <= 0 || time <= 0) {
-        return complain(
-            fmt::format("'{}' holds something that is not a pair of positive numbers", key));
+        return complain(fmt::format("'{}' holds something that is not a pair of positive numbers", key));
       }
-      if (!out.empty() && current < out.back().current)
-        complain(fmt::format("'{}' has a falling current", key));
-      if (!out.empty() && time > out.back().time)
-        complain(fmt::format("'{}' has a rising time", key));
+      if (!out.empty() && current < out.back().current) complain(fmt::format("'{}' has a falling current", key));
+      if (!out.empty() && time > out.back().time) complain(fmt::format("'{}' has a rising time", key));
       out.push_back({current, time});
     }
   }
@@ -166,8 +159,7 @@ class Fields {
     for (const toml::node& item : *array) {
       ++n;
       const toml::table* table = item.as_table();
-      if (table == nullptr)
-        return complain(fmt::format("'{}' holds something that is not a table", key));
+      if (table == nullptr) return complain(fmt::format("'{}' holds something that is not a table", key));
       Fields fields(*table, fmt::format("{}, {} {}", where_, key, n), errors_);
       read(fields);
       fields.finish();
@@ -177,8 +169,7 @@ class Fields {
   /// To be called last.
   void finish() {
     for (const auto& [key, node] : table_) {
-      if (used_.find(std::string(key.str())) == used_.end())
-        complain(fmt::format("unknown key '{}'", key.str()));
+      if (used_.find(std::string(key.str())) == used_.end()) complain(fmt::format("unknown key '{}'", key.str()));
     }
   }
 

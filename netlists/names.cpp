@@ -13,8 +13,7 @@
 
 namespace sunder::netlists {
 
-std::string did_you_mean(const Context& context, std::string_view wrong,
-                         const std::vector<std::string_view>& names) {
+std::string did_you_mean(const Context& context, std::string_view wrong, const std::vector<std::string_view>& names) {
   if (context.complaints.full()) return {};
   const std::string_view near = models::nearest_name(wrong, names);
   return near.empty() ? std::string{} : fmt::format("did you mean '{}'?", near);
@@ -73,9 +72,10 @@ bool enter_name(Context& context, Names& names, const Member& member, std::strin
   if (entered) return true;
   // kinds are not read in order of place; the later place is the one to complain of
   const Named& other = place->second;
-  const bool here = other.at.file < member.at.file ||
-                    (other.at.file == member.at.file && (other.at.line < member.at.line ||
-                     (other.at.line == member.at.line && other.at.column < member.at.column)));
+  const bool here =
+      other.at.file < member.at.file ||
+      (other.at.file == member.at.file &&
+       (other.at.line < member.at.line || (other.at.line == member.at.line && other.at.column < member.at.column)));
   context.complaints.error(here ? member.at : other.at, member.width,
                            other.kind == kind ? fmt::format("{} '{}' is declared twice", kind, name)
                                               : fmt::format("'{}' is the name of both a {} and a {}", name,

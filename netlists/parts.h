@@ -16,8 +16,7 @@ namespace sunder::netlists {
 void read_named_devices(Context& context, const Value& table);
 /// A device text, an inline table, or the name of a [device.x].
 /// @param what  "device of submain 'S1'"
-[[nodiscard]] std::optional<models::Device> read_device(Context& context, const Value& value,
-                                                        const std::string& what);
+[[nodiscard]] std::optional<models::Device> read_device(Context& context, const Value& value, const std::string& what);
 
 // reader_cables.cpp
 /// [cable.x] tables; before anything that has a cable.
@@ -27,8 +26,8 @@ void read_constructions(Context& context, const Value& table);
 /// @param tails    a missing cpc is then assumed, as large as the line conductor
 /// @param at       the element, for what the text does not say
 [[nodiscard]] bool read_cable(Context& context, const PendingRun& run, models::ConductorSet conductors,
-                              const std::string& what, const std::string& subject, bool tails,
-                              models::Origin at, models::Cable& out);
+                              const std::string& what, const std::string& subject, bool tails, models::Origin at,
+                              models::Cable& out);
 
 // reader_sources.cpp; boards must be known
 void read_supplies(Context& context, const Value& table);

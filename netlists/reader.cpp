@@ -35,9 +35,10 @@ void take_library(Context& context) {
 // Whether the table of a kind holds keys of an element, whose name was forgotten.
 bool nameless(const Member& member) {
   const models::Kind* kind = models::find_kind(member.key);
-  return kind != nullptr && std::any_of(member.value.members.begin(), member.value.members.end(), [&](const Member& inner) {
-    return inner.value.form != Value::Form::table && models::find_key(*kind, inner.key) != nullptr;
-  });
+  return kind != nullptr &&
+         std::any_of(member.value.members.begin(), member.value.members.end(), [&](const Member& inner) {
+           return inner.value.form != Value::Form::table && models::find_key(*kind, inner.key) != nullptr;
+         });
 }
 
 // Everything at the top of the file is a key of the head or the table of a kind.
@@ -107,7 +108,8 @@ void read_head(Context& context, const Value& root) {
   if (const auto rules = fields.choice("rules")) {
     network.rules_name = *rules;
     const auto& sets = library().rule_sets;
-    const auto found = std::find_if(sets.begin(), sets.end(), [&](const models::RuleSet& set) { return set.name == *rules; });
+    const auto found =
+        std::find_if(sets.begin(), sets.end(), [&](const models::RuleSet& set) { return set.name == *rules; });
     if (found != sets.end()) {
       network.rules = *found;
     } else {
@@ -192,7 +194,8 @@ bool is_schedule(std::string_view text, const std::string& name) {
   constexpr std::string_view kMark = "\xEF\xBB\xBF";  // byte order mark
   if (text.substr(0, kMark.size()) == kMark) text.remove_prefix(kMark.size());
   const std::string_view line = trimmed(text.substr(0, text.find('\n')));
-  if (line.empty() || line.front() == '[' || line.front() == '#' || line.find('=') != std::string_view::npos) return false;
+  if (line.empty() || line.front() == '[' || line.front() == '#' || line.find('=') != std::string_view::npos)
+    return false;
   const std::size_t separator = line.find_first_of(",;\t");
   if (separator == std::string_view::npos) return false;
   std::string_view first = trimmed(line.substr(0, separator));
@@ -230,9 +233,11 @@ Reading read_network_text(const std::string& text, const std::string& name, cons
 
 std::variant<models::Device, std::string> read_device_text(const models::Network& network, const std::string& text) {
   for (const models::Circuit& circuit : network.circuits)
-    if (circuit.device.present() && (circuit.device.text == text || circuit.device.family == text)) return circuit.device;
+    if (circuit.device.present() && (circuit.device.text == text || circuit.device.family == text))
+      return circuit.device;
   for (const models::Submain& submain : network.submains)
-    if (submain.device.present() && (submain.device.text == text || submain.device.family == text)) return submain.device;
+    if (submain.device.present() && (submain.device.text == text || submain.device.family == text))
+      return submain.device;
   Context context;
   context.complaints.add_file("", text);
   context.network.families = network.families;

@@ -17,14 +17,14 @@ enum class Severity { error, warning, note };
 /// One thing to say about a place in a file. A note belongs to the diagnostic before it.
 struct Diagnostic {
   Severity severity = Severity::error;
-  std::string file;      ///< as the user named it
-  int line = 0;          ///< from 1; 0: the file as a whole
-  int column = 0;        ///< from 1, in characters (bytes of UTF-8 counted as one character each code point)
-  int width = 1;         ///< characters to underline
-  std::string message;   ///< one sentence, no full stop
-  std::string source_line;  ///< the line's text, "" where there is none
+  std::string file;            ///< as the user named it
+  int line = 0;                ///< from 1; 0: the file as a whole
+  int column = 0;              ///< from 1, in characters (bytes of UTF-8 counted as one character each code point)
+  int width = 1;               ///< characters to underline
+  std::string message;         ///< one sentence, no full stop
+  std::string source_line;     ///< the line's text, "" where there is none
   std::size_t stands_for = 1;  ///< errors; more than one where the rest is only counted
-  std::string hint;      ///< "did you mean 'swa-xlpe-cu-4c'?", "" if none
+  std::string hint;            ///< "did you mean 'swa-xlpe-cu-4c'?", "" if none
 };
 
 /// What came of reading. `network` is absent if there is any error.

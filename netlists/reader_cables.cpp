@@ -29,9 +29,8 @@ constexpr std::string_view kCpcForm =
 
 const CableConstruction* construction_named(const Context& context, std::string_view name) {
   const auto found = context.constructions.find(std::string(name));
-  return found == context.constructions.end()
-             ? nullptr
-             : &context.network.constructions[static_cast<std::size_t>(found->second)];
+  return found == context.constructions.end() ? nullptr
+                                              : &context.network.constructions[static_cast<std::size_t>(found->second)];
 }
 
 // What gives r20 and x of a conductor beside a cable.
@@ -45,10 +44,10 @@ const CableConstruction& copper_singles(const Context& context) {
 }
 
 struct CableText {
-  std::string name;        // construction
+  std::string name;  // construction
   std::size_t name_at = 0;
-  double area = 0;         // [m2]
-  double cpc_area = 0;     // behind the stroke [m2]; 0: none
+  double area = 0;      // [m2]
+  double cpc_area = 0;  // behind the stroke [m2]; 0: none
 };
 
 std::optional<double> area_of(std::string_view number) {
@@ -148,14 +147,15 @@ bool read_cpc(Context& context, const Value& value, const std::string& what, con
 }
 
 // Where the protective conductor is when the netlist does not say.
-bool default_cpc(Context& context, const CableConstruction& construction, const Value& cable, int n_loaded,
-                 double area, const std::string& what, const std::string& subject, bool tails, models::Origin at,
+bool default_cpc(Context& context, const CableConstruction& construction, const Value& cable, int n_loaded, double area,
+                 const std::string& what, const std::string& subject, bool tails, models::Origin at,
                  CpcChoice& choice) {
   const bool spare = construction.cores == 0 || construction.cores > n_loaded;
   if (tails) {
     choice.core = spare;
     choice.separate = spare ? 0 : area;
-    context.assume(subject, fmt::format("main earthing conductor of {} taken as large as the line conductor", what), at);
+    context.assume(subject, fmt::format("main earthing conductor of {} taken as large as the line conductor", what),
+                   at);
     return true;
   }
   if (construction.built_in_cpc) {
@@ -167,7 +167,8 @@ bool default_cpc(Context& context, const CableConstruction& construction, const 
   } else {
     context.complaints.error(cable.at, cable.width,
                              fmt::format("cable of {} has no core left for the protective conductor; "
-                                         "say with cpc where it is", what),
+                                         "say with cpc where it is",
+                                         what),
                              std::string(kCpcForm));
     return false;
   }
@@ -191,8 +192,8 @@ void check_resistance(Context& context, const Value* value, const std::string& w
 }
 
 Confidence confidence_named(std::string_view text) noexcept {
-  for (const Confidence c : {Confidence::found, Confidence::derived, Confidence::checked, Confidence::memory,
-                             Confidence::low}) {
+  for (const Confidence c :
+       {Confidence::found, Confidence::derived, Confidence::checked, Confidence::memory, Confidence::low}) {
     if (models::word(c) == text) return c;
   }
   return Confidence::declared;
@@ -201,8 +202,8 @@ Confidence confidence_named(std::string_view text) noexcept {
 void read_size(Context& context, const Value& value, CableConstruction& made, const std::string& what) {
   const std::string size_of = fmt::format("a size of {}", what);
   if (value.form != Value::Form::table) {
-    context.complaints.error(value.at, value.width, fmt::format("{} is {}; a table is expected", size_of,
-                                                                word(value.form)));
+    context.complaints.error(value.at, value.width,
+                             fmt::format("{} is {}; a table is expected", size_of, word(value.form)));
     return;
   }
   ElementKeys fields(context, value, *models::find_kind("cable.sizes"), size_of, value.at);
@@ -275,11 +276,13 @@ void read_constructions(Context& context, const Value& table) {
     made.name = member.key;
     made.at = member.at;
     made.title = fields.text("title").value_or(member.key);
-    made.material = fields.choice("material").value_or("copper") == "aluminium" ? Material::aluminium : Material::copper;
+    made.material =
+        fields.choice("material").value_or("copper") == "aluminium" ? Material::aluminium : Material::copper;
     made.insulation = fields.choice("insulation").value_or("");
     made.max_degc = fields.quantity("max").value_or(usual_limit(made.insulation));
     made.cores = fields.whole("cores").value_or(0);
-    made.armour_material = fields.choice("armour").value_or("steel") == "aluminium" ? Material::aluminium : Material::steel;
+    made.armour_material =
+        fields.choice("armour").value_or("steel") == "aluminium" ? Material::aluminium : Material::steel;
     made.built_in_cpc = fields.flag("built_in_cpc").value_or(false);
     made.source = fields.text("source").value_or("");
     if (const Value* sizes = fields.list("sizes")) {
@@ -325,16 +328,15 @@ bool read_cable(Context& context, const PendingRun& run, models::ConductorSet co
     return false;
   }
   if (text.cpc_area > 0) {
-    const auto size = std::find_if(construction->sizes.begin(), construction->sizes.end(), [&](const CableSize& s) {
-      return std::abs(s.area - text.area) < 1e-3 * text.area;
-    });
-    const bool fits = size == construction->sizes.end() || std::abs(size->cpc_area - text.cpc_area) < 1e-3 * text.cpc_area;
+    const auto size = std::find_if(construction->sizes.begin(), construction->sizes.end(),
+                                   [&](const CableSize& s) { return std::abs(s.area - text.area) < 1e-3 * text.area; });
+    const bool fits =
+        size == construction->sizes.end() || std::abs(size->cpc_area - text.cpc_area) < 1e-3 * text.cpc_area;
     if (construction->built_in_cpc && !fits) {
-      context.complaints.error(
-          value.at, value.width,
-          fmt::format("cable of {}: '{}' of {} has a protective conductor of {}", what, text.name,
-                      models::format_quantity(text.area, Quantity::area),
-                      models::format_quantity(size->cpc_area, Quantity::area)));
+      context.complaints.error(value.at, value.width,
+                               fmt::format("cable of {}: '{}' of {} has a protective conductor of {}", what, text.name,
+                                           models::format_quantity(text.area, Quantity::area),
+                                           models::format_quantity(size->cpc_area, Quantity::area)));
       return false;
     }
     if (!construction->built_in_cpc && construction->cores != 0) {
@@ -344,8 +346,8 @@ bool read_cable(Context& context, const PendingRun& run, models::ConductorSet co
     }
     if (!construction->built_in_cpc) choice.core_area = text.cpc_area;
   }
-  if (const auto error = models::resolve_cable(*construction, text.area, choice, n_loaded, neutral,
-                                               copper_singles(context), out)) {
+  if (const auto error =
+          models::resolve_cable(*construction, text.area, choice, n_loaded, neutral, copper_singles(context), out)) {
     const bool has_size = std::any_of(construction->sizes.begin(), construction->sizes.end(), [&](const CableSize& s) {
       return std::abs(s.area - text.area) < 1e-3 * text.area;
     });

@@ -28,8 +28,7 @@ constexpr double kResidualBelow = 100;
 
 const DeviceFamily* family_named(const Context& context, std::string_view name) {
   const auto found = context.families.find(std::string(name));
-  return found == context.families.end() ? nullptr
-                                         : &context.network.families[static_cast<std::size_t>(found->second)];
+  return found == context.families.end() ? nullptr : &context.network.families[static_cast<std::size_t>(found->second)];
 }
 
 std::vector<std::string_view> device_names(const Context& context) {
@@ -131,8 +130,7 @@ class SpecReader {
 };
 
 // Family data put in; complaints at the text.
-std::optional<Device> resolved(Context& context, const DeviceSpec& spec, const Value& value,
-                               const std::string& what) {
+std::optional<Device> resolved(Context& context, const DeviceSpec& spec, const Value& value, const std::string& what) {
   const DeviceFamily* family = family_named(context, spec.family);
   const DeviceFamily* residual = family_named(context, "RCD");
   Device device;
@@ -178,10 +176,10 @@ std::optional<Device> from_text(Context& context, const Value& value, const std:
     if (!context.complaints.full()) {
       hint = device_hint(context.network.families, text, did_you_mean(context, name, device_names(context)));
     }
-    context.complaints.error(inside(value, start), std::max(1, characters(name)),
-                             name.empty() ? fmt::format("{} is empty", what)
-                                          : fmt::format("unknown device '{}' ({})", name, what),
-                             std::move(hint));
+    context.complaints.error(
+        inside(value, start), std::max(1, characters(name)),
+        name.empty() ? fmt::format("{} is empty", what) : fmt::format("unknown device '{}' ({})", name, what),
+        std::move(hint));
     return std::nullopt;
   }
   DeviceSpec spec;
@@ -215,9 +213,10 @@ bool read_multiples(Context& context, const ElementKeys& fields, DeviceSpec& spe
       if (spec.multiple_low > 0 && spec.multiple_high >= spec.multiple_low && spec.multiple_high <= 1000) return true;
     }
   }
-  context.complaints.error(value->at, value->width,
-                           fmt::format("instantaneous of {} must be two multiples of In, the lower first", fields.what()),
-                           "such as \"7 10\"");
+  context.complaints.error(
+      value->at, value->width,
+      fmt::format("instantaneous of {} must be two multiples of In, the lower first", fields.what()),
+      "such as \"7 10\"");
   return false;
 }
 
@@ -248,9 +247,9 @@ std::optional<Device> like_family(Context& context, const Value& like, ElementKe
   bool sound = read_multiples(context, fields, spec) && spec.In > 0;
   for (const std::string_view key : {"kind", "latest", "earliest", "let_through", "pre_arcing", "I2"}) {
     if (const Value* extra = fields.find(key)) {
-      context.complaints.error(extra->at, extra->width,
-                               fmt::format("{} has both 'like' and '{}'; points stand without a family",
-                                           fields.what(), key));
+      context.complaints.error(
+          extra->at, extra->width,
+          fmt::format("{} has both 'like' and '{}'; points stand without a family", fields.what(), key));
       sound = false;
     }
   }

@@ -23,8 +23,7 @@ using models::Submain;
 // Whether an element is a table, as every element must be.
 bool is_table(Context& context, const Value& value, const std::string& what) {
   if (value.form == Value::Form::table) return true;
-  context.complaints.error(value.at, value.width,
-                           fmt::format("{} is {}; a table is expected", what, word(value.form)));
+  context.complaints.error(value.at, value.width, fmt::format("{} is {}; a table is expected", what, word(value.form)));
   context.refused = true;
   return false;
 }
@@ -57,9 +56,9 @@ std::string read_selective(Context& context, ElementKeys& fields) {
     const auto parsed = models::parse_quantity(wanted, Quantity::current);
     if (!std::holds_alternative<double>(parsed) || !(std::get<double>(parsed) > 0)) {
       const Value& value = *fields.find("selective");
-      context.complaints.error(value.at, value.width,
-                               fmt::format("selective of {} is '{}'; \"total\" or a current is expected",
-                                           fields.what(), *text));
+      context.complaints.error(
+          value.at, value.width,
+          fmt::format("selective of {} is '{}'; \"total\" or a current is expected", fields.what(), *text));
       return {};
     }
   }
@@ -80,8 +79,9 @@ class SpurReader {
     } else if (value.form == Value::Form::text) {
       read_cell(value, spurs);
     } else {
-      context_.complaints.error(value.at, value.width,
-                                fmt::format("spurs of {} is {}; a list of tables is expected", what_, word(value.form)));
+      context_.complaints.error(
+          value.at, value.width,
+          fmt::format("spurs of {} is {}; a list of tables is expected", what_, word(value.form)));
     }
     return spurs;
   }
@@ -140,7 +140,8 @@ void check_ring(Context& context, ElementKeys& fields, const Circuit& circuit) {
   }
   if (circuit.in_parallel > 1) {
     const Value& at = *fields.find("in_parallel");
-    context.complaints.error(at.at, at.width, fmt::format("{} is a ring and cannot have cables in parallel", fields.what()));
+    context.complaints.error(at.at, at.width,
+                             fmt::format("{} is a ring and cannot have cables in parallel", fields.what()));
   }
   for (const models::Spur& spur : circuit.spurs) {
     if (!circuit.length || spur.at <= circuit.length.value) continue;
@@ -298,9 +299,12 @@ void read_circuit(Context& context, int board, const Member& member, const Value
       read_cable(context, run, circuit.conductors, what, address, false, member.at, circuit.cable)) {
     for (const models::Strand& strand : circuit.cable.protective) {
       if (strand.place != models::Place::separate) continue;
-      context.assume(address, fmt::format("the protective conductor beside the cable of {} is taken to run close to it, not bunched with "
-                                          "it: at ambient temperature, k as such",
-                                          address), member.at);
+      context.assume(
+          address,
+          fmt::format("the protective conductor beside the cable of {} is taken to run close to it, not bunched with "
+                      "it: at ambient temperature, k as such",
+                      address),
+          member.at);
     }
   }
   context.circuit_runs.push_back(run);
@@ -323,9 +327,9 @@ void read_electrodes(Context& context, const Value& table) {
       if (electrode.board >= 0) {
         Board& earthed = context.network.boards[static_cast<std::size_t>(electrode.board)];
         if (earthed.electrode >= 0) {
-          context.complaints.error(board->at, board->width,
-                                   fmt::format("board '{}' has two electrodes; give their joint resistance once",
-                                               earthed.name));
+          context.complaints.error(
+              board->at, board->width,
+              fmt::format("board '{}' has two electrodes; give their joint resistance once", earthed.name));
           context.complaints.note(context.network.electrodes[static_cast<std::size_t>(earthed.electrode)].at,
                                   "the other is declared here");
         }
@@ -355,8 +359,8 @@ void read_states(Context& context, const Value* table) {
     if (sources == nullptr) continue;
     for (const Value& item : sources->items) {
       const auto found = item.form == Value::Form::text ? context.elements.find(item.text) : context.elements.end();
-      const bool is_source = found != context.elements.end() &&
-                             (found->second.kind == "supply" || found->second.kind == "transformer");
+      const bool is_source =
+          found != context.elements.end() && (found->second.kind == "supply" || found->second.kind == "transformer");
       if (!is_source) {
         if (context.maybe_lost(item.text)) continue;
         std::vector<std::string_view> names;

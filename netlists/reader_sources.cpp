@@ -28,9 +28,9 @@ bool read_voltage(Context& context, ElementKeys& fields, Source& source, bool si
   const Value* value = fields.find("voltage");
   if (value == nullptr) return false;
   auto refuse = [&](std::string message) {
-    context.complaints.error(value->at, value->width, std::move(message),
-                             single_allowed ? "such as \"230/400 V\", or \"230 V\" for a single phase"
-                                            : "such as \"230/400 V\"");
+    context.complaints.error(
+        value->at, value->width, std::move(message),
+        single_allowed ? "such as \"230/400 V\", or \"230 V\" for a single phase" : "such as \"230/400 V\"");
     return false;
   };
   if (value->form != Value::Form::text) {
@@ -44,8 +44,8 @@ bool read_voltage(Context& context, ElementKeys& fields, Source& source, bool si
     return refuse(fmt::format("voltage of {}: {}", fields.what(), error->message));
   }
   const double volts = std::get<double>(last);
-  constexpr double kLeast = 50;    // [V] below it nothing of this is asked
-  constexpr double kMost = 1000;   // [V] end of low voltage
+  constexpr double kLeast = 50;   // [V] below it nothing of this is asked
+  constexpr double kMost = 1000;  // [V] end of low voltage
   if (single) {
     if (!single_allowed) return refuse(fmt::format("voltage of {} needs both values", fields.what()));
     if (!(volts >= kLeast && volts <= kMost)) {
@@ -150,7 +150,8 @@ void read_bound(Context& context, ElementKeys& supply, std::string_view key, con
   const Value* table = supply.table(key);
   if (table == nullptr) return;
   const std::string kind = fmt::format("supply.{}", key);
-  ElementKeys fields(context, *table, *models::find_kind(kind), fmt::format("the {} of {}", key, supply.what()), table->at);
+  ElementKeys fields(context, *table, *models::find_kind(kind), fmt::format("the {} of {}", key, supply.what()),
+                     table->at);
   bound.at = table->at;
   read_loop(context, fields, "three_phase", bound.three_phase);
   read_loop(context, fields, "line_neutral", bound.line_neutral);
@@ -158,25 +159,36 @@ void read_bound(Context& context, ElementKeys& supply, std::string_view key, con
   bound.power_factor = read_angle(context, fields);
   const bool split_open = source.lines.lines() > 1;
   if (key == "maximum" && split_open && bound.three_phase.given()) {
-    for (const auto& [loop, name] : {std::pair{&bound.line_neutral, "line-neutral"}, std::pair{&bound.line_earth, "line-earth"}}) {
+    for (const auto& [loop, name] :
+         {std::pair{&bound.line_neutral, "line-neutral"}, std::pair{&bound.line_earth, "line-earth"}}) {
       if (!loop->given()) {
-        context.assume(source.name, fmt::format("no greatest {} current of {}: taken as the three-phase one, without "
-                                                "return impedance", name, supply.what()), bound.at);
+        context.assume(source.name,
+                       fmt::format("no greatest {} current of {}: taken as the three-phase one, without "
+                                   "return impedance",
+                                   name, supply.what()),
+                       bound.at);
       }
     }
   }
   if (key == "maximum" && split_open && !bound.three_phase.given() && bound.line_neutral.given()) {
-    context.assume(source.name, fmt::format("no greatest three-phase current of {}: taken as twice the line-neutral one, "
-                                            "which holds while the neutral is no smaller than the line", supply.what()), bound.at);
+    context.assume(source.name,
+                   fmt::format("no greatest three-phase current of {}: taken as twice the line-neutral one, "
+                               "which holds while the neutral is no smaller than the line",
+                               supply.what()),
+                   bound.at);
   }
   if (key == "minimum") {
     read_alias(context, fields, "Ze", "line_earth", bound.line_earth);
     read_alias(context, fields, "Zn", "line_neutral", bound.line_neutral);
   }
-  const bool of_lines = bound.line_neutral.given() || (bound.line_earth.given() && source.earthing != models::Earthing::TT);
+  const bool of_lines =
+      bound.line_neutral.given() || (bound.line_earth.given() && source.earthing != models::Earthing::TT);
   if (key == "minimum" && split_open && !bound.three_phase.given() && of_lines) {
-    context.assume(source.name, fmt::format("no least three-phase current of {}: all of the least declared loop is taken "
-                                            "to lie in the line", supply.what()), bound.at);
+    context.assume(source.name,
+                   fmt::format("no least three-phase current of {}: all of the least declared loop is taken "
+                               "to lie in the line",
+                               supply.what()),
+                   bound.at);
   }
   if (bound.three_phase.given() && source.lines.lines() == 1) {
     context.complaints.error(bound.three_phase.at, 1,
@@ -188,8 +200,11 @@ void read_bound(Context& context, ElementKeys& supply, std::string_view key, con
     context.complaints.error(table->at, 1, fmt::format("the {} of {} is empty", key, supply.what()));
   }
   if (any && bound.power_factor < 0) {
-    context.assume(source.name, fmt::format("no power factor for the {} of {}: every angle from resistive to the "
-                                            "test power factor of IEC 60947-2 is taken", key, supply.what()), bound.at);
+    context.assume(source.name,
+                   fmt::format("no power factor for the {} of {}: every angle from resistive to the "
+                               "test power factor of IEC 60947-2 is taken",
+                               key, supply.what()),
+                   bound.at);
   }
 }
 
@@ -208,8 +223,8 @@ std::string shown(const Loop& loop) {
 void compare_loops(Context& context, const Bound& bound, std::string_view name, const std::string& what, double c,
                    const Source& source) {
   const double three = amps_of(bound.three_phase, c, source.U0);
-  for (const auto& [loop, label] : {std::pair{&bound.line_neutral, "line_neutral"},
-                                    std::pair{&bound.line_earth, "line_earth"}}) {
+  for (const auto& [loop, label] :
+       {std::pair{&bound.line_neutral, "line_neutral"}, std::pair{&bound.line_earth, "line_earth"}}) {
     if (three <= 0 || amps_of(*loop, c, source.U0) <= three * kSlack) continue;
     context.complaints.error(loop->at, 1,
                              fmt::format("{} {} of {} has less impedance than one line alone ({})", name, label, what,
@@ -222,7 +237,8 @@ void compare_loops(Context& context, const Bound& bound, std::string_view name, 
     if (ln > le * kSlack || le > ln * kSlack) {
       context.complaints.error(bound.line_earth.at, 1,
                                fmt::format("{} line_earth of {} differs from line_neutral, but in TN-C-S both return "
-                                           "through the one conductor", name, what));
+                                           "through the one conductor",
+                                           name, what));
       context.complaints.note(bound.line_neutral.at, "line_neutral is given here");
     }
   }
@@ -243,11 +259,10 @@ void compare_bounds(Context& context, const Source& source, const std::string& w
     const double upper = own ? amps_of(*most, c_max, source.U0) : most_three;
     const double lower = amps_of(*least, c_min, source.U0);
     if (upper <= 0 || lower <= upper * kSlack) continue;
-    context.complaints.error(
-        least->at, 1,
-        fmt::format("minimum {} of {} is {}, which is {}, above the maximum of {}", label, what, shown(*least),
-                    models::format_quantity(lower, Quantity::current),
-                    models::format_quantity(upper, Quantity::current)));
+    context.complaints.error(least->at, 1,
+                             fmt::format("minimum {} of {} is {}, which is {}, above the maximum of {}", label, what,
+                                         shown(*least), models::format_quantity(lower, Quantity::current),
+                                         models::format_quantity(upper, Quantity::current)));
     context.complaints.note(own ? most->at : source.maximum.three_phase.at, "the maximum is given here");
   }
 }
@@ -266,9 +281,8 @@ void read_tails(Context& context, ElementKeys& element, std::string_view kind, S
   PendingRun run;
   run.cable = fields.find("cable");
   run.cpc = fields.find("cpc");
-  source.tails.present =
-      read_cable(context, run, conductors, what, source.name, true, table->at, source.tails.cable) &&
-      source.tails.length > 0;
+  source.tails.present = read_cable(context, run, conductors, what, source.name, true, table->at, source.tails.cable) &&
+                         source.tails.length > 0;
 }
 
 models::Earthing earthing_named(std::string_view text) noexcept {
@@ -283,16 +297,19 @@ void read_common(Context& context, ElementKeys& fields, Source& source) {
   source.demand = fields.sourced("demand");
   source.pf = fields.sourced("pf");
   if (const Value* device = fields.find("device")) {
-    source.device = read_device(context, *device, fmt::format("device of {}", fields.what())).value_or(models::Device{});
+    source.device =
+        read_device(context, *device, fmt::format("device of {}", fields.what())).value_or(models::Device{});
   }
 }
 
 void read_fault_level(Context& context, ElementKeys& fields, Source& source) {
   const Value* value = fields.find("fault_level");
   if (value == nullptr) {
-    context.assume(source.name, fmt::format("no fault level before {}: stiff for the greatest currents, the least ones "
-                                            "are unknown",
-                                            fields.what()), source.at);
+    context.assume(source.name,
+                   fmt::format("no fault level before {}: stiff for the greatest currents, the least ones "
+                               "are unknown",
+                               fields.what()),
+                   source.at);
     return;
   }
   const models::Kind& kind = *models::find_kind("transformer.fault_level");
@@ -308,7 +325,8 @@ void read_fault_level(Context& context, ElementKeys& fields, Source& source) {
     }
     if (source.fault_level_min > source.fault_level_max) {
       const Value& at = *levels.find("minimum");
-      context.complaints.error(at.at, at.width, fmt::format("minimum fault level of {} is above the maximum", fields.what()));
+      context.complaints.error(at.at, at.width,
+                               fmt::format("minimum fault level of {} is above the maximum", fields.what()));
       context.complaints.note(levels.find("maximum")->at, "the maximum is given here");
     }
     return;
@@ -387,8 +405,9 @@ void read_supplies(Context& context, const Value& table) {
     const auto network = fields.choice("network");
     source.own_transformer = network.value_or("") == "own transformer";
     if (fields.find("network") == nullptr) {
-      context.assume(source.name, fmt::format("network of {} taken as public, which has the lower voltage-drop limits",
-                                              what), source.at);
+      context.assume(source.name,
+                     fmt::format("network of {} taken as public, which has the lower voltage-drop limits", what),
+                     source.at);
     }
     read_bound(context, fields, "maximum", source, source.maximum);
     read_bound(context, fields, "minimum", source, source.minimum);
@@ -419,8 +438,10 @@ void read_transformers(Context& context, const Value& table) {
     read_impedance(context, fields, source);
     source.secondary = fields.quantity("secondary").value_or(source.U);
     if (fields.find("secondary") == nullptr) {
-      context.assume(source.name, fmt::format("no-load voltage of {} taken as {}", what,
-                                              models::format_quantity(source.U, Quantity::voltage)), source.at);
+      context.assume(
+          source.name,
+          fmt::format("no-load voltage of {} taken as {}", what, models::format_quantity(source.U, Quantity::voltage)),
+          source.at);
     }
     read_fault_level(context, fields, source);
     source.z0_over_z1 = fields.number("z0_over_z1").value_or(1);
@@ -431,8 +452,7 @@ void read_transformers(Context& context, const Value& table) {
     source.link_at_board = fields.choice("link").value_or("") == "board";
     if (source.link_at_board && source.earthing != models::Earthing::TN_C_S && fields.find("earthing") != nullptr) {
       const Value& at = *fields.find("link");
-      context.complaints.error(at.at, at.width,
-                               fmt::format("link of {} is at the board, which makes it TN-C-S", what));
+      context.complaints.error(at.at, at.width, fmt::format("link of {} is at the board, which makes it TN-C-S", what));
       context.complaints.note(fields.find("earthing")->at, "earthing is given here");
     }
     read_tails(context, fields, "transformer.tails", source);

@@ -162,7 +162,8 @@ class ScheduleReader {
     if (!read_headings(csv_.next_row())) return;
     while (!csv_.at_end()) {
       const Row row = csv_.next_row();
-      const bool blank = std::all_of(row.begin(), row.end(), [](const Cell& cell) { return trimmed(cell.text).empty(); });
+      const bool blank =
+          std::all_of(row.begin(), row.end(), [](const Cell& cell) { return trimmed(cell.text).empty(); });
       if (!blank) read_row(row);
     }
   }
@@ -194,7 +195,8 @@ class ScheduleReader {
           hint = way ? std::string("did you mean 'way'?") : unknown_key_hint(kind, name, false);
         }
         context_.complaints.error(cell.at, column.width, fmt::format("unknown column '{}'", name), std::move(hint));
-        if (!context_.complaints.full()) context_.lost += fmt::format("{}\n", meant_key(kind, name));  // not missed in every row
+        if (!context_.complaints.full())
+          context_.lost += fmt::format("{}\n", meant_key(kind, name));  // not missed in every row
         column.name.clear();
         complete_ = false;
       } else if (twice) {
@@ -215,14 +217,14 @@ class ScheduleReader {
 
   void check_unit(Column& column) {
     const bool measured = column.key != nullptr && column.key->form == ValueForm::quantity;
-    const bool fits = measured && std::holds_alternative<double>(models::parse_quantity(
-                                      fmt::format("1 {}", column.unit), column.key->quantity));
+    const bool fits = measured && std::holds_alternative<double>(
+                                      models::parse_quantity(fmt::format("1 {}", column.unit), column.key->quantity));
     if (!fits) {
-      context_.complaints.error(column.at, column.width,
-                                measured ? fmt::format("unit '{}' does not fit column '{}'", column.unit, column.name)
-                                         : fmt::format("column '{}' has no unit", column.name),
-                                measured ? fmt::format("units that fit: {}", models::accepted_units(column.key->quantity))
-                                         : std::string{});
+      context_.complaints.error(
+          column.at, column.width,
+          measured ? fmt::format("unit '{}' does not fit column '{}'", column.unit, column.name)
+                   : fmt::format("column '{}' has no unit", column.name),
+          measured ? fmt::format("units that fit: {}", models::accepted_units(column.key->quantity)) : std::string{});
       // so that its cells are not complained of as well
       const std::string_view accepted = measured ? models::accepted_units(column.key->quantity) : std::string_view{};
       column.unit = std::string(accepted.substr(0, accepted.find(',')));
@@ -272,10 +274,12 @@ class ScheduleReader {
   // One complaint a column of bare numbers, at its heading; the first unit that fits then stands for the rest.
   void demand_unit(Column& column, const Cell& cell) {
     const std::string_view accepted = models::accepted_units(column.key->quantity);
-    if (accepted.empty() || std::holds_alternative<double>(models::parse_quantity(cell.text, column.key->quantity))) return;
+    if (accepted.empty() || std::holds_alternative<double>(models::parse_quantity(cell.text, column.key->quantity)))
+      return;
     column.unit = std::string(accepted.substr(0, accepted.find(',')));
-    context_.complaints.error(column.at, column.width, fmt::format("column '{}' has bare numbers and no unit", column.name),
-                              fmt::format("write the heading as '{} [{}]', or a unit in every cell", column.name, column.unit));
+    context_.complaints.error(
+        column.at, column.width, fmt::format("column '{}' has bare numbers and no unit", column.name),
+        fmt::format("write the heading as '{} [{}]', or a unit in every cell", column.name, column.unit));
     context_.complaints.note(cell.at, fmt::format("such as '{}' here", cell.text));
   }
 
@@ -290,7 +294,8 @@ class ScheduleReader {
     if ((measured || column.key->form == ValueForm::number) && decimal_comma(cell.text)) {
       std::string with_point = cell.text;
       std::replace(with_point.begin(), with_point.end(), ',', '.');
-      context_.complaints.error(cell.at, width, fmt::format("'{}' in column '{}' has a decimal comma", cell.text, column.name),
+      context_.complaints.error(cell.at, width,
+                                fmt::format("'{}' in column '{}' has a decimal comma", cell.text, column.name),
                                 fmt::format("write {}", with_point));
       member.value.text = std::move(with_point);  // so that the key is not missed as well
     }

@@ -26,7 +26,8 @@ std::string quoted(const std::string& text) {
   return made + "\"";
 }
 
-constexpr const char* kBody = R"(rules    = "BS 7671:2018+A2"   # decides disconnection times, k, voltage drop; or "IEC 60364"
+constexpr const char* kBody =
+    R"(rules    = "BS 7671:2018+A2"   # decides disconnection times, k, voltage drop; or "IEC 60364"
 ambient  = "30 degC"           # surroundings of the cables
 premises = "other"             # or "dwelling"
 
@@ -73,10 +74,11 @@ W5 = { serves = "water heater", use = "fixed", phases = "L2", device = "B 16 A 6
 }  // namespace
 
 std::string starter_netlist(const std::string& title) {
-  return fmt::format("# A netlist for sunder: what the installation is made of, as text.\n"
-                     "# Values carry their units; what is not said is listed as an assumption or left undecided.\n"
-                     "title    = {}\n{}",
-                     quoted(title), kBody);
+  return fmt::format(
+      "# A netlist for sunder: what the installation is made of, as text.\n"
+      "# Values carry their units; what is not said is listed as an assumption or left undecided.\n"
+      "title    = {}\n{}",
+      quoted(title), kBody);
 }
 
 }  // namespace sunder::netlists

@@ -92,16 +92,14 @@ bool assigns(std::string_view line, std::size_t offset, std::string_view key) no
 }
 
 models::Origin place(std::uint32_t file, std::size_t line, std::string_view text, std::size_t offset) {
-  return {file, static_cast<std::uint32_t>(line),
-          static_cast<std::uint32_t>(characters(text.substr(0, offset)) + 1)};
+  return {file, static_cast<std::uint32_t>(line), static_cast<std::uint32_t>(characters(text.substr(0, offset)) + 1)};
 }
 
 // Where `key` is assigned in `line` before byte `end`, last (or first) one.
 std::optional<std::size_t> assignment(std::string_view line, std::string_view key, std::size_t end, bool last) {
   std::optional<std::size_t> found;
   for (std::size_t i = 0; i < std::min(end, line.size()); ++i) {
-    const bool starts = i == 0 || line[i - 1] == ' ' || line[i - 1] == '\t' || line[i - 1] == '{' ||
-                        line[i - 1] == ',';
+    const bool starts = i == 0 || line[i - 1] == ' ' || line[i - 1] == '\t' || line[i - 1] == '{' || line[i - 1] == ',';
     if (!starts || !assigns(line, i, key)) continue;
     found = i;
     if (!last) break;
@@ -118,8 +116,8 @@ std::size_t byte_offset(std::string_view line, std::size_t column) noexcept {
 }
 
 // A key given twice: both places. The parser points at the sign '=' of the second.
-void complain_of_key(const Copy& copy, std::size_t number, std::size_t column, std::string_view key,
-                     std::uint32_t file, Complaints& complaints) {
+void complain_of_key(const Copy& copy, std::size_t number, std::size_t column, std::string_view key, std::uint32_t file,
+                     Complaints& complaints) {
   const std::string_view line = copy.line(number);
   const std::size_t end = byte_offset(line, column);
   const std::size_t second = assignment(line, key, end, true).value_or(std::min(end, line.size()));
@@ -215,17 +213,21 @@ std::string syntax_hint(std::string_view description, std::string_view line, std
   const bool beyond_ascii = offset < line.size() && (static_cast<unsigned char>(line[offset]) & 0x80U) != 0;
   if (beyond_ascii) {
     for (const std::string_view name_expected : {" key", "expected ']'", "expected '='"}) {
-      if (description.find(name_expected) != std::string_view::npos) return "a name with such a character stands in quotes";
+      if (description.find(name_expected) != std::string_view::npos)
+        return "a name with such a character stands in quotes";
     }
   }
-  if (description.find("expected ']'") != std::string_view::npos && offset < line.size() && offset > 0 && line[offset - 1] == ' ') {
+  if (description.find("expected ']'") != std::string_view::npos && offset < line.size() && offset > 0 &&
+      line[offset - 1] == ' ') {
     const std::string_view name = trimmed(line);
     const std::size_t dot = name.find('.');
     if (dot != std::string_view::npos && name.front() == '[' && name.back() == ']') {
-      return fmt::format("a name with blanks stands in quotes: {}.\"{}\"]", name.substr(0, dot), name.substr(dot + 1, name.size() - dot - 2));
+      return fmt::format("a name with blanks stands in quotes: {}.\"{}\"]", name.substr(0, dot),
+                         name.substr(dot + 1, name.size() - dot - 2));
     }
   }
-  if (description.find("expected comma or closing '}'") != std::string_view::npos) return "commas part the values in { }";
+  if (description.find("expected comma or closing '}'") != std::string_view::npos)
+    return "commas part the values in { }";
   return {};
 }
 
@@ -306,7 +308,8 @@ void leave_out(Copy& copy, std::size_t number, std::string& lost) {
 }
 
 // A table in { } that does not end in its line: one complaint, and all of its lines are left out.
-void complain_of_open_table(Copy& copy, std::size_t number, std::uint32_t file, Complaints& complaints, std::string& lost) {
+void complain_of_open_table(Copy& copy, std::size_t number, std::uint32_t file, Complaints& complaints,
+                            std::string& lost) {
   const std::string_view line = copy.line(number);
   std::size_t above = number;
   while (above > 1 && !copy.is_heading(above)) --above;

@@ -12,9 +12,9 @@
 namespace sunder::netlists {
 
 struct TomlDocument {
-  Value root;             ///< a table
-  bool parsed = false;    ///< false: nothing could be made of the text
-  std::string lost;       ///< lines that were left out after an error, so that what follows is not blamed
+  Value root;           ///< a table
+  bool parsed = false;  ///< false: nothing could be made of the text
+  std::string lost;     ///< lines that were left out after an error, so that what follows is not blamed
 };
 
 /// Parses `text`, known to `complaints` as `file`. The parser stops at its first error: it is recorded,

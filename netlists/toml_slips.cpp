@@ -14,8 +14,8 @@ namespace sunder::netlists {
 
 namespace {
 
-constexpr std::array<std::string_view, 8> kTypographic = {
-    "\u201C", "\u201D", "\u201E", "\u2018", "\u2019", "\u201A", "\u00AB", "\u00BB"};
+constexpr std::array<std::string_view, 8> kTypographic = {"\u201C", "\u201D", "\u201E", "\u2018",
+                                                          "\u2019", "\u201A", "\u00AB", "\u00BB"};
 
 bool is_digit(char c) noexcept { return c >= '0' && c <= '9'; }
 
@@ -55,8 +55,10 @@ std::string without_quotes(std::string_view value) {
 std::size_t behind_text(std::string_view line, std::size_t i) noexcept {
   const char quote = line[i];
   for (++i; i < line.size(); ++i) {
-    if (quote == '"' && line[i] == '\\') ++i;
-    else if (line[i] == quote) return i + 1;
+    if (quote == '"' && line[i] == '\\')
+      ++i;
+    else if (line[i] == quote)
+      return i + 1;
   }
   return line.size();
 }

@@ -15,7 +15,7 @@ struct Slip {
   std::size_t offset = 0;  ///< of the value in the line [bytes]
   std::size_t length = 1;  ///< [bytes]
   std::string message;
-  std::string hint;        ///< the value as it would be written
+  std::string hint;  ///< the value as it would be written
 };
 
 /// The first value of a line that is no value of TOML, nothing where none stands out.

@@ -14,12 +14,18 @@ const Value* Value::find(std::string_view key) const noexcept {
 
 std::string_view word(Value::Form form) noexcept {
   switch (form) {
-    case Value::Form::text: return "a text";
-    case Value::Form::number: return "a number";
-    case Value::Form::flag: return "true or false";
-    case Value::Form::list: return "a list";
-    case Value::Form::table: return "a table";
-    case Value::Form::other: break;
+    case Value::Form::text:
+      return "a text";
+    case Value::Form::number:
+      return "a number";
+    case Value::Form::flag:
+      return "true or false";
+    case Value::Form::list:
+      return "a list";
+    case Value::Form::table:
+      return "a table";
+    case Value::Form::other:
+      break;
   }
   return "a date or time";
 }
@@ -44,10 +50,14 @@ std::size_t first_not_utf8(std::string_view text) noexcept {
   while (i < text.size()) {
     const auto lead = static_cast<unsigned char>(text[i]);
     std::size_t length = 0;
-    if (lead < 0x80U) length = 1;
-    else if (lead >= 0xC2U && lead <= 0xDFU) length = 2;
-    else if (lead >= 0xE0U && lead <= 0xEFU) length = 3;
-    else if (lead >= 0xF0U && lead <= 0xF4U) length = 4;
+    if (lead < 0x80U)
+      length = 1;
+    else if (lead >= 0xC2U && lead <= 0xDFU)
+      length = 2;
+    else if (lead >= 0xE0U && lead <= 0xEFU)
+      length = 3;
+    else if (lead >= 0xF0U && lead <= 0xF4U)
+      length = 4;
     if (length == 0 || i + length > text.size()) return i;
     for (std::size_t k = 1; k < length; ++k) {
       const auto byte = static_cast<unsigned char>(text[i + k]);

@@ -20,7 +20,7 @@ struct Value {
   Form form = Form::other;
   bool flag = false;
   double number = 0;
-  std::string text;             ///< of a text; of a number as it would be written
+  std::string text;  ///< of a text; of a number as it would be written
   models::Origin at{};
   int width = 1;                ///< characters
   std::vector<Value> items;     ///< of a list

@@ -38,10 +38,10 @@ void complete_states(Context& context) {
     if (network.sources.size() == 1) {
       network.states.push_back({"normal", {}, {0}});
     } else if (!context.states_declared && !context.maybe_lost("state")) {
-      context.complaints.error(network.sources[1].at, 1,
-                               fmt::format("{} sources need states that say which are connected together",
-                                           network.sources.size()),
-                               fmt::format("such as [state.normal] with sources = [\"{}\"]", network.sources[0].name));
+      context.complaints.error(
+          network.sources[1].at, 1,
+          fmt::format("{} sources need states that say which are connected together", network.sources.size()),
+          fmt::format("such as [state.normal] with sources = [\"{}\"]", network.sources[0].name));
       context.complaints.note(network.sources[0].at, "the first source is declared here");
     }
   }
@@ -56,8 +56,9 @@ void join_groups(Context& context) {
     models::Group& group = network.boards[at(pending.board)].groups[at(pending.group)];
     for (const Value& way : pending.ways->items) {
       if (way.form != Value::Form::text) {
-        context.complaints.error(way.at, way.width,
-                                 fmt::format("a way of group '{}' is {}; a name is expected", group.name, word(way.form)));
+        context.complaints.error(
+            way.at, way.width,
+            fmt::format("a way of group '{}' is {}; a name is expected", group.name, word(way.form)));
         continue;
       }
       int* slot = nullptr;
@@ -81,15 +82,16 @@ void join_groups(Context& context) {
             if (s.from == pending.board) names.push_back(s.name);
           }
         }
-        context.complaints.error(way.at, way.width,
-                                 fmt::format("group '{}' names way '{}', which board '{}' does not have", group.name,
-                                             way.text, board.name),
-                                 did_you_mean(context, way.text, names));
+        context.complaints.error(
+            way.at, way.width,
+            fmt::format("group '{}' names way '{}', which board '{}' does not have", group.name, way.text, board.name),
+            did_you_mean(context, way.text, names));
         continue;
       }
       if (*slot >= 0) {
-        context.complaints.error(way.at, way.width,
-                                 fmt::format("way '{}' of board '{}' is in two groups or twice in one", way.text, board.name));
+        context.complaints.error(
+            way.at, way.width,
+            fmt::format("way '{}' of board '{}' is in two groups or twice in one", way.text, board.name));
         context.complaints.note(board.groups[at(*slot)].at, "the other mention is in this group");
         continue;
       }
@@ -125,17 +127,20 @@ std::string lacking(ConductorSet wanted, ConductorSet has) {
 void refuse_phases(Context& context, const PendingRun& run, models::Origin element, const std::string& what,
                    ConductorSet wanted, ConductorSet has, const std::string& board) {
   const models::Origin place = run.phases != nullptr ? run.phases->at : element;
-  context.complaints.error(place, run.phases != nullptr ? run.phases->width : 1,
-                           fmt::format("{} needs {}, but board '{}' has {}", what, lacking(wanted, has), board,
-                                       models::phases_text(has)));
+  context.complaints.error(
+      place, run.phases != nullptr ? run.phases->width : 1,
+      fmt::format("{} needs {}, but board '{}' has {}", what, lacking(wanted, has), board, models::phases_text(has)));
 }
 
 // Works the phases down from the sources and resolves the submains' cables on the way.
 class PhaseWalk {
  public:
   explicit PhaseWalk(Context& context)
-      : context_(context), network_(context.network), has_(network_.boards.size()),
-        reached_(network_.boards.size(), false), leaving_(network_.boards.size()),
+      : context_(context),
+        network_(context.network),
+        has_(network_.boards.size()),
+        reached_(network_.boards.size(), false),
+        leaving_(network_.boards.size()),
         done_(network_.submains.size(), false) {
     for (std::size_t k = 0; k < network_.submains.size(); ++k) {
       if (network_.submains[k].from >= 0) leaving_[at(network_.submains[k].from)].push_back(k);
@@ -184,9 +189,8 @@ class PhaseWalk {
   // Whether some submain or source names no board or might have been lost.
   [[nodiscard]] bool feed_unread(int board) const {
     if (!context_.lost.empty() || context_.refused) return true;
-    const bool submain = std::any_of(network_.submains.begin(), network_.submains.end(), [&](const models::Submain& s) {
-      return s.to == board && s.from < 0;
-    });
+    const bool submain = std::any_of(network_.submains.begin(), network_.submains.end(),
+                                     [&](const models::Submain& s) { return s.to == board && s.from < 0; });
     const bool source = std::any_of(network_.sources.begin(), network_.sources.end(),
                                     [](const models::Source& s) { return s.board < 0; });
     const bool lost_end = std::any_of(network_.submains.begin(), network_.submains.end(),
@@ -235,12 +239,16 @@ class PhaseWalk {
   void assume_close(const models::Submain& submain) {
     for (const models::Strand& strand : submain.cable.protective) {
       if (strand.place == models::Place::armour && strand.x <= 0) {
-        context_.assume(submain.name, fmt::format("no reactance of the armour of {} is known", submain.name), submain.cable.at);
+        context_.assume(submain.name, fmt::format("no reactance of the armour of {} is known", submain.name),
+                        submain.cable.at);
       }
       if (strand.place != models::Place::separate) continue;
-      context_.assume(submain.name, fmt::format("the protective conductor beside the cable of {} is taken to run close to it, not bunched "
-                                                  "with it: at ambient temperature, k as such",
-                                                submain.name), submain.at);
+      context_.assume(
+          submain.name,
+          fmt::format("the protective conductor beside the cable of {} is taken to run close to it, not bunched "
+                      "with it: at ambient temperature, k as such",
+                      submain.name),
+          submain.at);
     }
   }
 
@@ -306,10 +314,11 @@ void check_demands(Context& context) {
                                           models::format_quantity(demand, Quantity::current), board,
                                           models::format_quantity(load.largest, Quantity::current)));
     } else if (load.complete && load.n_ways > 0 && demand > sum * (1 + kSlack)) {
-      context.complaints.warn(declared.at, 1,
-                              fmt::format("demand of {} is {}, above the sum of the loads of board '{}', {} in one line",
-                                          what, models::format_quantity(demand, Quantity::current), board,
-                                          models::format_quantity(sum, Quantity::current)));
+      context.complaints.warn(
+          declared.at, 1,
+          fmt::format("demand of {} is {}, above the sum of the loads of board '{}', {} in one line", what,
+                      models::format_quantity(demand, Quantity::current), board,
+                      models::format_quantity(sum, Quantity::current)));
     }
   };
   for (const models::Submain& submain : network.submains)

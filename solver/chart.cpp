@@ -19,10 +19,11 @@ using models::Network;
 std::optional<Situation> find(const Network& network, const StateSolution& solution, const std::string& address) {
   for (const Subject& subject : subjects(network, solution)) {
     const auto i = static_cast<std::size_t>(subject.index);
-    const bool same = (subject.kind == SubjectKind::circuit && models::address(network, network.circuits[i]) == address) ||
-                      (subject.kind == SubjectKind::submain && network.submains[i].name == address) ||
-                      (subject.kind == SubjectKind::tails && network.sources[i].name == address) ||
-                      (subject.kind == SubjectKind::board && network.boards[i].name == address);
+    const bool same =
+        (subject.kind == SubjectKind::circuit && models::address(network, network.circuits[i]) == address) ||
+        (subject.kind == SubjectKind::submain && network.submains[i].name == address) ||
+        (subject.kind == SubjectKind::tails && network.sources[i].name == address) ||
+        (subject.kind == SubjectKind::board && network.boards[i].name == address);
     if (same) return situation(network, solution, subject);
   }
   return std::nullopt;
@@ -48,14 +49,15 @@ void add_damage(PathChart& chart, const Network& network, const models::Cable& c
 }
 
 // One device of the path with the currents it may see on the conductors that lead to the address.
-PathDevice describe(const Network& network, const StateSolution& solution, const Situation& end, const Protector& protector,
-                    const std::optional<Situation>& element) {
+PathDevice describe(const Network& network, const StateSolution& solution, const Situation& end,
+                    const Protector& protector, const std::optional<Situation>& element) {
   PathDevice device;
   device.address = protector.address;
   device.device = *protector.device;
   device.label = protector.address + "  " + protector.device->text;
   if (element) {
-    const FaultCurrent* low = least(element->far_min, {Fault::line_earth, Fault::line_neutral, Fault::line_line}, nullptr);
+    const FaultCurrent* low =
+        least(element->far_min, {Fault::line_earth, Fault::line_neutral, Fault::line_line}, nullptr);
     if (low != nullptr && low->known) device.least = low->amps;
   }
   const ConductorMatrix net = protector.board < 0 ? ConductorMatrix(ConductorMatrix::Zero())

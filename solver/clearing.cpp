@@ -33,7 +33,8 @@ double points_heat(const std::vector<models::CurvePoint>& points, double current
   if (current == points.front().current) return points.front().time;
   for (std::size_t i = 1; i < points.size(); ++i) {
     if (current > points[i].current) continue;
-    const double share = std::log(current / points[i - 1].current) / std::log(points[i].current / points[i - 1].current);
+    const double share =
+        std::log(current / points[i - 1].current) / std::log(points[i].current / points[i - 1].current);
     return points[i - 1].time * std::pow(points[i].time / points[i - 1].time, share);
   }
   return models::kNever;
@@ -82,7 +83,10 @@ std::vector<Protector> path_to_submain(const Network& network, const StateTree& 
 double residual_capacity(const Device& device) noexcept {
   constexpr double kMultiple = 10.0, kLeast = 500.0;  // [A] the second; IEC 61008-1, rated residual breaking capacity
   // Of a combined device that is its breaking capacity; where that is not given its own check says so.
-  if (!device.overcurrent.empty()) return device.Icn > 0 ? device.Icn : models::kNever;
+  if (!device.overcurrent.empty()) {
+    if (device.Icn <= 0) return models::kNever;
+    return device.Icn;
+  }
   return std::max(kMultiple * device.In, kLeast);
 }
 
@@ -104,7 +108,8 @@ Disconnection disconnection(const std::vector<Protector>& path, double current, 
   if (const Protector* overcurrent = overcurrent_protector(path); overcurrent != nullptr)
     consider(*overcurrent, overcurrent->device->overcurrent.latest, false);
   for (auto p = path.rbegin(); p != path.rend(); ++p)
-    if (!p->device->residual.empty() && current <= residual_capacity(*p->device)) consider(*p, p->device->residual.latest, true);
+    if (!p->device->residual.empty() && current <= residual_capacity(*p->device))
+      consider(*p, p->device->residual.latest, true);
   return best;
 }
 
@@ -154,7 +159,8 @@ Heat greatest_heat(const Device& device, double current, double kappa) {
   // delayed trip at currents where the latest time is longer.
   const bool short_circuit = heat.time <= kTenth * (1 + 1e-9);
   switch (data.basis) {
-    case LetThrough::Basis::none: break;
+    case LetThrough::Basis::none:
+      break;
     case LetThrough::Basis::energy_class:
       if (short_circuit && current <= device.Icn) bound(data.total, "energy class");
       break;

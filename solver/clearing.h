@@ -16,17 +16,20 @@ namespace sunder::solver {
 /// A device on the way from the source, with the element it belongs to.
 struct Protector {
   const models::Device* device = nullptr;
-  std::string address;  ///< of its element: "grid", "S1", "workshop" (incomer), "workshop.sockets" (group), "workshop/W2"
+  std::string
+      address;  ///< of its element: "grid", "S1", "workshop" (incomer), "workshop.sockets" (group), "workshop/W2"
   models::Origin at{};
-  int board = -1;       ///< board at its line side; -1: at the source
+  int board = -1;  ///< board at its line side; -1: at the source
 };
 
 /// Devices from the source to the busbar of a board, source first, the board's incomer last.
 [[nodiscard]] std::vector<Protector> path_to_board(const models::Network& network, const StateTree& tree, int board);
 
 /// The same to the load side of a circuit's own device, group devices included.
-[[nodiscard]] std::vector<Protector> path_to_circuit(const models::Network& network, const StateTree& tree, int circuit);
-[[nodiscard]] std::vector<Protector> path_to_submain(const models::Network& network, const StateTree& tree, int submain);
+[[nodiscard]] std::vector<Protector> path_to_circuit(const models::Network& network, const StateTree& tree,
+                                                     int circuit);
+[[nodiscard]] std::vector<Protector> path_to_submain(const models::Network& network, const StateTree& tree,
+                                                     int submain);
 
 /// The device nearest the fault that breaks overcurrents; nullptr if none on the path does.
 [[nodiscard]] const Protector* overcurrent_protector(const std::vector<Protector>& path) noexcept;
@@ -38,10 +41,10 @@ struct Protector {
 
 /// When a line-earth fault is disconnected.
 struct Disconnection {
-  double time = models::kNever;      ///< latest [s]
-  const Protector* by = nullptr;     ///< what guarantees it; nullptr: nothing does
-  bool residual = false;             ///< by its residual current element
-  double needed = models::kNever;    ///< current at which `by` meets `limit` [A]
+  double time = models::kNever;    ///< latest [s]
+  const Protector* by = nullptr;   ///< what guarantees it; nullptr: nothing does
+  bool residual = false;           ///< by its residual current element
+  double needed = models::kNever;  ///< current at which `by` meets `limit` [A]
 };
 
 /// The earliest guarantee among the nearest overcurrent device and every residual current element on

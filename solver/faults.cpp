@@ -52,10 +52,14 @@ const std::vector<Loops>& choices(Fault fault) {
     return std::vector<Loops>{all};
   }();
   switch (fault) {
-    case Fault::line_earth: return earth;
-    case Fault::line_neutral: return neutral;
-    case Fault::line_line: return lines;
-    case Fault::three_phase: break;
+    case Fault::line_earth:
+      return earth;
+    case Fault::line_neutral:
+      return neutral;
+    case Fault::line_line:
+      return lines;
+    case Fault::three_phase:
+      break;
   }
   return three;
 }
@@ -90,9 +94,7 @@ ConductorMatrix with_source(ConductorMatrix z, Complex source) {
   return z;
 }
 
-double ratio(Complex z) {
-  return z.real() > 0 ? z.imag() / z.real() : std::numeric_limits<double>::infinity();
-}
+double ratio(Complex z) { return z.real() > 0 ? z.imag() / z.real() : std::numeric_limits<double>::infinity(); }
 
 // Angle of the source at which |Z_source + rest| is greatest: that of the rest, inside the range.
 double blinding_angle(const SourceTerm& term, Complex rest) {
@@ -106,8 +108,8 @@ double peak_factor(double x_over_r) noexcept {
   return std::isinf(x_over_r) ? 2.0 : x_over_r <= 0 ? 1.02 : 1.02 + 0.98 * std::exp(-3.0 / x_over_r);
 }
 
-FaultCurrent fault_current(const Network& network, const Source& source, const ConductorMatrix& net,
-                           ConductorSet have, Condition condition, Fault fault) {
+FaultCurrent fault_current(const Network& network, const Source& source, const ConductorMatrix& net, ConductorSet have,
+                           Condition condition, Fault fault) {
   FaultCurrent result;
   const bool most = condition == Condition::maximum;
   const std::vector<Loops>& all = choices(fault);
@@ -125,8 +127,7 @@ FaultCurrent fault_current(const Network& network, const Source& source, const C
     std::array<double, 2> angles{term.angle_low, term.angle_high};
     if (!most) angles[0] = angles[1] = blinding_angle(term, solve(loops, rest, result.volts, most).loop);
     for (const double angle : angles) {
-      const Solved solved =
-          solve(loops, with_source(rest, std::polar(term.ohms, angle)), result.volts, most);
+      const Solved solved = solve(loops, with_source(rest, std::polar(term.ohms, angle)), result.volts, most);
       // Equal choices: the first in the order of lines, and of its two angles the inductive one, whose
       // X/R belongs to the peak.
       constexpr double kEqual = 1e-9;
@@ -143,8 +144,8 @@ FaultCurrent fault_current(const Network& network, const Source& source, const C
       const Complex inductive =
           solve(loops, with_source(rest, std::polar(term.ohms, term.angle_high)), result.volts, most).loop;
       if (most) result.peak = peak_factor(ratio(inductive)) * std::numbers::sqrt2 * solved.amps;
-      result.source_ohms = std::abs(
-          solve(loops, with_source(term.fixed, std::polar(term.ohms, angle)), result.volts, most).loop);
+      result.source_ohms =
+          std::abs(solve(loops, with_source(term.fixed, std::polar(term.ohms, angle)), result.volts, most).loop);
     }
   }
   return result;

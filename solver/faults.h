@@ -13,16 +13,16 @@ namespace sunder::solver {
 
 /// The current of one fault at one place.
 struct FaultCurrent {
-  bool possible = false;  ///< the conductors are there
-  bool known = true;      ///< the source's data suffices
-  std::string needs;      ///< what is missing if not known
-  double amps = 0;        ///< governing conductor current [A]
-  double peak = kNone;    ///< [A], maximum only
-  double x_over_r = 0;    ///< of the loop
-  double ohms = 0;        ///< |Z| of the loop that `volts` drives [ohm]
-  Complex loop;           ///< that loop [ohm]
-  double volts = 0;       ///< [V]
-  double source_ohms = 0; ///< |Z| of the source's part of the loop [ohm]
+  bool possible = false;   ///< the conductors are there
+  bool known = true;       ///< the source's data suffices
+  std::string needs;       ///< what is missing if not known
+  double amps = 0;         ///< governing conductor current [A]
+  double peak = kNone;     ///< [A], maximum only
+  double x_over_r = 0;     ///< of the loop
+  double ohms = 0;         ///< |Z| of the loop that `volts` drives [ohm]
+  Complex loop;            ///< that loop [ohm]
+  double volts = 0;        ///< [V]
+  double source_ohms = 0;  ///< |Z| of the source's part of the loop [ohm]
   const char* phases = "";
 
   [[nodiscard]] bool usable() const noexcept { return possible && known; }
@@ -40,8 +40,8 @@ struct FaultCurrent {
 /// An open angle of the source is taken at the end that gives the greater current (maximum; the peak
 /// factor at the inductive end), or where the current is least (minimum).
 [[nodiscard]] FaultCurrent fault_current(const models::Network& network, const models::Source& source,
-                                         const ConductorMatrix& net, models::ConductorSet have,
-                                         Condition condition, Fault fault);
+                                         const ConductorMatrix& net, models::ConductorSet have, Condition condition,
+                                         Fault fault);
 
 /// Path impedances to every place of one state and condition.
 struct Walk {

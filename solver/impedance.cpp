@@ -14,11 +14,15 @@ double strand_degc(const Network& network, const Cable& cable, const Strand& str
   if (condition == Condition::maximum) return 20.0;
   const bool hot_insulation = cable.max_degc > 80.0;
   switch (strand.place) {
-    case Place::core: return cable.max_degc;
-    case Place::separate: return network.ambient_degc;
+    case Place::core:
+      return cable.max_degc;
+    case Place::separate:
+      return network.ambient_degc;
     case Place::armour:
-    case Place::sheath: return hot_insulation ? network.rules.armour_degc_90 : network.rules.armour_degc_70;
-    case Place::conduit: break;
+    case Place::sheath:
+      return hot_insulation ? network.rules.armour_degc_90 : network.rules.armour_degc_70;
+    case Place::conduit:
+      break;
   }
   return hot_insulation ? network.rules.conduit_degc_90 : network.rules.conduit_degc_70;
 }
@@ -54,8 +58,7 @@ ConductorMatrix run_matrix(const Network& network, const Cable& cable, double le
                            Condition condition) noexcept {
   const double scale = length / in_parallel;
   const Complex line = scale * strand_impedance(network, cable, cable.line, condition);
-  const Complex neutral =
-      cable.neutral ? scale * strand_impedance(network, cable, *cable.neutral, condition) : line;
+  const Complex neutral = cable.neutral ? scale * strand_impedance(network, cable, *cable.neutral, condition) : line;
   ConductorMatrix z = ConductorMatrix::Zero();
   z(0, 0) = z(1, 1) = z(2, 2) = line;
   z(3, 3) = neutral;

@@ -24,7 +24,7 @@ std::size_t at(int handle) { return static_cast<std::size_t>(handle); }
 struct Load {
   double amps;
   double pf;
-  double Iz;  // <= 0: not known
+  double Iz;           // <= 0: not known
   double neutral = 0;  // current in the neutral of three lines [A]
 };
 
@@ -48,7 +48,8 @@ double run_drop(const Network& network, const Cable& cable, ConductorSet conduct
   const int lines = conductors.lines();
   const models::Strand& neutral = cable.neutral ? *cable.neutral : cable.line;
   if (lines == 3) {
-    const double back = conductors.has(Conductor::N) ? per_metre(network, neutral, degc, load.pf) * metres * load.neutral : 0;
+    const double back =
+        conductors.has(Conductor::N) ? per_metre(network, neutral, degc, load.pf) * metres * load.neutral : 0;
     return (line + back) / source.U0;
   }
   if (lines == 2) return 2.0 * line / source.U;
@@ -109,8 +110,9 @@ Drop circuit_drop(const Network& network, const models::Circuit& circuit, const 
     metres = circuit.length.value * end.fraction * (1 - end.fraction);
     if (end.spur >= 0) metres += circuit.spurs[at(end.spur)].length;
   }
-  drop.share = run_drop(network, circuit.cable, circuit.conductors, metres,
-                        {circuit.load.value, pf_or_one(circuit.pf), circuit.Iz.given ? circuit.Iz.value : 0.0, 0.0}, source);
+  drop.share =
+      run_drop(network, circuit.cable, circuit.conductors, metres,
+               {circuit.load.value, pf_or_one(circuit.pf), circuit.Iz.given ? circuit.Iz.value : 0.0, 0.0}, source);
   return drop;
 }
 
@@ -140,7 +142,8 @@ Loading load_network(const Network& network, const StateTree& tree) {
     if (ways[at(*b)] == 0) {
       // A board that feeds nothing yet: what it will deliver is not known.
       here.known = false;
-      here.needs = f < 0 ? "demand of board " + network.boards[at(*b)].name : "demand of " + network.submains[at(f)].name;
+      here.needs =
+          f < 0 ? "demand of board " + network.boards[at(*b)].name : "demand of " + network.submains[at(f)].name;
     }
     loading.demand[at(*b)] = here.demand();
     if (f < 0) continue;
@@ -166,8 +169,8 @@ Loading load_network(const Network& network, const StateTree& tree) {
       if (source.tails.present) {
         ConductorSet all = source.lines;
         all.add(Conductor::N);
-        drop.share += run_drop(network, source.tails.cable, all, source.tails.length / source.tails.in_parallel, load,
-                               source);
+        drop.share +=
+            run_drop(network, source.tails.cable, all, source.tails.length / source.tails.in_parallel, load, source);
         drop.length += source.tails.length;
       }
       if (source.transformer) {
@@ -184,8 +187,9 @@ Loading load_network(const Network& network, const StateTree& tree) {
       drop.known = false;
       drop.needs = demand.needs;
     }
-    drop.share += run_drop(network, submain.cable, submain.conductors, submain.length.value / submain.in_parallel,
-                           {demand.amps, demand.pf, submain.Iz.given ? submain.Iz.value : 0.0, demand.unbalance()}, source);
+    drop.share +=
+        run_drop(network, submain.cable, submain.conductors, submain.length.value / submain.in_parallel,
+                 {demand.amps, demand.pf, submain.Iz.given ? submain.Iz.value : 0.0, demand.unbalance()}, source);
     drop.length += submain.length.value;
   }
   return loading;

@@ -14,11 +14,11 @@ namespace sunder::solver {
 
 /// A current that may not be known.
 struct Demand {
-  double amps = 0;      ///< [A] in the most loaded line
-  double pf = 1;        ///< mean of what it feeds, weighted by current
+  double amps = 0;  ///< [A] in the most loaded line
+  double pf = 1;    ///< mean of what it feeds, weighted by current
   bool known = true;
-  bool declared = false;  ///< by `demand`; otherwise the sum of the loads, without diversity
-  std::string needs;    ///< "load of workshop/W4"
+  bool declared = false;          ///< by `demand`; otherwise the sum of the loads, without diversity
+  std::string needs;              ///< "load of workshop/W4"
   std::array<double, 3> lines{};  ///< each line [A]; all zero where only the whole is declared
 
   /// Bound of the neutral current: greatest less least line [A].
@@ -27,19 +27,19 @@ struct Demand {
 
 /// Voltage drop along a path, relative to the nominal voltage.
 struct Drop {
-  double share = 0;     ///< [1]
+  double share = 0;  ///< [1]
   bool known = true;
   std::string needs;
-  double length = 0;    ///< of the path from the supply terminals [m]
+  double length = 0;  ///< of the path from the supply terminals [m]
 };
 
 /// Per board of one state: demand of what it feeds, drop at its busbar.
 struct Loading {
-  std::vector<Demand> demand;   ///< of each board: what its busbar delivers
-  std::vector<Demand> submain;  ///< of each submain: declared, or what its board delivers
-  std::vector<Demand> source;   ///< of each source, in the same way
-  std::vector<Drop> drop;       ///< at each board
-  std::vector<double> motors;   ///< rated current of all motors below each source [A], by source
+  std::vector<Demand> demand;               ///< of each board: what its busbar delivers
+  std::vector<Demand> submain;              ///< of each submain: declared, or what its board delivers
+  std::vector<Demand> source;               ///< of each source, in the same way
+  std::vector<Drop> drop;                   ///< at each board
+  std::vector<double> motors;               ///< rated current of all motors below each source [A], by source
   std::vector<std::string> motors_unknown;  ///< a motor of each source whose current is not given, "" if none
 };
 

@@ -70,7 +70,8 @@ std::optional<std::string> change_cable(const Network& network, Cable& cable, co
     cpc.core_area = 0;
   }
   Cable changed;
-  if (auto error = models::resolve_cable(*of, std::get<double>(area), cpc, cable.n_loaded, cable.with_neutral, *singles, changed))
+  if (auto error = models::resolve_cable(*of, std::get<double>(area), cpc, cable.n_loaded, cable.with_neutral, *singles,
+                                         changed))
     return error->message;
   changed.at = cable.at;
   cable = changed;
@@ -95,7 +96,8 @@ std::vector<std::string> ratings_of(const Network& network, const models::Device
   for (const models::DeviceFamily& family : network.families) {
     if (family.name != device.family) continue;
     for (const double In : family.ratings)
-      texts.push_back(device.text.substr(0, at) + " " + models::format_number(In) + " A" + device.text.substr(at + rating.size()));
+      texts.push_back(device.text.substr(0, at) + " " + models::format_number(In) + " A" +
+                      device.text.substr(at + rating.size()));
   }
   return texts;
 }
@@ -106,22 +108,23 @@ std::vector<Parameter> run_parameters(const std::string& address, const VaryRequ
                                       bool circuit) {
   std::vector<Parameter> all;
   auto value = [&](const char* key, Quantity unit, auto member) {
-    all.push_back(number(address + "." + key, unit,
-                         [get, member](Network& n, double v) {
-                           auto& target = get(n).*member;
-                           target.value = v;
-                           target.given = true;
-                         },
-                         // a power factor moves the mean of every feed above
-                         circuit && std::string(key) != "pf"));
+    all.push_back(number(
+        address + "." + key, unit,
+        [get, member](Network& n, double v) {
+          auto& target = get(n).*member;
+          target.value = v;
+          target.given = true;
+        },
+        // a power factor moves the mean of every feed above
+        circuit && std::string(key) != "pf"));
   };
   using Element = std::remove_reference_t<decltype(get(std::declval<Network&>()))>;
   value("length", Quantity::length, &Element::length);
   value("Iz", Quantity::current, &Element::Iz);
   value("pf", Quantity::ratio, &Element::pf);
-  all.push_back(number(address + ".in_parallel", Quantity::count,
-                       [get](Network& n, double v) { get(n).in_parallel = std::max(1, static_cast<int>(std::lround(v))); },
-                       circuit));
+  all.push_back(number(
+      address + ".in_parallel", Quantity::count,
+      [get](Network& n, double v) { get(n).in_parallel = std::max(1, static_cast<int>(std::lround(v))); }, circuit));
   Parameter cable;
   cable.address = address + ".cable";
   cable.numeric = false;
@@ -137,7 +140,8 @@ std::vector<Parameter> run_parameters(const std::string& address, const VaryRequ
     device.unit = Quantity::current;
     device.own_run_only = circuit;
     device.catalogue = ratings_of(network, get(network).device);
-    device.set_text = [get, read = request.read_device](Network& n, const std::string& text) -> std::optional<std::string> {
+    device.set_text = [get, read = request.read_device](Network& n,
+                                                        const std::string& text) -> std::optional<std::string> {
       auto read_it = read(n, text);
       if (auto* error = std::get_if<std::string>(&read_it)) return *error;
       auto& element = get(n);
@@ -152,7 +156,8 @@ std::vector<Parameter> run_parameters(const std::string& address, const VaryRequ
 }
 
 // A declared loop can be a current or an impedance: the unit of the text decides.
-void add_loops(std::vector<Parameter>& all, const std::string& address, std::size_t index, bool maximum, Quantity unit) {
+void add_loops(std::vector<Parameter>& all, const std::string& address, std::size_t index, bool maximum,
+               Quantity unit) {
   struct Named {
     const char* key;
     Loop models::Bound::*member;
@@ -167,7 +172,8 @@ void add_loops(std::vector<Parameter>& all, const std::string& address, std::siz
     if (impedance_name && (maximum || unit != Quantity::impedance)) continue;
     all.push_back(number(fmt::format("{}.{}.{}", address, maximum ? "maximum" : "minimum", named.key), unit,
                          [index, maximum, member = named.member, unit](Network& network, double v) {
-                           models::Bound& bound = maximum ? network.sources[index].maximum : network.sources[index].minimum;
+                           models::Bound& bound =
+                               maximum ? network.sources[index].maximum : network.sources[index].minimum;
                            auto put = [&](Loop& loop) {
                              loop.ohms = unit == Quantity::impedance ? v : 0;
                              loop.amps = unit == Quantity::current ? v : 0;
@@ -223,7 +229,8 @@ std::vector<Parameter> parameters_of(const Network& network, const VaryRequest& 
     if (network.sources[i].name == element) return source_parameters(network.sources[i], i, loop_unit(request));
   for (std::size_t i = 0; i < network.submains.size(); ++i)
     if (network.submains[i].name == element) {
-      all = run_parameters(element, request, network, [i](Network& n) -> Submain& { return n.submains[i]; }, false);
+      all = run_parameters(
+          element, request, network, [i](Network& n) -> Submain& { return n.submains[i]; }, false);
       all.push_back(number(element + ".demand", Quantity::current, [i](Network& n, double v) {
         n.submains[i].demand.value = v;
         n.submains[i].demand.given = true;
@@ -232,12 +239,15 @@ std::vector<Parameter> parameters_of(const Network& network, const VaryRequest& 
     }
   for (std::size_t i = 0; i < network.circuits.size(); ++i)
     if (models::address(network, network.circuits[i]) == element) {
-      all = run_parameters(element, request, network, [i](Network& n) -> Circuit& { return n.circuits[i]; }, true);
+      all = run_parameters(
+          element, request, network, [i](Network& n) -> Circuit& { return n.circuits[i]; }, true);
       if (network.circuits[i].ring)
-        all.erase(std::remove_if(all.begin(), all.end(), [&](const Parameter& p) { return p.address == element + ".in_parallel"; }),
+        all.erase(std::remove_if(all.begin(), all.end(),
+                                 [&](const Parameter& p) { return p.address == element + ".in_parallel"; }),
                   all.end());
       // A ring reaches as far as its last spur.
-      for (const models::Spur& spur : network.circuits[i].spurs) all.front().least = std::max(all.front().least, spur.at);
+      for (const models::Spur& spur : network.circuits[i].spurs)
+        all.front().least = std::max(all.front().least, spur.at);
       all.push_back(number(element + ".load", Quantity::current, [i](Network& n, double v) {
         n.circuits[i].load.value = v;
         n.circuits[i].load.given = true;
@@ -334,9 +344,10 @@ std::variant<Parameter, std::string> find_parameter(const Network& network, cons
   const std::string_view near = models::nearest_name(key.substr(dot + 1), keys);
   std::string list;
   for (const std::string_view k : keys) list += (list.empty() ? "" : ", ") + std::string(k);
-  return near.empty() ? fmt::format("'{}' has no value '{}' that can be varied; it has {}", element, key.substr(dot + 1), list)
-                      : fmt::format("'{}' has no value '{}' that can be varied; did you mean '{}'?", element,
-                                    key.substr(dot + 1), near);
+  return near.empty()
+             ? fmt::format("'{}' has no value '{}' that can be varied; it has {}", element, key.substr(dot + 1), list)
+             : fmt::format("'{}' has no value '{}' that can be varied; did you mean '{}'?", element,
+                           key.substr(dot + 1), near);
 }
 
 std::variant<double, std::string> read_value(const Parameter& parameter, const std::string& text) {
@@ -345,12 +356,14 @@ std::variant<double, std::string> read_value(const Parameter& parameter, const s
     return fmt::format("{}: {}", parameter.address, error->message);
   const double value = std::get<double>(parsed);
   const bool possible = parameter.zero_allowed ? value >= parameter.least : value > parameter.least;
-  if (parameter.whole && value != std::floor(value)) return fmt::format("{} is {}; it must be a whole number", parameter.address, text);
+  if (parameter.whole && value != std::floor(value))
+    return fmt::format("{} is {}; it must be a whole number", parameter.address, text);
   if (value > parameter.most)
     return fmt::format("{} is {}; it must be at most {}", parameter.address, text,
                        models::format_quantity(parameter.most, parameter.unit));
   if (!possible || !std::isfinite(value))
-    return fmt::format("{} is {}; it must be {} {}", parameter.address, text, parameter.zero_allowed ? "at least" : "above",
+    return fmt::format("{} is {}; it must be {} {}", parameter.address, text,
+                       parameter.zero_allowed ? "at least" : "above",
                        models::format_quantity(parameter.least, parameter.unit));
   return value;
 }

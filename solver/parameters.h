@@ -15,15 +15,15 @@ namespace sunder::solver {
 
 /// One value: how a text becomes it, and what it may be.
 struct Parameter {
-  std::string address;              ///< "S1.length"
-  bool numeric = true;              ///< a quantity; false: a text such as a cable size
+  std::string address;  ///< "S1.length"
+  bool numeric = true;  ///< a quantity; false: a text such as a cable size
   models::Quantity unit = models::Quantity::count;
-  double least = 0;                 ///< smallest possible value [SI], exclusive unless `zero_allowed`
-  double most = models::kNever;     ///< greatest possible value [SI], inclusive
+  double least = 0;              ///< smallest possible value [SI], exclusive unless `zero_allowed`
+  double most = models::kNever;  ///< greatest possible value [SI], inclusive
   bool zero_allowed = false;
-  bool whole = false;               ///< a count
+  bool whole = false;                  ///< a count
   std::vector<std::string> catalogue;  ///< what `all` stands for: sizes of the construction, ratings of the family
-  bool own_run_only = false;        ///< touches nothing but its own circuit
+  bool own_run_only = false;           ///< touches nothing but its own circuit
   std::function<void(models::Network&, double)> set;
   /// @return why the text does not fit, or nothing
   std::function<std::optional<std::string>(models::Network&, const std::string&)> set_text;

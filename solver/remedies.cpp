@@ -144,8 +144,8 @@ class Mender {
       models::CpcChoice cpc = given.cpc;
       if (protective) (cpc.separate > 0 ? cpc.separate : cpc.core_area) = size.area;
       Cable tried;
-      if (models::resolve_cable(*of, protective ? given.area : size.area, cpc, given.n_loaded, given.with_neutral, *singles,
-                                tried))
+      if (models::resolve_cable(*of, protective ? given.area : size.area, cpc, given.n_loaded, given.with_neutral,
+                                *singles, tried))
         continue;
       tried.at = given.at;
       *run_.cable = tried;

@@ -22,7 +22,7 @@ enum class Fault { three_phase, line_line, line_neutral, line_earth };
 enum class Verdict { meets, fails, undecided, noted };
 
 inline constexpr std::initializer_list<Fault> kAllFaults{Fault::three_phase, Fault::line_line, Fault::line_neutral,
-                                                        Fault::line_earth};
+                                                         Fault::line_earth};
 
 /// 0 fails, 1 undecided, 2 meets, 3 noted: the less, the more it governs.
 [[nodiscard]] constexpr int severity(Verdict verdict) noexcept {
@@ -37,26 +37,26 @@ inline constexpr std::initializer_list<Fault> kAllFaults{Fault::three_phase, Fau
 struct FaultRow {
   std::string state;
   Condition condition = Condition::maximum;
-  std::string node;      ///< "workshop", "workshop/W2", "workshop/W2/spur1"
+  std::string node;  ///< "workshop", "workshop/W2", "workshop/W2/spur1"
   Fault fault = Fault::line_earth;
-  std::string phases;    ///< "L1-PE", "L1-N", "L1-L2", "L1-L2-L3": the governing choice
-  double current = 0;    ///< [A] rms
-  double peak = kNone;   ///< [A]; kNone in the minimum
-  double x_over_r = 0;   ///< of the loop
-  double loop_ohms = 0;  ///< |Z| of the loop that `driving_volts` drives [ohm]
+  std::string phases;        ///< "L1-PE", "L1-N", "L1-L2", "L1-L2-L3": the governing choice
+  double current = 0;        ///< [A] rms
+  double peak = kNone;       ///< [A]; kNone in the minimum
+  double x_over_r = 0;       ///< of the loop
+  double loop_ohms = 0;      ///< |Z| of the loop that `driving_volts` drives [ohm]
   double driving_volts = 0;  ///< c*U0 or c*U [V]
-  bool known = true;     ///< false: undeclared data; `needs` says which
+  bool known = true;         ///< false: undeclared data; `needs` says which
   std::string needs;
 };
 
 /// One line of working: formula, the same with numbers, the result, and where its inputs stand.
 struct Step {
-  std::string what;      ///< "earth-fault loop at the far end"
-  std::string formula;   ///< "Zs = Ze + R1 + R2"
-  std::string numbers;   ///< "0.35 + 0.21 + 0.27"
+  std::string what;     ///< "earth-fault loop at the far end"
+  std::string formula;  ///< "Zs = Ze + R1 + R2"
+  std::string numbers;  ///< "0.35 + 0.21 + 0.27"
   double result = kNone;
   models::Quantity unit = models::Quantity::count;
-  models::Origin at{};   ///< of the input that matters most; file 0: none
+  models::Origin at{};  ///< of the input that matters most; file 0: none
 };
 
 struct Remedy {
@@ -64,27 +64,27 @@ struct Remedy {
   std::string key;       ///< address of the value: "workshop/W2.length"
   double value = kNone;  ///< in the SI unit of `unit`
   models::Quantity unit = models::Quantity::count;
-  bool holds = false;    ///< every check of the subject is met with it, none elsewhere gets worse
-  std::string note;      ///< what would still not be met, "" when it holds
+  bool holds = false;  ///< every check of the subject is met with it, none elsewhere gets worse
+  std::string note;    ///< what would still not be met, "" when it holds
 };
 
 /// One check of one subject. `fails` over `undecided` over `meets`, then least margin, governs.
 struct Finding {
-  std::string check;     ///< "disconnection time"
-  std::string subject;   ///< "workshop/W2", "S1", "intake"
+  std::string check;    ///< "disconnection time"
+  std::string subject;  ///< "workshop/W2", "S1", "intake"
   Verdict verdict = Verdict::undecided;
   double value = kNone;  ///< SI; kNone with `reason` (never operates, no bound)
   double limit = kNone;
   models::Quantity unit = models::Quantity::count;
-  double margin = kNone; ///< signed, relative to the limit; negative: not met
+  double margin = kNone;  ///< signed, relative to the limit; negative: not met
   std::string state;
-  std::string condition; ///< "maximum", "minimum", or ""
-  std::string fault;     ///< "line-earth", ..., or ""
+  std::string condition;  ///< "maximum", "minimum", or ""
+  std::string fault;      ///< "line-earth", ..., or ""
   std::string clause;
   models::Confidence confidence = models::Confidence::declared;
-  std::string summary;   ///< the working in one sentence: "1.62 ohm lets 135 A flow; C 16 A needs 160 A"
-  std::string reason;    ///< why value or limit is absent, or why undecided
-  std::vector<std::string> needs;        ///< what would decide it: "Icn of the device of W3"
+  std::string summary;             ///< the working in one sentence: "1.62 ohm lets 135 A flow; C 16 A needs 160 A"
+  std::string reason;              ///< why value or limit is absent, or why undecided
+  std::vector<std::string> needs;  ///< what would decide it: "Icn of the device of W3"
   std::vector<std::string> assumptions;
   std::vector<Step> steps;
   std::vector<Remedy> remedies;
@@ -103,32 +103,32 @@ struct Finding {
 struct ScheduleRow {
   std::string address, serves, phases, device, cable, cpc;
   bool submain = false;
-  double length = kNone;   ///< [m]
+  double length = kNone;                      ///< [m]
   double Ib = kNone, In = kNone, Iz = kNone;  ///< [A]
-  double drop = kNone;     ///< [1] from the supply terminals
-  double Zs = kNone;       ///< [ohm] at the minimum condition
-  double least = kNone;    ///< [A] least line-earth, line-neutral or line-line current at the far end
-  double greatest = kNone; ///< [A] greatest current at the device
-  double time = kNone;     ///< [s] latest disconnection, infinite: never
-  double limit = kNone;    ///< [s]
+  double drop = kNone;                        ///< [1] from the supply terminals
+  double Zs = kNone;                          ///< [ohm] at the minimum condition
+  double least = kNone;                  ///< [A] least line-earth, line-neutral or line-line current at the far end
+  double greatest = kNone;               ///< [A] greatest current at the device
+  double time = kNone;                   ///< [s] latest disconnection, infinite: never
+  double limit = kNone;                  ///< [s]
   Verdict verdict = Verdict::undecided;  ///< worst of the checks of this circuit
 };
 
 /// Curves, currents and damage lines of one path, for the coordination chart.
 struct PathDevice {
-  std::string address;   ///< "grid", "S1", "workshop/W2", "workshop (incomer)"
-  std::string label;     ///< "workshop/W2  B 32 A"
+  std::string address;  ///< "grid", "S1", "workshop/W2", "workshop (incomer)"
+  std::string label;    ///< "workshop/W2  B 32 A"
   models::Device device;
   double least = kNone;     ///< least current it must clear [A]
   double greatest = kNone;  ///< greatest current through it [A]
 };
 struct DamageLine {
-  std::string label;     ///< "S1 armour of 78 mm2"
-  double k2s2 = 0;       ///< [A2s], t = k2s2 / I2, drawn up to 5 s
+  std::string label;  ///< "S1 armour of 78 mm2"
+  double k2s2 = 0;    ///< [A2s], t = k2s2 / I2, drawn up to 5 s
 };
 struct ChartCurrent {
-  std::string label;     ///< "least line-earth at workshop/W2"
-  double current = 0;    ///< [A]
+  std::string label;   ///< "least line-earth at workshop/W2"
+  double current = 0;  ///< [A]
 };
 struct PathChart {
   std::string title, address, state;
@@ -142,17 +142,17 @@ struct PathChart {
 struct Flip {
   std::string check, subject;
   Verdict before = Verdict::meets, after = Verdict::fails;
-  double at = 0;          ///< parameter value [SI] (catalogue: index of the first value after it)
+  double at = 0;  ///< parameter value [SI] (catalogue: index of the first value after it)
   std::string state;
 };
 struct SweepPoint {
-  double value = 0;        ///< [SI]
-  std::string text;        ///< catalogue: the value as text
+  double value = 0;               ///< [SI]
+  std::string text;               ///< catalogue: the value as text
   std::vector<Finding> findings;  ///< governing, without steps
 };
 struct Stretch {
   std::string check, subject;
-  double from = 0, to = 0; ///< undecided between these
+  double from = 0, to = 0;  ///< undecided between these
   std::string needs;
 };
 struct Sweep {

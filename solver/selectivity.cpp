@@ -61,10 +61,14 @@ bool built_selective(const Device& down, const Device& up) {
 
 const char* word(Selectivity selectivity) noexcept {
   switch (selectivity) {
-    case Selectivity::total: return "total";
-    case Selectivity::partial: return "partial";
-    case Selectivity::none: return "none";
-    case Selectivity::undecided: break;
+    case Selectivity::total:
+      return "total";
+    case Selectivity::partial:
+      return "partial";
+    case Selectivity::none:
+      return "none";
+    case Selectivity::undecided:
+      break;
   }
   return "undecided";
 }
@@ -78,9 +82,7 @@ PairVerdict overcurrent_selectivity(const Device& down, const Device& up, double
     verdict.needs = "earliest operating points or pre-arcing I2t of " + up.text;
     return verdict;
   }
-  auto holds = [&](double current) {
-    return by_curves(down, up, current) || by_energy(down, up, current, kappa);
-  };
+  auto holds = [&](double current) { return by_curves(down, up, current) || by_energy(down, up, current, kappa); };
   if (built_selective(down, up)) {
     verdict.selectivity = Selectivity::total;
     verdict.limit = available;
@@ -122,9 +124,8 @@ PairVerdict overcurrent_selectivity(const Device& down, const Device& up, double
   }
   verdict.selectivity = Selectivity::partial;
   verdict.limit = good;
-  verdict.basis = up.kind == models::DeviceKind::fuse
-                      ? "curves and pre-arcing I2t; above the limit not proven"
-                      : "curves; above the limit they prove nothing";
+  verdict.basis = up.kind == models::DeviceKind::fuse ? "curves and pre-arcing I2t; above the limit not proven"
+                                                      : "curves; above the limit they prove nothing";
   verdict.needs = "the maker's selectivity limit of " + down.text + " below " + up.text;
   return verdict;
 }
@@ -150,7 +151,8 @@ PairVerdict residual_selectivity(const Device& down, const Device& up, double av
   verdict.selectivity = Selectivity::none;
   verdict.limit = up.IdN / 2;
   if (!types) {
-    verdict.basis = "residual: the type upstream (AC < A < F < B) is below the one downstream, whose currents may blind it";
+    verdict.basis =
+        "residual: the type upstream (AC < A < F < B) is below the one downstream, whose currents may blind it";
     return verdict;
   }
   verdict.basis = !delayed ? "residual: the upstream device is not delayed above the downstream one"

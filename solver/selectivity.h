@@ -17,9 +17,9 @@ enum class Selectivity { total, partial, none, undecided };
 /// What is known of a pair.
 struct PairVerdict {
   Selectivity selectivity = Selectivity::undecided;
-  double limit = kNone;   ///< proven up to this current [A]; infinite is never used: capped at `available`
-  std::string basis;      ///< on what it rests
-  std::string needs;      ///< what would decide more
+  double limit = kNone;  ///< proven up to this current [A]; infinite is never used: capped at `available`
+  std::string basis;     ///< on what it rests
+  std::string needs;     ///< what would decide more
 };
 
 /// Overcurrents: selective at a current where the downstream latest time is not above the upstream

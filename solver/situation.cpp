@@ -143,11 +143,15 @@ StateSolution solve_state(const Network& network, int state) {
 bool is_live(const Network& network, const StateSolution& solution, Subject subject) {
   const auto index = at(subject.index);
   switch (subject.kind) {
-    case SubjectKind::circuit: return solution.tree.live(network.circuits[index].board);
+    case SubjectKind::circuit:
+      return solution.tree.live(network.circuits[index].board);
     // Live and feeding: a submain whose far board has a source of its own in this state is open.
-    case SubjectKind::submain: return solution.tree.feeder[at(network.submains[index].to)] == subject.index;
-    case SubjectKind::board: return solution.tree.live(subject.index);
-    case SubjectKind::tails: break;
+    case SubjectKind::submain:
+      return solution.tree.feeder[at(network.submains[index].to)] == subject.index;
+    case SubjectKind::board:
+      return solution.tree.live(subject.index);
+    case SubjectKind::tails:
+      break;
   }
   const std::vector<int>& active = network.states[at(solution.tree.state)].sources;
   return has_origin(network.sources[index]) && std::find(active.begin(), active.end(), subject.index) != active.end();
@@ -185,10 +189,18 @@ Situation situation(const Network& network, const StateSolution& solution, Subje
   s.motors = solution.loading.motors[at(source)];
   s.motors_unknown = solution.loading.motors_unknown[at(source)];
   switch (subject.kind) {
-    case SubjectKind::circuit: fill_circuit(s, solution, subject.index); break;
-    case SubjectKind::submain: fill_submain(s, solution, subject.index); break;
-    case SubjectKind::tails: fill_tails(s, solution, subject.index); break;
-    default: fill_board(s, solution, subject.index); break;
+    case SubjectKind::circuit:
+      fill_circuit(s, solution, subject.index);
+      break;
+    case SubjectKind::submain:
+      fill_submain(s, solution, subject.index);
+      break;
+    case SubjectKind::tails:
+      fill_tails(s, solution, subject.index);
+      break;
+    default:
+      fill_board(s, solution, subject.index);
+      break;
   }
   if (s.board_index >= 0) s.board = &network.boards[at(s.board_index)];
   return s;

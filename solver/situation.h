@@ -42,7 +42,7 @@ struct Situation {
   const models::Source* source = nullptr;
   const models::Circuit* circuit = nullptr;
   const models::Submain* submain = nullptr;
-  const models::Board* board = nullptr;   ///< at the line side; kind board: itself
+  const models::Board* board = nullptr;  ///< at the line side; kind board: itself
   int board_index = -1;
   // a run (circuit, submain, tails)
   const models::Device* device = nullptr;  ///< its own; may be of kind none
@@ -52,12 +52,12 @@ struct Situation {
   bool ring = false;
   models::ConductorSet conductors;  ///< that reach its far end
   models::Use use = models::Use::unknown;
-  std::vector<Protector> path;      ///< source first
-  Currents origin_max;              ///< at the line side of its device, maximum
-  Currents far_min;                 ///< at its far end (ring: worst place), minimum
-  Drop drop;                        ///< at its far end, from the supply terminals
-  double motors = 0;                ///< rated current of all motors in this part of the network [A]
-  std::string motors_unknown;       ///< a motor there whose current is not given, "" if none
+  std::vector<Protector> path;  ///< source first
+  Currents origin_max;          ///< at the line side of its device, maximum
+  Currents far_min;             ///< at its far end (ring: worst place), minimum
+  Drop drop;                    ///< at its far end, from the supply terminals
+  double motors = 0;            ///< rated current of all motors in this part of the network [A]
+  std::string motors_unknown;   ///< a motor there whose current is not given, "" if none
 };
 
 /// What is solved once per state and shared by every subject in it.

@@ -54,7 +54,8 @@ Choice greatest(const Source& source, const Bound& bound, Fault fault, double vo
     return missing(source, "maximum", source.lines.lines() > 1 ? "three_phase" : "line_neutral");
   }
   // In TN-S the protective return has an impedance of its own; an electrode's is never less than a neutral's.
-  if (fault == Fault::line_earth && source.earthing == models::Earthing::TN_S) return missing(source, "maximum", "line_earth");
+  if (fault == Fault::line_earth && source.earthing == models::Earthing::TN_S)
+    return missing(source, "maximum", "line_earth");
   Choice choice = from_loop(neutral, volts_to_neutral);
   if (!through_return) choice.ohms /= 2;
   return choice;
@@ -85,11 +86,11 @@ SourceTerm supply_term(const Network& network, const Source& source, Condition c
   const bool most = condition == Condition::maximum;
   const Bound& bound = most ? source.maximum : source.minimum;
   const double volts = driving_voltage(network.rules, source, condition, fault);
-  const double one_line = fault == Fault::line_line ? driving_voltage(network.rules, source, condition, Fault::three_phase)
-                                                    : volts;
+  const double one_line =
+      fault == Fault::line_line ? driving_voltage(network.rules, source, condition, Fault::three_phase) : volts;
   const double to_neutral = driving_voltage(network.rules, source, condition, Fault::line_neutral);
-  const Choice choice = most ? greatest(source, bound, fault, one_line, to_neutral)
-                             : least(source, bound, fault, one_line, to_neutral);
+  const Choice choice =
+      most ? greatest(source, bound, fault, one_line, to_neutral) : least(source, bound, fault, one_line, to_neutral);
   SourceTerm term;
   term.at = choice.at;
   term.needs = choice.needs;
@@ -133,9 +134,8 @@ SourceTerm transformer_term(const Source& source, Condition condition) {
 Complex transformer_impedance(const Source& source) noexcept {
   const double base = source.secondary * source.secondary / source.rating;
   const double magnitude = source.uk * base;
-  const double resistance = source.losses > 0
-                                ? source.losses / source.rating * base
-                                : magnitude / std::hypot(1.0, source.x_over_r);
+  const double resistance =
+      source.losses > 0 ? source.losses / source.rating * base : magnitude / std::hypot(1.0, source.x_over_r);
   return {resistance, std::sqrt(std::max(0.0, magnitude * magnitude - resistance * resistance))};
 }
 
@@ -143,13 +143,15 @@ double voltage_factor(const models::RuleSet& rules, Condition condition) noexcep
   return condition == Condition::maximum ? rules.c_max : rules.c_min;
 }
 
-double driving_voltage(const models::RuleSet& rules, const Source& source, Condition condition,
-                       Fault fault) noexcept {
+double driving_voltage(const models::RuleSet& rules, const Source& source, Condition condition, Fault fault) noexcept {
   const double c = voltage_factor(rules, condition);
   switch (fault) {
-    case Fault::three_phase: return c * source.U / std::numbers::sqrt3;
-    case Fault::line_line: return c * source.U;
-    default: return c * source.U0;
+    case Fault::three_phase:
+      return c * source.U / std::numbers::sqrt3;
+    case Fault::line_line:
+      return c * source.U;
+    default:
+      return c * source.U0;
   }
 }
 
@@ -164,8 +166,7 @@ double test_power_factor(double current) noexcept {
 }
 
 SourceTerm source_term(const Network& network, const Source& source, Condition condition, Fault fault) {
-  return source.transformer ? transformer_term(source, condition)
-                            : supply_term(network, source, condition, fault);
+  return source.transformer ? transformer_term(source, condition) : supply_term(network, source, condition, fault);
 }
 
 }  // namespace sunder::solver

@@ -13,12 +13,12 @@ namespace sunder::solver {
 /// A source in one condition and one kind of fault.
 struct SourceTerm {
   ConductorMatrix fixed = ConductorMatrix::Zero();  ///< known part [ohm]
-  double ohms = 0;        ///< declared loop impedance, put into the line [ohm]
-  double angle_low = 0;   ///< of it [rad]
-  double angle_high = 0;  ///< [rad]
+  double ohms = 0;                                  ///< declared loop impedance, put into the line [ohm]
+  double angle_low = 0;                             ///< of it [rad]
+  double angle_high = 0;                            ///< [rad]
   bool known = true;
-  std::string needs;      ///< the value that would make it known: "grid.minimum.Zn"
-  models::Origin at{};    ///< of the declaration used
+  std::string needs;    ///< the value that would make it known: "grid.minimum.Zn"
+  models::Origin at{};  ///< of the declaration used
 };
 
 /// c_max or c_min of the rule set.
@@ -26,8 +26,8 @@ struct SourceTerm {
 
 /// Voltage that drives the loop of a fault, c*U0 through N, PE or earth, c*U between lines; for a
 /// three-phase fault c*U/sqrt(3), the voltage of one line of the symmetrical loop. [V]
-[[nodiscard]] double driving_voltage(const models::RuleSet& rules, const models::Source& source,
-                                     Condition condition, Fault fault) noexcept;
+[[nodiscard]] double driving_voltage(const models::RuleSet& rules, const models::Source& source, Condition condition,
+                                     Fault fault) noexcept;
 
 /// Test power factor of IEC 60947-2 for a prospective current [A]: the most inductive angle taken
 /// where a supply declares none. Between 0.9 (up to 3 kA) and 0.2 (above 50 kA).
@@ -46,7 +46,7 @@ struct SourceTerm {
 /// A transformer: Z_T = uk U2^2 / S with R from the load losses or X/R, behind
 /// Z_Q = c_Q U2^2 / S_Q (c_Q 1.1 in the maximum, 1.0 in the minimum; R_Q = 0.1 X_Q), the winding on
 /// the high side in delta: Z0 of the transformer alone, (Z0 - Z1)/3 between the lines.
-[[nodiscard]] SourceTerm source_term(const models::Network& network, const models::Source& source,
-                                     Condition condition, Fault fault);
+[[nodiscard]] SourceTerm source_term(const models::Network& network, const models::Source& source, Condition condition,
+                                     Fault fault);
 
 }  // namespace sunder::solver

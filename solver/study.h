@@ -17,7 +17,7 @@ namespace sunder::solver {
 struct Trouble {
   std::string message;
   models::Origin at{};
-  std::string note;         ///< of a second place, "" if none
+  std::string note;  ///< of a second place, "" if none
   models::Origin second{};
 };
 

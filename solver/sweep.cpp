@@ -107,8 +107,8 @@ Finding light(Finding finding) {
 bool judged(Verdict verdict) { return verdict != Verdict::noted; }
 
 void add_stretch(Sweep& sweep, const Finding& finding, double from, double to) {
-  sweep.undecided.push_back({finding.check, finding.subject, from, to,
-                             finding.needs.empty() ? finding.reason : finding.needs.front()});
+  sweep.undecided.push_back(
+      {finding.check, finding.subject, from, to, finding.needs.empty() ? finding.reason : finding.needs.front()});
 }
 
 void follow(Retrial& retrial, const Parameter& parameter, const std::vector<double>& grid,
@@ -139,7 +139,8 @@ void follow(Retrial& retrial, const Parameter& parameter, const std::vector<doub
   if (!std::isnan(open)) add_stretch(sweep, track.at(values.back()), open, values.back());
 }
 
-std::variant<Sweep, std::string> vary_range(const Network& network, const Parameter& parameter, std::vector<double> grid,
+std::variant<Sweep, std::string> vary_range(const Network& network, const Parameter& parameter,
+                                            std::vector<double> grid,
                                             const std::function<void(std::size_t, std::size_t)>& progress) {
   Network ends = network;
   for (const double end : {grid.front(), grid.back()}) {
@@ -200,8 +201,8 @@ std::variant<Sweep, std::string> vary_catalogue(const Network& network, const Pa
         if (earlier == before.end() || earlier->second.verdict == finding.verdict || !judged(finding.verdict) ||
             !judged(earlier->second.verdict))
           continue;
-        sweep.flips.push_back({finding.check, finding.subject, earlier->second.verdict, finding.verdict, point.value,
-                               finding.state});
+        sweep.flips.push_back(
+            {finding.check, finding.subject, earlier->second.verdict, finding.verdict, point.value, finding.state});
       }
     }
     for (const Finding& finding : point.findings)
@@ -224,9 +225,10 @@ std::variant<Sweep, std::string> vary(const Network& network, const VaryRequest&
     if (request.values.size() == 1 && request.values.front() == "all" && !parameter.catalogue.empty())
       return vary_catalogue(network, parameter, parameter.catalogue, true, progress);
     if (request.values.empty())
-      return fmt::format("{} is not a range; give its values with --values, for example --values \"25 mm2,35 mm2\", or "
-                         "--values all",
-                         parameter.address);
+      return fmt::format(
+          "{} is not a range; give its values with --values, for example --values \"25 mm2,35 mm2\", or "
+          "--values all",
+          parameter.address);
     return vary_catalogue(network, parameter, request.values, false, progress);
   }
   std::vector<double> grid;
@@ -240,14 +242,16 @@ std::variant<Sweep, std::string> vary(const Network& network, const VaryRequest&
     grid.erase(std::unique(grid.begin(), grid.end()), grid.end());
     return vary_range(network, parameter, grid, progress);
   }
-  if (parameter.whole) return fmt::format("{} is a count; give its values with --values, for example --values 1,2,3", parameter.address);
+  if (parameter.whole)
+    return fmt::format("{} is a count; give its values with --values, for example --values 1,2,3", parameter.address);
   auto from = read_value(parameter, request.from);
   if (auto* error = std::get_if<std::string>(&from)) return *error;
   auto to = read_value(parameter, request.to);
   if (auto* error = std::get_if<std::string>(&to)) return *error;
   const double a = std::min(std::get<double>(from), std::get<double>(to));
   const double b = std::max(std::get<double>(from), std::get<double>(to));
-  if (!(b > a)) return fmt::format("the range of {} is empty: it begins and ends at {}", parameter.address, request.from);
+  if (!(b > a))
+    return fmt::format("the range of {} is empty: it begins and ends at {}", parameter.address, request.from);
   const int n = std::max(2, request.steps);
   for (int i = 0; i <= n; ++i) grid.push_back(i == n ? b : a + (b - a) * i / n);
   return vary_range(network, parameter, std::move(grid), progress);

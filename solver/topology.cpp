@@ -1,10 +1,11 @@
 // SPDX-License-Identifier: Apache-2.0
 #include "solver/topology.h"
 
+#include <fmt/format.h>
+
 #include <boost/graph/adjacency_list.hpp>
 #include <boost/graph/breadth_first_search.hpp>
 #include <boost/graph/connected_components.hpp>
-#include <fmt/format.h>
 
 #include "solver/study.h"
 
@@ -30,8 +31,8 @@ std::vector<bool> reached(const Network& network) {
   for (const Submain& submain : network.submains) boost::add_edge(at(submain.from), at(submain.to), graph);
   std::vector<boost::default_color_type> colours(n + 1, boost::white_color);
   boost::breadth_first_search(
-      graph, n, boost::color_map(boost::make_iterator_property_map(
-                    colours.begin(), boost::get(boost::vertex_index, graph))));
+      graph, n,
+      boost::color_map(boost::make_iterator_property_map(colours.begin(), boost::get(boost::vertex_index, graph))));
   std::vector<bool> result(n);
   for (std::size_t i = 0; i < n; ++i) result[i] = colours[i] != boost::white_color;
   return result;
@@ -45,11 +46,11 @@ void find_loops(const Network& network, std::vector<Trouble>& troubles) {
     const Submain& submain = network.submains[s];
     int& feeder = first[at(submain.to)];
     if (feeder >= 0) {
-      troubles.push_back({fmt::format("board '{}' is fed by submains '{}' and '{}': a loop between boards is "
-                                      "solved in a later edition",
-                                      network.boards[at(submain.to)].name, network.submains[at(feeder)].name,
-                                      submain.name),
-                          submain.at, "the first feed", network.submains[at(feeder)].at});
+      troubles.push_back(
+          {fmt::format("board '{}' is fed by submains '{}' and '{}': a loop between boards is "
+                       "solved in a later edition",
+                       network.boards[at(submain.to)].name, network.submains[at(feeder)].name, submain.name),
+           submain.at, "the first feed", network.submains[at(feeder)].at});
     } else {
       feeder = static_cast<int>(s);
     }
@@ -58,8 +59,7 @@ void find_loops(const Network& network, std::vector<Trouble>& troubles) {
   Undirected graph(network.boards.size());
   for (const Submain& submain : network.submains) boost::add_edge(at(submain.from), at(submain.to), graph);
   std::vector<int> component(network.boards.size());
-  const int n_components =
-      network.boards.empty() ? 0 : boost::connected_components(graph, component.data());
+  const int n_components = network.boards.empty() ? 0 : boost::connected_components(graph, component.data());
   // In a forest, boards - submains = components.
   if (static_cast<int>(network.boards.size()) - static_cast<int>(network.submains.size()) == n_components) return;
   for (const Submain& submain : network.submains) {
@@ -69,7 +69,9 @@ void find_loops(const Network& network, std::vector<Trouble>& troubles) {
         troubles.push_back({fmt::format("submain '{}' closes a loop of boards: a loop between boards is solved in "
                                         "a later edition",
                                         submain.name),
-                            submain.at, "", {}});
+                            submain.at,
+                            "",
+                            {}});
         return;
       }
       const int feeder = first[at(board)];
@@ -80,8 +82,7 @@ void find_loops(const Network& network, std::vector<Trouble>& troubles) {
 
 std::vector<int> feeders(const Network& network) {
   std::vector<int> result(network.boards.size(), -1);
-  for (std::size_t s = 0; s < network.submains.size(); ++s)
-    result[at(network.submains[s].to)] = static_cast<int>(s);
+  for (std::size_t s = 0; s < network.submains.size(); ++s) result[at(network.submains[s].to)] = static_cast<int>(s);
   return result;
 }
 
@@ -98,7 +99,9 @@ void find_parallel_sources(const Network& network, std::vector<Trouble>& trouble
                                         "parallel are solved in a later edition",
                                         state.name, network.sources[at(other)].name, source.name,
                                         network.boards[at(source.board)].name),
-                            state.at, "", {}});
+                            state.at,
+                            "",
+                            {}});
         return;
       }
       other = s;
@@ -108,11 +111,13 @@ void find_parallel_sources(const Network& network, std::vector<Trouble>& trouble
       for (int f = feeder[at(board)]; f >= 0; f = feeder[at(board)]) {
         board = network.submains[at(f)].from;
         if (source_on[at(board)] < 0) continue;
-        troubles.push_back({fmt::format("state '{}' has source '{}' feed a board that source '{}' feeds already: "
-                                        "sources in parallel are solved in a later edition",
-                                        state.name, network.sources[at(s)].name,
-                                        network.sources[at(source_on[at(board)])].name),
-                            state.at, "", {}});
+        troubles.push_back(
+            {fmt::format("state '{}' has source '{}' feed a board that source '{}' feeds already: "
+                         "sources in parallel are solved in a later edition",
+                         state.name, network.sources[at(s)].name, network.sources[at(source_on[at(board)])].name),
+             state.at,
+             "",
+             {}});
         return;
       }
     }
@@ -138,13 +143,15 @@ void find_dead_boards(const Network& network, std::vector<Trouble>& troubles) {
   const std::vector<bool> reach = reached(network);
   for (std::size_t b = 0; b < network.boards.size(); ++b)
     if (!reach[b])
-      troubles.push_back({fmt::format("nobody feeds board '{}'", network.boards[b].name), network.boards[b].at, "", {}});
+      troubles.push_back(
+          {fmt::format("nobody feeds board '{}'", network.boards[b].name), network.boards[b].at, "", {}});
   std::vector<bool> active(network.sources.size());
   for (const models::SupplyState& state : network.states)
     for (const int s : state.sources) active[at(s)] = true;
   for (std::size_t s = 0; s < network.sources.size(); ++s)
     if (!active[s])
-      troubles.push_back({fmt::format("source '{}' is in no state", network.sources[s].name), network.sources[s].at, "", {}});
+      troubles.push_back(
+          {fmt::format("source '{}' is in no state", network.sources[s].name), network.sources[s].at, "", {}});
 }
 
 // An electrode must be the only earth of the conductors it holds: two on one protective conductor,
@@ -157,23 +164,24 @@ void find_electrode_conflicts(const Network& network, std::vector<Trouble>& trou
       if (own < 0) continue;
       const models::Electrode& electrode = network.electrodes[at(own)];
       const int f = tree.feeder[at(b)];
-      const bool fed_by_source =
-          f < 0 || network.sources[at(tree.source_of[at(b)])].board == b;
+      const bool fed_by_source = f < 0 || network.sources[at(tree.source_of[at(b)])].board == b;
       const bool carried = !fed_by_source && network.submains[at(f)].conductors.has(Conductor::PE);
       const models::Earthing earthing = network.sources[at(tree.source_of[at(b)])].earthing;
       if (earthing == models::Earthing::TT) {
         const int above = carried ? tree.electrode[at(network.submains[at(f)].from)] : -1;
         if (above >= 0)
-          troubles.push_back({fmt::format("electrodes '{}' and '{}' hold one protective conductor (submain '{}' joins "
-                                          "them): several earths in parallel are solved in a later edition",
-                                          network.electrodes[at(above)].name, electrode.name,
-                                          network.submains[at(f)].name),
-                              electrode.at, "the other electrode", network.electrodes[at(above)].at});
+          troubles.push_back(
+              {fmt::format("electrodes '{}' and '{}' hold one protective conductor (submain '{}' joins "
+                           "them): several earths in parallel are solved in a later edition",
+                           network.electrodes[at(above)].name, electrode.name, network.submains[at(f)].name),
+               electrode.at, "the other electrode", network.electrodes[at(above)].at});
       } else if (!fed_by_source && !carried) {
         troubles.push_back({fmt::format("board '{}' is earthed by electrode '{}' alone below a {} supply: a TT part of "
                                         "a TN installation is solved in a later edition",
                                         network.boards[at(b)].name, electrode.name, models::word(earthing)),
-                            electrode.at, "", {}});
+                            electrode.at,
+                            "",
+                            {}});
       }
     }
     if (!troubles.empty()) return;
@@ -189,10 +197,12 @@ void find_missing_conductors(const Network& network, std::vector<Trouble>& troub
       if (have.contains(wanted)) return;
       ConductorSet offered = have;
       offered.remove(Conductor::PE);
-      troubles.push_back({fmt::format("{} takes {} but board '{}' has {} in state '{}'", what,
-                                      models::phases_text(wanted), network.boards[at(board)].name,
-                                      models::phases_text(offered), network.states[i].name),
-                          where, "", {}});
+      troubles.push_back(
+          {fmt::format("{} takes {} but board '{}' has {} in state '{}'", what, models::phases_text(wanted),
+                       network.boards[at(board)].name, models::phases_text(offered), network.states[i].name),
+           where,
+           "",
+           {}});
     };
     for (const models::Circuit& circuit : network.circuits)
       if (tree.live(circuit.board))

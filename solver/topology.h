@@ -13,11 +13,11 @@ namespace sunder::solver {
 /// The tree of one state. Indices are those of the network's tables; -1 means none.
 struct StateTree {
   int state = 0;
-  std::vector<int> source_of;       ///< of each board; -1: dead in this state
-  std::vector<int> feeder;          ///< submain that feeds each board; -1: a source or nothing does
-  std::vector<int> order;           ///< live boards, each after the one that feeds it
+  std::vector<int> source_of;                    ///< of each board; -1: dead in this state
+  std::vector<int> feeder;                       ///< submain that feeds each board; -1: a source or nothing does
+  std::vector<int> order;                        ///< live boards, each after the one that feeds it
   std::vector<models::ConductorSet> conductors;  ///< that reach each board
-  std::vector<int> electrode;       ///< that the board's protective conductor is earthed by (TT); -1: none
+  std::vector<int> electrode;                    ///< that the board's protective conductor is earthed by (TT); -1: none
 
   [[nodiscard]] bool live(int board) const { return source_of[static_cast<std::size_t>(board)] >= 0; }
 };

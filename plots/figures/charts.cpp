@@ -2,12 +2,12 @@
 // The coordination chart of a path.
 #include "plots/figures/charts.h"
 
+#include <fmt/format.h>
+
 #include <algorithm>
 #include <cmath>
 #include <iterator>
 #include <vector>
-
-#include <fmt/format.h>
 
 #include "plots/figures/drawing.h"
 #include "plots/figures/scales.h"
@@ -22,12 +22,12 @@ using solver::PathDevice;
 
 constexpr double kLeastTime = 1e-3;  // [s]
 constexpr double kMostTime = 1e4;
-constexpr double kAdiabaticTo = 5;   // [s] adiabatic heating is no longer true beyond
+constexpr double kAdiabaticTo = 5;        // [s] adiabatic heating is no longer true beyond
 constexpr double kDamageNameFrom = 0.05;  // [s] damage lines are named above it
-constexpr double kRow = 15;          // height of a line of small text, canvas units
+constexpr double kRow = 15;               // height of a line of small text, canvas units
 
-constexpr double kHatchCost = 14;    // a label may lie on hatching rather than on an edge
-constexpr double kMarkCost = 15;     // or on the thin line of a current
+constexpr double kHatchCost = 14;  // a label may lie on hatching rather than on an edge
+constexpr double kMarkCost = 15;   // or on the thin line of a current
 
 using Line = std::vector<CurvePoint>;
 
@@ -38,7 +38,7 @@ struct Shape {
   bool filled = false;
   bool damage = false;
   std::size_t look = 0;
-  double k2s2 = 0;       // of a damage line [A2s]
+  double k2s2 = 0;  // of a damage line [A2s]
 };
 
 double cut_of(const PathDevice& device, double most) {
@@ -76,23 +76,36 @@ std::vector<Shape> shapes_of(const PathChart& chart, const Axis& x, std::string&
     const double cut = cut_of(d, x.most);
     bool drawn = false;
     if (!d.device.overcurrent.empty()) {
-      Shape s{d.label, cut_curve(d.device.overcurrent.earliest, x.least, cut, kLeastTime, kMostTime),
-              cut_curve(d.device.overcurrent.latest, x.least, cut, kLeastTime, kMostTime), true, false, k, 0};
+      Shape s{d.label,
+              cut_curve(d.device.overcurrent.earliest, x.least, cut, kLeastTime, kMostTime),
+              cut_curve(d.device.overcurrent.latest, x.least, cut, kLeastTime, kMostTime),
+              true,
+              false,
+              k,
+              0};
       drawn = s.latest.size() > 1;
       if (drawn) shapes.push_back(std::move(s));
     }
     if (d.device.IdN > 0 && !d.device.residual.empty()) {
-      const std::string name = drawn ? d.address + " residual " + models::format_quantity(d.device.IdN, Quantity::current)
-                                     : d.label + " (residual)";
-      Shape s{name, cut_curve(d.device.residual.earliest, x.least, cut, kLeastTime, kMostTime),
-              cut_curve(d.device.residual.latest, x.least, cut, kLeastTime, kMostTime), false, false, k, 0};
+      const std::string name = drawn
+                                   ? d.address + " residual " + models::format_quantity(d.device.IdN, Quantity::current)
+                                   : d.label + " (residual)";
+      Shape s{name,
+              cut_curve(d.device.residual.earliest, x.least, cut, kLeastTime, kMostTime),
+              cut_curve(d.device.residual.latest, x.least, cut, kLeastTime, kMostTime),
+              false,
+              false,
+              k,
+              0};
       if (s.latest.size() > 1) {
         shapes.push_back(std::move(s));
         drawn = true;
       }
     }
-    if (drawn) ++k;
-    else without += (without.empty() ? "" : ", ") + d.label;
+    if (drawn)
+      ++k;
+    else
+      without += (without.empty() ? "" : ", ") + d.label;
   }
   for (const solver::DamageLine& line : chart.damage) {
     if (!(line.k2s2 > 0)) continue;
@@ -105,11 +118,13 @@ std::vector<Shape> shapes_of(const PathChart& chart, const Axis& x, std::string&
     });
     if (same != shapes.end()) {
       const std::size_t blank = line.label.find(' ');
-      const bool same_run = blank != std::string::npos && same->label.compare(0, blank + 1, line.label, 0, blank + 1) == 0;
+      const bool same_run =
+          blank != std::string::npos && same->label.compare(0, blank + 1, line.label, 0, blank + 1) == 0;
       same->label += ", " + (same_run ? line.label.substr(blank + 1) : line.label);
       continue;
     }
-    shapes.push_back({line.label, {}, {{from, line.k2s2 / (from * from)}, {to, line.k2s2 / (to * to)}}, false, true, 0, line.k2s2});
+    shapes.push_back(
+        {line.label, {}, {{from, line.k2s2 / (from * from)}, {to, line.k2s2 / (to * to)}}, false, true, 0, line.k2s2});
   }
   return shapes;
 }
@@ -130,7 +145,8 @@ std::vector<Spot> along(const std::vector<Spot>& line, double every) {
     double done = left;
     for (; done < length; done += every) {
       const double share = done / length;
-      spots.push_back({line[i - 1].x + share * (line[i].x - line[i - 1].x), line[i - 1].y + share * (line[i].y - line[i - 1].y)});
+      spots.push_back(
+          {line[i - 1].x + share * (line[i].x - line[i - 1].x), line[i - 1].y + share * (line[i].y - line[i - 1].y)});
     }
     left = done - length;
   }
@@ -161,7 +177,8 @@ void strokes(const std::vector<Spot>& left, const std::vector<Spot>& right, cons
 
 // Where edges of two shapes run together a name would be read as either's: such places are left out,
 // unless there is no other.
-void keep_apart(std::vector<Spot>& anchors, const std::vector<std::vector<std::vector<Spot>>>& edges, std::size_t self) {
+void keep_apart(std::vector<Spot>& anchors, const std::vector<std::vector<std::vector<Spot>>>& edges,
+                std::size_t self) {
   constexpr double kApart = 8;
   const auto shared = [&](const Spot& a) {
     const Rect around{a.x - kApart, a.y - kApart, 2 * kApart, 2 * kApart};
@@ -211,7 +228,8 @@ std::optional<std::string> draw_coordination(const PathChart& chart, const std::
   for (const solver::ChartCurrent& c : chart.currents) {
     if (std::isfinite(c.current) && c.current >= x.least && c.current <= x.most) currents.push_back(c);
   }
-  std::stable_sort(currents.begin(), currents.end(), [](const auto& a, const auto& b) { return a.current < b.current; });
+  std::stable_sort(currents.begin(), currents.end(),
+                   [](const auto& a, const auto& b) { return a.current < b.current; });
   // Equal currents share one line.
   for (std::size_t i = 1; i < currents.size();) {
     if (currents[i].current - currents[i - 1].current < 1e-3 * currents[i].current) {
@@ -248,23 +266,26 @@ std::optional<std::string> draw_coordination(const PathChart& chart, const std::
   script += "set tics front out nomirror scale 1,0.5\nset border 3 front lw 1.2 lc rgb '#000000'\n";
   script += "set grid xtics ytics mxtics mytics back lt 1 lw 0.9 lc rgb '#c4c4c4', lt 1 lw 0.5 lc rgb '#e6e6e6'\n";
 
-  script += label_at(chart.voltage.empty() ? "prospective current [A]" : "prospective current at " + chart.voltage + " [A]",
-                     area.x + area.w / 2, area.y - 44, "center", kFont);
+  script +=
+      label_at(chart.voltage.empty() ? "prospective current [A]" : "prospective current at " + chart.voltage + " [A]",
+               area.x + area.w / 2, area.y - 44, "center", kFont);
   script += fmt::format("set label 'time [s]' at screen {}, screen {} center rotate by 90 noenhanced font ',{}'\n",
                         number(24 / kSheetWidth), number((area.y + area.h / 2) / kSheetHeight), number(kFont));
-  script += label_at((chart.title.empty() ? std::string() : chart.title + ": ") + "coordination to " + chart.address, 28,
-                     kSheetHeight - 24, "left", 15, true);
+  script += label_at((chart.title.empty() ? std::string() : chart.title + ": ") + "coordination to " + chart.address,
+                     28, kSheetHeight - 24, "left", 15, true);
   script += label_at("State " + chart.state + ". Each curve ends at the greatest current through its device.", 28,
                      kSheetHeight - 45, "left", kSmallFont);
-  std::string foot = "Filled: between earliest and latest operation. Dotted, not filled: operation by residual current. "
-                     "Dash-dotted grey: conductor damage, t = k\u00b2S\u00b2/I\u00b2 up to 5 s.";
+  std::string foot =
+      "Filled: between earliest and latest operation. Dotted, not filled: operation by residual current. "
+      "Dash-dotted grey: conductor damage, t = k\u00b2S\u00b2/I\u00b2 up to 5 s.";
   script += label_at(foot, 28, 30, "left", kSmallFont);
   if (!without.empty()) script += label_at("Without a curve: " + without + ".", 28, 14, "left", kSmallFont);
 
   std::vector<Obstacle> lines;
   for (std::size_t i = 0; i < currents.size(); ++i) {
     const double level = top + 12 + kRow * levels[i];
-    script += line_between({places[i], area.y}, {places[i], level + kRow / 2 - 2}, "back lw 1.1 dt (2,3) lc rgb '#000000'");
+    script +=
+        line_between({places[i], area.y}, {places[i], level + kRow / 2 - 2}, "back lw 1.1 dt (2,3) lc rgb '#000000'");
     script += label_at(names[i], places[i] - 5, level, "right", kSmallFont);
     lines.push_back({{{places[i], area.y}, {places[i], top}}, kMarkCost});
   }
@@ -300,8 +321,8 @@ std::optional<std::string> draw_coordination(const PathChart& chart, const std::
     if (s.filled && s.earliest.size() > 1) {
       strokes(earliest, latest, area, lines);
       script += block("b" + id, s.earliest, s.latest);
-      add(fmt::format("$b{} using 1:2 with filledcurves closed fillstyle transparent pattern {} noborder lc rgb '{}'", id,
-                      style.pattern, style.colour));
+      add(fmt::format("$b{} using 1:2 with filledcurves closed fillstyle transparent pattern {} noborder lc rgb '{}'",
+                      id, style.pattern, style.colour));
     }
     if (s.earliest.size() > 1) {
       script += block("e" + id, s.earliest);

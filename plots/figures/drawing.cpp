@@ -1,6 +1,7 @@
 // SPDX-License-Identifier: Apache-2.0
 #include "plots/figures/drawing.h"
 
+#include <fmt/format.h>
 #include <sys/wait.h>
 #include <unistd.h>
 
@@ -11,8 +12,6 @@
 #include <filesystem>
 #include <fstream>
 #include <system_error>
-
-#include <fmt/format.h>
 
 // The library's header is not written for our warnings.
 #pragma GCC diagnostic push
@@ -59,8 +58,13 @@ const std::array<Form, 3>& forms() {
   // as 4/3 of that, the SVG as it stands.
   static const std::array<Form, 3> all = {{
       {".svg", "svg size 1120,792 font 'DejaVu Sans,12' background '#ffffff' noenhanced", "</svg>"},
-      {".png", "pngcairo size 1680,1188 font 'DejaVu Sans,12' fontscale 1.125 linewidth 1.5 background '#ffffff' noenhanced", "IEND"},
-      {".pdf", "pdfcairo size 11.69in,8.27in font 'DejaVu Sans,12' fontscale 0.5625 linewidth 1.2 background '#ffffff' noenhanced", "%%EOF"},
+      {".png",
+       "pngcairo size 1680,1188 font 'DejaVu Sans,12' fontscale 1.125 linewidth 1.5 background '#ffffff' noenhanced",
+       "IEND"},
+      {".pdf",
+       "pdfcairo size 11.69in,8.27in font 'DejaVu Sans,12' fontscale 0.5625 linewidth 1.2 background '#ffffff' "
+       "noenhanced",
+       "%%EOF"},
   }};
   return all;
 }
@@ -104,13 +108,13 @@ int run_gnuplot(const std::string& script) {
 
 const Look& look(std::size_t index) noexcept {
   static const std::array<Look, 7> looks = {{
-      {"#0072B2", "1", 4, 7},             // blue, solid, rising hatch
-      {"#D55E00", "(12,4)", 5, 5},        // vermilion, long dashes, falling hatch
-      {"#009E73", "(6,3)", 6, 9},         // bluish green, dashes, steep hatch
-      {"#CC79A7", "(12,3,3,3)", 7, 11},   // reddish purple, dash and dot
-      {"#000000", "1", 1, 4},             // black, cross hatch
-      {"#E69F00", "(8,3)", 2, 13},        // orange, fine cross hatch
-      {"#56B4E9", "(3,2)", 4, 6},         // sky blue, short dashes
+      {"#0072B2", "1", 4, 7},            // blue, solid, rising hatch
+      {"#D55E00", "(12,4)", 5, 5},       // vermilion, long dashes, falling hatch
+      {"#009E73", "(6,3)", 6, 9},        // bluish green, dashes, steep hatch
+      {"#CC79A7", "(12,3,3,3)", 7, 11},  // reddish purple, dash and dot
+      {"#000000", "1", 1, 4},            // black, cross hatch
+      {"#E69F00", "(8,3)", 2, 13},       // orange, fine cross hatch
+      {"#56B4E9", "(3,2)", 4, 6},        // sky blue, short dashes
   }};
   return looks[index % looks.size()];
 }
@@ -118,9 +122,12 @@ const Look& look(std::size_t index) noexcept {
 std::string gnuplot_text(std::string_view text) {
   std::string out = "'";
   for (const char c : text) {
-    if (c == '\'') out += "''";
-    else if (static_cast<unsigned char>(c) < 0x20 || c == 0x7F) out += ' ';
-    else out += c;
+    if (c == '\'')
+      out += "''";
+    else if (static_cast<unsigned char>(c) < 0x20 || c == 0x7F)
+      out += ' ';
+    else
+      out += c;
   }
   return out + "'";
 }
@@ -144,10 +151,11 @@ std::string label_at(std::string_view text, double x, double y, const char* just
 
 std::string label_in(std::string_view text, const Rect& rect, double font, bool bold) {
   // gnuplot's own text boxes write the text twice into an SVG.
-  return fmt::format("set object rectangle from screen {}, screen {} to screen {}, screen {} front fillstyle solid 1 noborder "
-                     "fillcolor rgb '#ffffff'\n",
-                     number(rect.x / kSheetWidth), number(rect.y / kSheetHeight), number((rect.x + rect.w) / kSheetWidth),
-                     number((rect.y + rect.h) / kSheetHeight)) +
+  return fmt::format(
+             "set object rectangle from screen {}, screen {} to screen {}, screen {} front fillstyle solid 1 noborder "
+             "fillcolor rgb '#ffffff'\n",
+             number(rect.x / kSheetWidth), number(rect.y / kSheetHeight), number((rect.x + rect.w) / kSheetWidth),
+             number((rect.y + rect.h) / kSheetHeight)) +
          label_at(text, rect.x + 2, rect.y + rect.h / 2, "left", font, bold);
 }
 
@@ -165,9 +173,10 @@ std::string leader_of(const PlacedLabel& label) {
 }
 
 std::string area_at(const Rect& area) {
-  return fmt::format("set lmargin at screen {}\nset rmargin at screen {}\nset bmargin at screen {}\nset tmargin at screen {}\n",
-                     number(area.x / kSheetWidth), number((area.x + area.w) / kSheetWidth),
-                     number(area.y / kSheetHeight), number((area.y + area.h) / kSheetHeight));
+  return fmt::format(
+      "set lmargin at screen {}\nset rmargin at screen {}\nset bmargin at screen {}\nset tmargin at screen {}\n",
+      number(area.x / kSheetWidth), number((area.x + area.w) / kSheetWidth), number(area.y / kSheetHeight),
+      number((area.y + area.h) / kSheetHeight));
 }
 
 std::optional<std::string> draw(const std::string& script, const std::string& path) {
@@ -184,7 +193,8 @@ std::optional<std::string> draw(const std::string& script, const std::string& pa
   PendingFile pending(path, ending);
   if (!pending.error().empty()) return pending.error();
 
-  std::string whole_script = fmt::format("set encoding utf8\nset terminal {}\nset output {}\n", form->terminal, gnuplot_text(pending.path()));
+  std::string whole_script =
+      fmt::format("set encoding utf8\nset terminal {}\nset output {}\n", form->terminal, gnuplot_text(pending.path()));
   whole_script += script;
   whole_script += "unset output\n";
   const int status = run_gnuplot(whole_script);

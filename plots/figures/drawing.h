@@ -21,9 +21,9 @@ inline constexpr double kSmallFont = 10.5;
 /// white. Dash and fill pattern change with the colour, so that grey prints tell them apart too.
 struct Look {
   const char* colour;
-  const char* dash;   ///< gnuplot dash type
-  int pattern;        ///< gnuplot fill pattern
-  int point;          ///< gnuplot point type
+  const char* dash;  ///< gnuplot dash type
+  int pattern;       ///< gnuplot fill pattern
+  int point;         ///< gnuplot point type
 };
 [[nodiscard]] const Look& look(std::size_t index) noexcept;
 

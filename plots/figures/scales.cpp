@@ -124,7 +124,8 @@ class Placer {
     const Rect wide = grown(rect, kClear);
     const auto hit = [&wide](const Rect& other) { return overlaps(wide, other); };
     return std::any_of(taken_.begin(), taken_.end(), hit) || std::any_of(placed_.begin(), placed_.end(), hit) ||
-           std::any_of(leaders_.begin(), leaders_.end(), [&wide](const std::vector<Spot>& line) { return crosses(line[0], line[1], wide); });
+           std::any_of(leaders_.begin(), leaders_.end(),
+                       [&wide](const std::vector<Spot>& line) { return crosses(line[0], line[1], wide); });
   }
   [[nodiscard]] bool over_a_label(Spot a, Spot b) const {
     return std::any_of(placed_.begin(), placed_.end(), [&](const Rect& rect) { return crosses(a, b, rect); });
@@ -156,14 +157,17 @@ bool crosses(Spot a, Spot b, const Rect& r) noexcept {
       continue;
     }
     const double t = q[i] / d[i];
-    if (d[i] < 0) t0 = std::max(t0, t);
-    else t1 = std::min(t1, t);
+    if (d[i] < 0)
+      t0 = std::max(t0, t);
+    else
+      t1 = std::min(t1, t);
   }
   return t0 <= t1;
 }
 
 double Axis::at(double value) const noexcept {
-  const double share = logarithmic ? std::log(value / least) / std::log(most / least) : (value - least) / (most - least);
+  const double share =
+      logarithmic ? std::log(value / least) / std::log(most / least) : (value - least) / (most - least);
   return from + share * (to - from);
 }
 
@@ -209,11 +213,16 @@ double text_width(std::string_view text, double font) noexcept {
   for (const char c : text) {
     const auto byte = static_cast<unsigned char>(c);
     if ((byte & 0xC0U) == 0x80U) continue;  // the rest of a code point
-    if (byte >= 0xE0U) em += 1.0;
-    else if (c == 'i' || c == 'l' || c == 'j' || c == '.' || c == ',' || c == ':' || c == '\'' || c == ' ') em += 0.34;
-    else if (c == 'm' || c == 'w' || c == 'M' || c == 'W' || c == '%') em += 0.98;
-    else if (c >= 'A' && c <= 'Z') em += 0.72;
-    else em += 0.63;
+    if (byte >= 0xE0U)
+      em += 1.0;
+    else if (c == 'i' || c == 'l' || c == 'j' || c == '.' || c == ',' || c == ':' || c == '\'' || c == ' ')
+      em += 0.34;
+    else if (c == 'm' || c == 'w' || c == 'M' || c == 'W' || c == '%')
+      em += 0.98;
+    else if (c >= 'A' && c <= 'Z')
+      em += 0.72;
+    else
+      em += 0.63;
   }
   return 0.94 * em * font;
 }

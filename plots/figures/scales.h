@@ -28,8 +28,8 @@ struct Spot {
 
 /// One axis: maps values to canvas units.
 struct Axis {
-  double least = 1, most = 10;   ///< values at the ends
-  double from = 0, to = 1;       ///< canvas units at the ends
+  double least = 1, most = 10;  ///< values at the ends
+  double from = 0, to = 1;      ///< canvas units at the ends
   bool logarithmic = true;
   [[nodiscard]] double at(double value) const noexcept;
   [[nodiscard]] double inverse(double canvas) const noexcept;
@@ -60,8 +60,8 @@ struct Tick {
 
 /// A label looking for a place.
 struct LabelWish {
-  double w = 0, h = 0;            ///< size
-  std::vector<Spot> anchors;      ///< places it belongs to, the best first (points on its curve)
+  double w = 0, h = 0;        ///< size
+  std::vector<Spot> anchors;  ///< places it belongs to, the best first (points on its curve)
 };
 
 /// What a label should rather not lie on.
@@ -72,13 +72,14 @@ struct Obstacle {
 
 struct PlacedLabel {
   Rect rect;
-  Spot anchor;         ///< the point it belongs to
-  bool leader = false; ///< far enough away to want a line to its anchor
+  Spot anchor;          ///< the point it belongs to
+  bool leader = false;  ///< far enough away to want a line to its anchor
 };
 
 /// Places labels one after the other inside `frame`: beside an anchor where it overlaps no `taken` rectangle
 /// and no label before it, covering as little of the obstacles as can be had, distance counted against it; if
-/// no anchor has a clear place, a grid over the frame is searched too. Where the frame is full it takes a place below it.
+/// no anchor has a clear place, a grid over the frame is searched too. Where the frame is full it takes a place below
+/// it.
 [[nodiscard]] std::vector<PlacedLabel> place_labels(const std::vector<LabelWish>& wishes, const Rect& frame,
                                                     const std::vector<Rect>& taken,
                                                     const std::vector<Obstacle>& obstacles);

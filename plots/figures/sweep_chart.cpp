@@ -1,11 +1,11 @@
 // SPDX-License-Identifier: Apache-2.0
 // The chart of a sweep: margins against the parameter.
+#include <fmt/format.h>
+
 #include <algorithm>
 #include <cmath>
 #include <utility>
 #include <vector>
-
-#include <fmt/format.h>
 
 #include "plots/figures/charts.h"
 #include "plots/figures/drawing.h"
@@ -44,8 +44,10 @@ Track track_of(const Sweep& sweep, const std::string& check, const std::string& 
     double margin = solver::kNone;
     for (const Finding& f : sweep.points[i].findings) {
       if (f.check != check || f.subject != subject || f.verdict == solver::Verdict::undecided) continue;
-      if (std::isfinite(f.margin)) margin = std::isnan(margin) ? f.margin : std::min(margin, f.margin);
-      else if (std::isinf(f.margin)) margin = f.margin > 0 ? kMostPercent / 100 : kLeastPercent / 100;
+      if (std::isfinite(f.margin))
+        margin = std::isnan(margin) ? f.margin : std::min(margin, f.margin);
+      else if (std::isinf(f.margin))
+        margin = f.margin > 0 ? kMostPercent / 100 : kLeastPercent / 100;
     }
     track.points.emplace_back(at, std::isnan(margin) ? margin : std::clamp(100 * margin, kLeastPercent, kMostPercent));
   }
@@ -81,7 +83,8 @@ std::vector<Track> tracks_of(const Sweep& sweep, std::size_t& left_out) {
       if (std::isfinite(f.margin) && f.verdict != solver::Verdict::noted) all.push_back(&f);
     }
     std::stable_sort(all.begin(), all.end(), [](const Finding* a, const Finding* b) { return a->margin < b->margin; });
-    for (std::size_t i = 0; i < std::min<std::size_t>(4, all.size()); ++i) wanted.emplace_back(all[i]->check, all[i]->subject);
+    for (std::size_t i = 0; i < std::min<std::size_t>(4, all.size()); ++i)
+      wanted.emplace_back(all[i]->check, all[i]->subject);
   }
   std::vector<Track> tracks;
   left_out = 0;
@@ -92,9 +95,12 @@ std::vector<Track> tracks_of(const Sweep& sweep, std::size_t& left_out) {
     }
     Track track = track_of(sweep, wanted[i].first, wanted[i].second);
     const auto same = std::find_if(tracks.begin(), tracks.end(), [&](const Track& t) { return same_curve(t, track); });
-    if (same != tracks.end()) same->subjects.push_back(wanted[i].second);
-    else if (tracks.size() < kMostLines) tracks.push_back(std::move(track));
-    else ++left_out;
+    if (same != tracks.end())
+      same->subjects.push_back(wanted[i].second);
+    else if (tracks.size() < kMostLines)
+      tracks.push_back(std::move(track));
+    else
+      ++left_out;
   }
   return tracks;
 }
@@ -113,8 +119,10 @@ std::vector<Mark> marks_of(const Sweep& sweep) {
     const auto same = std::find_if(marks.begin(), marks.end(), [&](const Mark& m) {
       return near(m.at, flip.at) && m.check == flip.check && m.before == flip.before && m.after == flip.after;
     });
-    if (same != marks.end()) same->subjects.push_back(flip.subject);
-    else marks.push_back({flip.at, flip.check, flip.before, flip.after, {flip.subject}});
+    if (same != marks.end())
+      same->subjects.push_back(flip.subject);
+    else
+      marks.push_back({flip.at, flip.check, flip.before, flip.after, {flip.subject}});
   }
   std::stable_sort(marks.begin(), marks.end(), [](const Mark& a, const Mark& b) { return a.at < b.at; });
   return marks;
@@ -132,8 +140,10 @@ std::vector<Shade> shades_of(const Sweep& sweep) {
     const auto same = std::find_if(shades.begin(), shades.end(), [&](const Shade& other) {
       return near(other.from, s.from) && near(other.to, s.to) && other.check == s.check;
     });
-    if (same != shades.end()) same->subjects.push_back(s.subject);
-    else shades.push_back({s.from, s.to, s.check, {s.subject}});
+    if (same != shades.end())
+      same->subjects.push_back(s.subject);
+    else
+      shades.push_back({s.from, s.to, s.check, {s.subject}});
   }
   return shades;
 }
@@ -192,6 +202,7 @@ std::optional<std::string> draw_sweep(const Sweep& sweep, const std::string& pat
   x.from = area.x;
   x.to = area.x + area.w;
   std::vector<double> places;
+  places.reserve(marks.size());
   for (const Mark& mark : marks) places.push_back(x.at(place_of(sweep, mark.at)));
   // Names hang to the right here: most flips lie left of the middle, and there is room beside the plot.
   std::vector<double> mirrored;
@@ -208,8 +219,8 @@ std::optional<std::string> draw_sweep(const Sweep& sweep, const std::string& pat
   const Axis y{low, high, area.y, top, false};
 
   std::string script = area_at(area);
-  script += fmt::format("set xrange [{}:{}]\nset yrange [{}:{}]\nunset key\n", number(x.least), number(x.most), number(low),
-                        number(high));
+  script += fmt::format("set xrange [{}:{}]\nset yrange [{}:{}]\nunset key\n", number(x.least), number(x.most),
+                        number(low), number(high));
   std::string ticks;
   if (sweep.catalogue) {
     for (std::size_t i = 0; i < sweep.points.size(); ++i) {
@@ -217,14 +228,16 @@ std::optional<std::string> draw_sweep(const Sweep& sweep, const std::string& pat
     }
   } else {
     for (const double value : linear_ticks(x.least, x.most, 10)) {
-      ticks += fmt::format("{}{} {}", ticks.empty() ? "" : ", ", tick_text(models::format_quantity(value, sweep.unit)), number(value));
+      ticks += fmt::format("{}{} {}", ticks.empty() ? "" : ", ", tick_text(models::format_quantity(value, sweep.unit)),
+                           number(value));
     }
   }
   const bool crowded = sweep.catalogue && sweep.points.size() > 6;
   script += fmt::format("set xtics noenhanced{} ({})\n", crowded ? " rotate by 20 right" : "", ticks);
   std::string percent;
   for (const double value : linear_ticks(low, high, 8)) {
-    percent += fmt::format("{}{} {}", percent.empty() ? "" : ", ", tick_text(value == 0 ? "0 %" : fmt::format("{:+.0f} %", value)), number(value));
+    percent += fmt::format("{}{} {}", percent.empty() ? "" : ", ",
+                           tick_text(value == 0 ? "0 %" : fmt::format("{:+.0f} %", value)), number(value));
   }
   script += "set ytics noenhanced (" + percent + ")\n";
   script += "set tics front out nomirror scale 1,0.5\nset border 3 front lw 1.2 lc rgb '#000000'\n";
@@ -241,15 +254,18 @@ std::optional<std::string> draw_sweep(const Sweep& sweep, const std::string& pat
   for (const Shade& s : shades_of(sweep)) {
     const double from = std::clamp(place_of(sweep, s.from), x.least, x.most);
     const double to = std::clamp(sweep.catalogue ? s.to + 0.5 : s.to, x.least, x.most);
-    script += fmt::format("set object rectangle from first {}, graph 0 to first {}, graph 1 behind fillstyle solid 1 noborder fillcolor rgb '#e4e4e4'\n",
-                          number(from), number(to));
+    script += fmt::format(
+        "set object rectangle from first {}, graph 0 to first {}, graph 1 behind fillstyle solid 1 noborder fillcolor "
+        "rgb '#e4e4e4'\n",
+        number(from), number(to));
     std::vector<Spot> anchors;
     for (double height = area.y + 14; height < top; height += 20) anchors.push_back({x.at((from + to) / 2), height});
     wish("undecided: " + named(s.check, s.subjects), std::move(anchors));
   }
   for (std::size_t i = 0; i < marks.size(); ++i) {
     const double level = top + 10 + kRow * levels[i];
-    script += line_between({places[i], area.y}, {places[i], level + kRow / 2 - 2}, "back lw 1.1 dt (2,3) lc rgb '#000000'");
+    script +=
+        line_between({places[i], area.y}, {places[i], level + kRow / 2 - 2}, "back lw 1.1 dt (2,3) lc rgb '#000000'");
     script += label_at(names[i], places[i] + 5, level, "left", kSmallFont);
     lines.push_back({{{places[i], area.y}, {places[i], top}}});
   }
@@ -272,8 +288,8 @@ std::optional<std::string> draw_sweep(const Sweep& sweep, const std::string& pat
     std::vector<Spot> anchors(spots.rbegin(), spots.rend());
     lines.push_back({spots});
     wish(named(tracks[i].check, tracks[i].subjects), std::move(anchors));
-    plot += fmt::format("{}$t{} using 1:2 with linespoints lw 2 dt {} pt {} ps 0.6 lc rgb '{}'", plot == "plot " ? "" : ", \\\n  ",
-                        i, style.dash, style.point, style.colour);
+    plot += fmt::format("{}$t{} using 1:2 with linespoints lw 2 dt {} pt {} ps 0.6 lc rgb '{}'",
+                        plot == "plot " ? "" : ", \\\n  ", i, style.dash, style.point, style.colour);
   }
   if (plot == "plot ") plot += "0 notitle with lines lw 2 lc rgb '#000000'";
 
@@ -284,12 +300,16 @@ std::optional<std::string> draw_sweep(const Sweep& sweep, const std::string& pat
     script += label_in(texts[i], placed[i].rect, kSmallFont, false);
   }
   script += label_at(sweep.key, area.x + area.w / 2, area.y - (crowded ? 66 : 44), "center", kFont);
-  script += fmt::format("set label 'margin to the limit' at screen {}, screen {} center rotate by 90 noenhanced font ',{}'\n",
-                        number(24 / kSheetWidth), number((area.y + area.h / 2) / kSheetHeight), number(kFont));
+  script +=
+      fmt::format("set label 'margin to the limit' at screen {}, screen {} center rotate by 90 noenhanced font ',{}'\n",
+                  number(24 / kSheetWidth), number((area.y + area.h / 2) / kSheetHeight), number(kFont));
   script += label_at("Margins against " + sweep.key, 28, kSheetHeight - 24, "left", 15, true);
-  if (left_out > 0) script += label_at(fmt::format("{} more curves are left out; the report lists them all.", left_out), 28, 14, "left", kSmallFont);
-  script += label_at(sweep.flips.empty() ? "No verdict flips in this range. Below the zero line a check is not met."
-                                         : "Below the zero line a check is not met. Dotted: where a verdict flips. Grey: undecided.",
+  if (left_out > 0)
+    script += label_at(fmt::format("{} more curves are left out; the report lists them all.", left_out), 28, 14, "left",
+                       kSmallFont);
+  script += label_at(sweep.flips.empty()
+                         ? "No verdict flips in this range. Below the zero line a check is not met."
+                         : "Below the zero line a check is not met. Dotted: where a verdict flips. Grey: undecided.",
                      28, kSheetHeight - 45, "left", kSmallFont);
   return draw(script + plot + '\n', path);
 }

@@ -18,8 +18,10 @@ std::string reason_of(const Finding& finding) {
     if (std::isfinite(number)) return;
     if (!text.empty()) text += "; ";
     text += name;
-    if (std::isnan(number)) text += " does not exist";
-    else text += time ? " is unlimited: never" : " is unbounded";
+    if (std::isnan(number))
+      text += " does not exist";
+    else
+      text += time ? " is unlimited: never" : " is unbounded";
   };
   add("value", finding.value, finding.unit == models::Quantity::time);
   add("limit", finding.limit, finding.unit == models::Quantity::time);
@@ -66,7 +68,8 @@ const std::vector<Field<solver::Step>>& step_fields() {
        [](const Network&, const Row& r) { return Value(r.numbers); }},
       {"result", "result", "", "in `unit`; null where there is no single number",
        [](const Network&, const Row& r) { return Value(r.result); }},
-      {"unit", "unit", "", "unit of result", [](const Network&, const Row& r) { return Value(models::si_symbol(r.unit)); }},
+      {"unit", "unit", "", "unit of result",
+       [](const Network&, const Row& r) { return Value(models::si_symbol(r.unit)); }},
       {"at", "at", "", "file:line:column of the input that matters most, empty if none",
        [](const Network& n, const Row& r) { return Value(place_text(n, r.at)); }},
   };
@@ -80,7 +83,8 @@ const std::vector<Field<solver::Remedy>>& remedy_fields() {
       {"key", "key", "", "address of the value to change", [](const Network&, const Row& r) { return Value(r.key); }},
       {"value", "value", "", "new value in `unit`; null where it is not a number",
        [](const Network&, const Row& r) { return Value(r.value); }},
-      {"unit", "unit", "", "unit of value", [](const Network&, const Row& r) { return Value(models::si_symbol(r.unit)); }},
+      {"unit", "unit", "", "unit of value",
+       [](const Network&, const Row& r) { return Value(models::si_symbol(r.unit)); }},
       {"holds", "holds", "", "true: every check was repeated with it and is met",
        [](const Network&, const Row& r) { return Value(r.holds); }},
       {"note", "note", "", "what would still not be met", [](const Network&, const Row& r) { return Value(r.note); }},
@@ -92,24 +96,29 @@ const std::vector<Field<Finding>>& finding_fields() {
   using Row = Finding;
   static const std::vector<Field<Row>> fields = {
       {"check", "check", "", "name of the check", [](const Network&, const Row& r) { return Value(r.check); }},
-      {"subject", "subject", "", "address of what is checked", [](const Network&, const Row& r) { return Value(r.subject); }},
+      {"subject", "subject", "", "address of what is checked",
+       [](const Network&, const Row& r) { return Value(r.subject); }},
       {"verdict", "verdict", "", "meets, fails, undecided or noted",
        [](const Network&, const Row& r) { return Value(word(r.verdict)); }},
       {"value", "value", "", "what was found, in `unit`; null: see reason",
        [](const Network&, const Row& r) { return Value(r.value); }},
       {"limit", "limit", "", "what the rules ask, in `unit`; null: see reason",
        [](const Network&, const Row& r) { return Value(r.limit); }},
-      {"unit", "unit", "", "unit of value and limit", [](const Network&, const Row& r) { return Value(models::si_symbol(r.unit)); }},
+      {"unit", "unit", "", "unit of value and limit",
+       [](const Network&, const Row& r) { return Value(models::si_symbol(r.unit)); }},
       {"margin", "margin", "", "signed, as a share of the limit; below 0: not met; null: no number",
        [](const Network&, const Row& r) { return Value(r.margin); }},
       {"state", "state", "", "governing supply state", [](const Network&, const Row& r) { return Value(r.state); }},
       {"condition", "condition", "", "governing condition, empty if none",
        [](const Network&, const Row& r) { return Value(r.condition); }},
-      {"fault", "fault", "", "governing fault, empty if none", [](const Network&, const Row& r) { return Value(r.fault); }},
+      {"fault", "fault", "", "governing fault, empty if none",
+       [](const Network&, const Row& r) { return Value(r.fault); }},
       {"clause", "clause", "", "clause of the rule set", [](const Network&, const Row& r) { return Value(r.clause); }},
-      {"confidence", "confidence", "", "worst support of the data used: declared, found, derived, checked, memory or low",
+      {"confidence", "confidence", "",
+       "worst support of the data used: declared, found, derived, checked, memory or low",
        [](const Network&, const Row& r) { return Value(models::word(r.confidence)); }},
-      {"summary", "summary", "", "the working in one sentence", [](const Network&, const Row& r) { return Value(r.summary); }},
+      {"summary", "summary", "", "the working in one sentence",
+       [](const Network&, const Row& r) { return Value(r.summary); }},
       {"reason", "reason", "", "why value or limit is null, or why undecided",
        [](const Network&, const Row& r) { return Value(reason_of(r)); }},
       {"at", "at", "", "file:line:column of the subject",
@@ -139,7 +148,8 @@ const std::vector<Field<Finding>>& pair_fields() {
        [](const Network&, const Row& r) { return Value(r.limit_A); }},
       {"available_A", "available current", "A", "greatest current behind the downstream device (pairs only)",
        [](const Network&, const Row& r) { return Value(r.available_A); }},
-      {"basis", "basis", "", "on what it rests (pairs only)", [](const Network&, const Row& r) { return Value(r.basis); }},
+      {"basis", "basis", "", "on what it rests (pairs only)",
+       [](const Network&, const Row& r) { return Value(r.basis); }},
   };
   return fields;
 }
@@ -149,7 +159,8 @@ const std::vector<Field<Finding>>& pair_fields() {
 const std::vector<Field<solver::ScheduleRow>>& schedule_fields() {
   using Row = solver::ScheduleRow;
   static const std::vector<Field<Row>> fields = {
-      {"address", "address", "", "submain, or board/circuit", [](const Network&, const Row& r) { return Value(r.address); }},
+      {"address", "address", "", "submain, or board/circuit",
+       [](const Network&, const Row& r) { return Value(r.address); }},
       {"kind", "kind", "", "circuit or submain",
        [](const Network&, const Row& r) { return Value(r.submain ? "submain" : "circuit"); }},
       {"serves", "serves", "", "as declared", [](const Network&, const Row& r) { return Value(r.serves); }},
@@ -157,10 +168,13 @@ const std::vector<Field<solver::ScheduleRow>>& schedule_fields() {
       {"device", "device", "", "protective device", [](const Network&, const Row& r) { return Value(r.device); }},
       {"cable", "cable", "", "construction and size", [](const Network&, const Row& r) { return Value(r.cable); }},
       {"cpc", "cpc", "", "protective conductor", [](const Network&, const Row& r) { return Value(r.cpc); }},
-      {"length_m", "length", "m", "length (ring: whole loop)", [](const Network&, const Row& r) { return Value(r.length); }},
-      {"Ib_A", "Ib", "A", "design current; null: not declared", [](const Network&, const Row& r) { return Value(r.Ib); }},
+      {"length_m", "length", "m", "length (ring: whole loop)",
+       [](const Network&, const Row& r) { return Value(r.length); }},
+      {"Ib_A", "Ib", "A", "design current; null: not declared",
+       [](const Network&, const Row& r) { return Value(r.Ib); }},
       {"In_A", "In", "A", "rated current of the device", [](const Network&, const Row& r) { return Value(r.In); }},
-      {"Iz_A", "Iz", "A", "current-carrying capacity; null: not declared", [](const Network&, const Row& r) { return Value(r.Iz); }},
+      {"Iz_A", "Iz", "A", "current-carrying capacity; null: not declared",
+       [](const Network&, const Row& r) { return Value(r.Iz); }},
       {"drop_percent", "voltage drop", "%", "from the supply terminals; null: not known",
        [](const Network&, const Row& r) { return Value(100 * r.drop); }},
       {"Zs_ohm", "Zs", "ohm", "earth-fault loop impedance in the minimum condition",
@@ -171,7 +185,8 @@ const std::vector<Field<solver::ScheduleRow>>& schedule_fields() {
        [](const Network&, const Row& r) { return Value(r.greatest); }},
       {"time_s", "time", "s", "latest disconnection; null: never or not known",
        [](const Network&, const Row& r) { return Value(r.time); }},
-      {"limit_s", "limit", "s", "longest disconnection time allowed", [](const Network&, const Row& r) { return Value(r.limit); }},
+      {"limit_s", "limit", "s", "longest disconnection time allowed",
+       [](const Network&, const Row& r) { return Value(r.limit); }},
       {"verdict", "verdict", "", "worst verdict of all checks of this row",
        [](const Network&, const Row& r) { return Value(word(r.verdict)); }},
   };
@@ -183,9 +198,11 @@ const std::vector<Field<solver::Flip>>& flip_fields() {
   static const std::vector<Field<Row>> fields = {
       {"check", "check", "", "name of the check", [](const Network&, const Row& r) { return Value(r.check); }},
       {"subject", "subject", "", "address", [](const Network&, const Row& r) { return Value(r.subject); }},
-      {"before", "before", "", "verdict below `at`", [](const Network&, const Row& r) { return Value(word(r.before)); }},
+      {"before", "before", "", "verdict below `at`",
+       [](const Network&, const Row& r) { return Value(word(r.before)); }},
       {"after", "after", "", "verdict above `at`", [](const Network&, const Row& r) { return Value(word(r.after)); }},
-      {"at", "at", "", "parameter value in the parameter's unit (catalogue: index, from 0, of the first value after it)",
+      {"at", "at", "",
+       "parameter value in the parameter's unit (catalogue: index, from 0, of the first value after it)",
        [](const Network&, const Row& r) { return Value(r.at); }},
       {"state", "state", "", "governing supply state", [](const Network&, const Row& r) { return Value(r.state); }},
   };
@@ -197,7 +214,8 @@ const std::vector<Field<solver::Stretch>>& stretch_fields() {
   static const std::vector<Field<Row>> fields = {
       {"check", "check", "", "name of the check", [](const Network&, const Row& r) { return Value(r.check); }},
       {"subject", "subject", "", "address", [](const Network&, const Row& r) { return Value(r.subject); }},
-      {"from", "from", "", "undecided from this parameter value", [](const Network&, const Row& r) { return Value(r.from); }},
+      {"from", "from", "", "undecided from this parameter value",
+       [](const Network&, const Row& r) { return Value(r.from); }},
       {"to", "to", "", "to this one", [](const Network&, const Row& r) { return Value(r.to); }},
       {"needs", "needs", "", "what would decide it", [](const Network&, const Row& r) { return Value(r.needs); }},
   };
@@ -207,7 +225,8 @@ const std::vector<Field<solver::Stretch>>& stretch_fields() {
 const std::vector<Field<solver::SweepPoint>>& sweep_point_fields() {
   using Row = solver::SweepPoint;
   static const std::vector<Field<Row>> fields = {
-      {"value", "value", "", "parameter value in the parameter's unit", [](const Network&, const Row& r) { return Value(r.value); }},
+      {"value", "value", "", "parameter value in the parameter's unit",
+       [](const Network&, const Row& r) { return Value(r.value); }},
       {"text", "text", "", "catalogue: the value as text", [](const Network&, const Row& r) { return Value(r.text); }},
       {"findings", "findings", "", "governing findings there, as in sunder.check/1, without steps",
        [](const Network& n, const Row& r) { return Value(records_of(n, finding_fields(), r.findings)); }},
@@ -220,7 +239,8 @@ const std::vector<Field<models::Assumption>>& assumption_fields() {
   static const std::vector<Field<Row>> fields = {
       {"subject", "subject", "", "address", [](const Network&, const Row& r) { return Value(r.subject); }},
       {"sentence", "sentence", "", "what was taken", [](const Network&, const Row& r) { return Value(r.sentence); }},
-      {"at", "at", "", "file:line:column, empty if none", [](const Network& n, const Row& r) { return Value(place_text(n, r.at)); }},
+      {"at", "at", "", "file:line:column, empty if none",
+       [](const Network& n, const Row& r) { return Value(place_text(n, r.at)); }},
   };
   return fields;
 }
@@ -241,10 +261,12 @@ std::vector<Record> curve_records(const models::Curve& curve) {
 const std::vector<Field<solver::PathDevice>>& path_device_fields() {
   using Row = solver::PathDevice;
   static const std::vector<Field<Row>> fields = {
-      {"address", "address", "", "element that carries the device", [](const Network&, const Row& r) { return Value(r.address); }},
+      {"address", "address", "", "element that carries the device",
+       [](const Network&, const Row& r) { return Value(r.address); }},
       {"label", "label", "", "as written on the chart", [](const Network&, const Row& r) { return Value(r.label); }},
       {"device", "device", "", "device text", [](const Network&, const Row& r) { return Value(r.device.text); }},
-      {"least_A", "least current", "A", "least current it must clear", [](const Network&, const Row& r) { return Value(r.least); }},
+      {"least_A", "least current", "A", "least current it must clear",
+       [](const Network&, const Row& r) { return Value(r.least); }},
       {"greatest_A", "greatest current", "A", "greatest current through it; its curves end there",
        [](const Network&, const Row& r) { return Value(r.greatest); }},
       {"earliest", "earliest", "", "points current_A, time_s of the earliest operating time",
@@ -255,8 +277,10 @@ const std::vector<Field<solver::PathDevice>>& path_device_fields() {
        [](const Network&, const Row& r) { return Value(curve_records(r.device.residual.earliest)); }},
       {"residual_latest", "residual latest", "", "the same against the residual current",
        [](const Network&, const Row& r) { return Value(curve_records(r.device.residual.latest)); }},
-      {"source", "source", "", "where the curves come from", [](const Network&, const Row& r) { return Value(r.device.source); }},
-      {"confidence", "confidence", "", "support of the curves", [](const Network&, const Row& r) { return Value(models::word(r.device.confidence)); }},
+      {"source", "source", "", "where the curves come from",
+       [](const Network&, const Row& r) { return Value(r.device.source); }},
+      {"confidence", "confidence", "", "support of the curves",
+       [](const Network&, const Row& r) { return Value(models::word(r.device.confidence)); }},
   };
   return fields;
 }
@@ -265,7 +289,8 @@ const std::vector<Field<solver::DamageLine>>& damage_fields() {
   using Row = solver::DamageLine;
   static const std::vector<Field<Row>> fields = {
       {"label", "label", "", "conductor", [](const Network&, const Row& r) { return Value(r.label); }},
-      {"k2s2_A2s", "k2S2", "A2s", "adiabatic withstand, t = k2S2 / I2 up to 5 s", [](const Network&, const Row& r) { return Value(r.k2s2); }},
+      {"k2s2_A2s", "k2S2", "A2s", "adiabatic withstand, t = k2S2 / I2 up to 5 s",
+       [](const Network&, const Row& r) { return Value(r.k2s2); }},
   };
   return fields;
 }
@@ -328,8 +353,10 @@ std::string csv_of(const Network& network, const std::vector<Field<Row>>& fields
       if (&field != &fields.front()) text += ',';
       const Value value = field.get(network, row);
       if (const double* number = std::get_if<double>(&value.data)) {
-        if (std::isinf(*number)) text += field.unit == "s" ? "never" : "unbounded";
-        else if (!std::isnan(*number)) text += models::format_number(*number, 6);
+        if (std::isinf(*number))
+          text += field.unit == "s" ? "never" : "unbounded";
+        else if (!std::isnan(*number))
+          text += models::format_number(*number, 6);
       } else if (const std::string* words = std::get_if<std::string>(&value.data)) {
         text += csv_cell(*words);
       }
@@ -351,8 +378,10 @@ template Record record_of(const Network&, const std::vector<Field<solver::PathDe
 template Record record_of(const Network&, const std::vector<Field<solver::DamageLine>>&, const solver::DamageLine&);
 template Record record_of(const Network&, const std::vector<Field<solver::ChartCurrent>>&, const solver::ChartCurrent&);
 template Record record_of(const Network&, const std::vector<Field<models::Assumption>>&, const models::Assumption&);
-template std::string csv_of(const Network&, const std::vector<Field<solver::ScheduleRow>>&, const std::vector<solver::ScheduleRow>&);
-template std::string csv_of(const Network&, const std::vector<Field<solver::FaultRow>>&, const std::vector<solver::FaultRow>&);
+template std::string csv_of(const Network&, const std::vector<Field<solver::ScheduleRow>>&,
+                            const std::vector<solver::ScheduleRow>&);
+template std::string csv_of(const Network&, const std::vector<Field<solver::FaultRow>>&,
+                            const std::vector<solver::FaultRow>&);
 
 namespace {
 

@@ -20,19 +20,19 @@ using Record = std::vector<std::pair<std::string, Value>>;
 
 /// What a field holds: nothing (null), a flag, a number (not finite: null), text, texts, records.
 struct Value {
-  std::variant<std::monostate, bool, double, std::string, std::vector<std::string>,
-               std::vector<double>, std::vector<Record>>
+  std::variant<std::monostate, bool, double, std::string, std::vector<std::string>, std::vector<double>,
+               std::vector<Record>>
       data;
 
   Value() = default;
-  Value(bool flag) : data(flag) {}                                     // NOLINT(*-explicit-*)
-  Value(double number) : data(number) {}                               // NOLINT(*-explicit-*)
-  Value(std::string text) : data(std::move(text)) {}                   // NOLINT(*-explicit-*)
-  Value(std::string_view text) : data(std::string(text)) {}            // NOLINT(*-explicit-*)
-  Value(const char* text) : data(std::string(text)) {}                 // NOLINT(*-explicit-*)
-  Value(std::vector<std::string> texts) : data(std::move(texts)) {}    // NOLINT(*-explicit-*)
-  Value(std::vector<double> numbers) : data(std::move(numbers)) {}     // NOLINT(*-explicit-*)
-  Value(std::vector<Record> records) : data(std::move(records)) {}     // NOLINT(*-explicit-*)
+  Value(bool flag) : data(flag) {}                                   // NOLINT(*-explicit-*)
+  Value(double number) : data(number) {}                             // NOLINT(*-explicit-*)
+  Value(std::string text) : data(std::move(text)) {}                 // NOLINT(*-explicit-*)
+  Value(std::string_view text) : data(std::string(text)) {}          // NOLINT(*-explicit-*)
+  Value(const char* text) : data(std::string(text)) {}               // NOLINT(*-explicit-*)
+  Value(std::vector<std::string> texts) : data(std::move(texts)) {}  // NOLINT(*-explicit-*)
+  Value(std::vector<double> numbers) : data(std::move(numbers)) {}   // NOLINT(*-explicit-*)
+  Value(std::vector<Record> records) : data(std::move(records)) {}   // NOLINT(*-explicit-*)
 };
 
 /// One field of a result struct.
@@ -62,12 +62,10 @@ struct Field {
 /// The row as a record. A number that is unbounded (infinite) becomes null and is named in `reason`,
 /// which is added where the row has no such field of its own.
 template <class Row>
-[[nodiscard]] Record record_of(const models::Network& network, const std::vector<Field<Row>>& fields,
-                               const Row& row);
+[[nodiscard]] Record record_of(const models::Network& network, const std::vector<Field<Row>>& fields, const Row& row);
 
 template <class Row>
-[[nodiscard]] std::vector<Record> records_of(const models::Network& network,
-                                             const std::vector<Field<Row>>& fields,
+[[nodiscard]] std::vector<Record> records_of(const models::Network& network, const std::vector<Field<Row>>& fields,
                                              const std::vector<Row>& rows) {
   std::vector<Record> records;
   records.reserve(rows.size());

@@ -1,10 +1,10 @@
 // SPDX-License-Identifier: Apache-2.0
 #include "plots/text/help.h"
 
+#include <fmt/format.h>
+
 #include <algorithm>
 #include <cmath>
-
-#include <fmt/format.h>
 
 #include "models/registry.h"
 #include "plots/text/fields.h"
@@ -22,8 +22,10 @@ std::string commas(std::string_view choices) {
   const char separator = choices.find('|') == std::string_view::npos ? ' ' : '|';
   std::string text;
   for (const char c : choices) {
-    if (c == separator) text += ", ";
-    else text += c;
+    if (c == separator)
+      text += ", ";
+    else
+      text += c;
   }
   return text;
 }
@@ -34,18 +36,30 @@ std::string form_text(const Key& key) {
       const std::string_view units = models::accepted_units(key.quantity);
       return units.empty() ? "number" : fmt::format("value in {}", units);
     }
-    case ValueForm::text: return "text";
-    case ValueForm::choice: return (commas(key.choices) == key.choices ? "" : "one of ") + commas(key.choices);
-    case ValueForm::flag: return "true or false";
-    case ValueForm::number: return "number";
-    case ValueForm::device: return "device (see the kind device)";
-    case ValueForm::cable: return "cable: construction and size";
-    case ValueForm::cpc: return "where the protective conductor is";
-    case ValueForm::phases: return "phases";
-    case ValueForm::reference: return "name of another element";
-    case ValueForm::list: return "list of texts";
-    case ValueForm::table: return "table";
-    case ValueForm::points: return "list of points";
+    case ValueForm::text:
+      return "text";
+    case ValueForm::choice:
+      return (commas(key.choices) == key.choices ? "" : "one of ") + commas(key.choices);
+    case ValueForm::flag:
+      return "true or false";
+    case ValueForm::number:
+      return "number";
+    case ValueForm::device:
+      return "device (see the kind device)";
+    case ValueForm::cable:
+      return "cable: construction and size";
+    case ValueForm::cpc:
+      return "where the protective conductor is";
+    case ValueForm::phases:
+      return "phases";
+    case ValueForm::reference:
+      return "name of another element";
+    case ValueForm::list:
+      return "list of texts";
+    case ValueForm::table:
+      return "table";
+    case ValueForm::points:
+      return "list of points";
   }
   return "";
 }
@@ -111,13 +125,18 @@ HelpTopic help_netlist() {
   HelpTopic topic{"netlist", "The netlist", "", {}};
   topic.intro =
       "A TOML file: one table per element, one line where possible. Values carry their unit (\"25 mm2\", \"16 kA\", "
-      "\"0.35 ohm\", \"1.15 mohm/m\"). A value is addressed as S1.length or workshop/W4.length. Unknown keys are errors.";
+      "\"0.35 ohm\", \"1.15 mohm/m\"). A value is addressed as S1.length or workshop/W4.length. Unknown keys are "
+      "errors.";
   for (const models::Kind& kind : models::registry()) {
     HelpSection section;
-    if (kind.name.empty()) section.heading = "top of the file";
-    else if (kind.name.find('.') != std::string_view::npos) section.heading = fmt::format("{} (table inside)", kind.name);
-    else if (kind.name == "circuit") section.heading = "[circuit.BOARD]";
-    else section.heading = fmt::format("[{}.NAME]", kind.name);
+    if (kind.name.empty())
+      section.heading = "top of the file";
+    else if (kind.name.find('.') != std::string_view::npos)
+      section.heading = fmt::format("{} (table inside)", kind.name);
+    else if (kind.name == "circuit")
+      section.heading = "[circuit.BOARD]";
+    else
+      section.heading = fmt::format("[{}.NAME]", kind.name);
     section.text = std::string(kind.help);
     section.example = std::string(kind.example);
     for (const Key& key : kind.keys) section.entries.push_back({std::string(key.name), key_text(key)});
@@ -152,10 +171,13 @@ HelpTopic help_checks(const std::vector<solver::CheckInfo>& checks) {
 
 HelpTopic help_devices(const std::vector<models::DeviceFamily>& families) {
   HelpTopic topic{"devices", "Device families", "", {}};
-  topic.intro = std::string(
-      "A device is written <family> <In> [<Icn>] [<IdN> [S] [AC|A|F|B]] [class 1|2|3]: \"B 32 A 6 kA 30 mA A\", "
-      "\"gG 80 A\", \"RCD 63 A 30 mA A\", \"switch 100 A\"; or the name of a [device.NAME] with settings or points of "
-      "its maker. ") + status_meaning();
+  topic.intro =
+      std::string(
+          "A device is written <family> <In> [<Icn>] [<IdN> [S] [AC|A|F|B]] [class 1|2|3]: \"B 32 A 6 kA 30 mA A\", "
+          "\"gG 80 A\", \"RCD 63 A 30 mA A\", \"switch 100 A\"; or the name of a [device.NAME] with settings or points "
+          "of "
+          "its maker. ") +
+      status_meaning();
   HelpSection section{"families", "", "", {}};
   for (const models::DeviceFamily& family : families) {
     std::string text = family.title + '.';
@@ -173,15 +195,18 @@ HelpTopic help_devices(const std::vector<models::DeviceFamily>& families) {
 
 HelpTopic help_cables(const std::vector<models::CableConstruction>& constructions) {
   HelpTopic topic{"cables", "Cable constructions", "", {}};
-  topic.intro = std::string(
-      "A cable is written <construction> <size>: \"swa-xlpe-cu-4c 35 mm2\", \"flat-pvc-cu 2.5/1.5 mm2\"; or a "
-      "[cable.NAME] of the netlist. The key cpc says where the protective conductor is: core, armour, armour + core, "
-      "armour + 16 mm2, 16 mm2. ") + status_meaning();
+  topic.intro =
+      std::string(
+          "A cable is written <construction> <size>: \"swa-xlpe-cu-4c 35 mm2\", \"flat-pvc-cu 2.5/1.5 mm2\"; or a "
+          "[cable.NAME] of the netlist. The key cpc says where the protective conductor is: core, armour, armour + "
+          "core, "
+          "armour + 16 mm2, 16 mm2. ") +
+      status_meaning();
   HelpSection section{"constructions", "", "", {}};
   for (const models::CableConstruction& c : constructions) {
-    std::string text = fmt::format("{}. Sizes [mm2]: {}. Limit {}. Status: {}. Source: {}", c.title, sizes_text(c),
-                                   models::format_quantity(c.max_degc, Quantity::temperature),
-                                   models::word(worst_of(c)), c.source);
+    std::string text =
+        fmt::format("{}. Sizes [mm2]: {}. Limit {}. Status: {}. Source: {}", c.title, sizes_text(c),
+                    models::format_quantity(c.max_degc, Quantity::temperature), models::word(worst_of(c)), c.source);
     section.entries.push_back({c.name, text});
   }
   topic.sections.push_back(std::move(section));
@@ -191,42 +216,49 @@ HelpTopic help_cables(const std::vector<models::CableConstruction>& construction
 HelpTopic help_rules(const std::vector<models::RuleSet>& rule_sets) {
   HelpTopic topic{"rules", "Rule sets", "", {}};
   topic.intro = std::string(
-      "The key rules at the top of the netlist names the rule set and its edition; it decides times, k, "
-      "voltage-drop limits and temperatures. ") + status_meaning();
+                    "The key rules at the top of the netlist names the rule set and its edition; it decides times, k, "
+                    "voltage-drop limits and temperatures. ") +
+                status_meaning();
   for (const models::RuleSet& rules : rule_sets) {
     HelpSection section{rules.name, rules.title, "", {}};
-    section.entries.push_back({"voltage factors", fmt::format("maximum {}, minimum {}", models::format_number(rules.c_max),
-                                                               models::format_number(rules.c_min))});
+    section.entries.push_back(
+        {"voltage factors", fmt::format("maximum {}, minimum {}", models::format_number(rules.c_max),
+                                        models::format_number(rules.c_min))});
     std::string times;
     for (const models::TimeRow& row : rules.times) {
-      times += fmt::format("{}{} to {} V: {}", times.empty() ? "" : "; ", word(row.earthing),
-                           models::format_number(row.U0_to), models::format_quantity(row.final_circuit, Quantity::time));
+      times +=
+          fmt::format("{}{} to {} V: {}", times.empty() ? "" : "; ", word(row.earthing),
+                      models::format_number(row.U0_to), models::format_quantity(row.final_circuit, Quantity::time));
     }
-    section.entries.push_back({"final circuits", fmt::format("{} ({}); up to {} A with sockets, {} A without", times,
-                                                              rules.times_clause, models::format_number(rules.sockets_to),
-                                                              models::format_number(rules.fixed_to))});
-    section.entries.push_back({"distribution", fmt::format("TN {}, TT {} ({})",
-                                                            models::format_quantity(rules.distribution_tn, Quantity::time),
-                                                            models::format_quantity(rules.distribution_tt, Quantity::time),
-                                                            rules.distribution_clause)});
-    section.entries.push_back({"voltage drop", fmt::format("public supply: lighting {}, other {}; own transformer: lighting {}, other {} ({})",
-                                                            models::format_quantity(rules.drop_lighting_public, Quantity::percentage),
-                                                            models::format_quantity(rules.drop_other_public, Quantity::percentage),
-                                                            models::format_quantity(rules.drop_lighting_own, Quantity::percentage),
-                                                            models::format_quantity(rules.drop_other_own, Quantity::percentage),
-                                                            rules.drop_clause)});
-    section.entries.push_back({"additional protection", fmt::format("{} for sockets up to {} A ({})",
-                                                                     models::format_quantity(rules.additional_IdN, Quantity::current),
-                                                                     models::format_number(rules.additional_sockets_to),
-                                                                     rules.additional_clause)});
+    section.entries.push_back(
+        {"final circuits",
+         fmt::format("{} ({}); up to {} A with sockets, {} A without", times, rules.times_clause,
+                     models::format_number(rules.sockets_to), models::format_number(rules.fixed_to))});
+    section.entries.push_back(
+        {"distribution",
+         fmt::format("TN {}, TT {} ({})", models::format_quantity(rules.distribution_tn, Quantity::time),
+                     models::format_quantity(rules.distribution_tt, Quantity::time), rules.distribution_clause)});
+    section.entries.push_back(
+        {"voltage drop",
+         fmt::format("public supply: lighting {}, other {}; own transformer: lighting {}, other {} ({})",
+                     models::format_quantity(rules.drop_lighting_public, Quantity::percentage),
+                     models::format_quantity(rules.drop_other_public, Quantity::percentage),
+                     models::format_quantity(rules.drop_lighting_own, Quantity::percentage),
+                     models::format_quantity(rules.drop_other_own, Quantity::percentage), rules.drop_clause)});
+    section.entries.push_back(
+        {"additional protection",
+         fmt::format("{} for sockets up to {} A ({})", models::format_quantity(rules.additional_IdN, Quantity::current),
+                     models::format_number(rules.additional_sockets_to), rules.additional_clause)});
     for (const models::AdiabaticRow& row : rules.k) {
       section.entries.push_back(
-          {"k", fmt::format("{} {}, {}{}, {} to {} degC: {} ({}, {})", word(row.material), word(row.place), row.insulation,
-                            row.area_to < kAnySize ? ", up to " + models::format_number(row.area_to * 1e6) + " mm2" : "",
-                            models::format_number(row.initial_degc), models::format_number(row.final_degc),
-                            models::format_number(row.k * 1e-6), row.clause, models::word(row.confidence))});
+          {"k",
+           fmt::format("{} {}, {}{}, {} to {} degC: {} ({}, {})", word(row.material), word(row.place), row.insulation,
+                       row.area_to < kAnySize ? ", up to " + models::format_number(row.area_to * 1e6) + " mm2" : "",
+                       models::format_number(row.initial_degc), models::format_number(row.final_degc),
+                       models::format_number(row.k * 1e-6), row.clause, models::word(row.confidence))});
     }
-    section.entries.push_back({"support", fmt::format("Status: {}. Source: {}", models::word(rules.confidence), rules.source)});
+    section.entries.push_back(
+        {"support", fmt::format("Status: {}. Source: {}", models::word(rules.confidence), rules.source)});
     topic.sections.push_back(std::move(section));
   }
   return topic;
@@ -236,7 +268,8 @@ HelpTopic help_json_forms() {
   HelpTopic topic{"json", "JSON forms", "", {}};
   topic.intro =
       "Every command takes --json and prints one object whose key format names its form and version; keys may be "
-      "added, never renamed within a version. Values are SI (percentages say so). What is not a number, never happens or "
+      "added, never renamed within a version. Values are SI (percentages say so). What is not a number, never happens "
+      "or "
       "is unbounded is null, with reason beside it. Places are file:line:column. A run that cannot start prints "
       "sunder.errors/1 (errors[]: severity, file, line, column, message, source_line, hint) and ends with 2. Further "
       "forms: sunder.help/1, sunder.new/1, sunder.version/1.";

@@ -22,13 +22,13 @@ struct HelpEntry {
 
 struct HelpSection {
   std::string heading;
-  std::string text;      ///< a paragraph, "" if none
-  std::string example;   ///< printed as it stands, "" if none
+  std::string text;     ///< a paragraph, "" if none
+  std::string example;  ///< printed as it stands, "" if none
   std::vector<HelpEntry> entries;
 };
 
 struct HelpTopic {
-  std::string name;   ///< "netlist"
+  std::string name;  ///< "netlist"
   std::string title;
   std::string intro;
   std::vector<HelpSection> sections;

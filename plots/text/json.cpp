@@ -2,7 +2,6 @@
 #include "plots/text/json.h"
 
 #include <cmath>
-
 #include <nlohmann/json.hpp>
 
 #include "plots/figures/charts.h"
@@ -44,9 +43,7 @@ Json to_json(const Record& record) {
 }
 
 // Bytes that are not UTF-8 are replaced: the output is valid whatever the input was.
-std::string text_of(const Json& json) {
-  return json.dump(2, ' ', false, Json::error_handler_t::replace) + '\n';
-}
+std::string text_of(const Json& json) { return json.dump(2, ' ', false, Json::error_handler_t::replace) + '\n'; }
 
 Json head(const char* format, const models::Network& network) {
   Json object = Json::object();
@@ -71,8 +68,8 @@ Json rows_json(const models::Network& network, const std::vector<Field<Row>>& fi
 std::string check_json(const models::Network& network, const std::vector<solver::Finding>& findings) {
   Json object = head("sunder.check/1", network);
   Json counts = Json::object();
-  for (const solver::Verdict verdict : {solver::Verdict::fails, solver::Verdict::undecided, solver::Verdict::meets,
-                                        solver::Verdict::noted}) {
+  for (const solver::Verdict verdict :
+       {solver::Verdict::fails, solver::Verdict::undecided, solver::Verdict::meets, solver::Verdict::noted}) {
     std::size_t n = 0;
     for (const solver::Finding& f : findings) n += f.verdict == verdict ? 1U : 0U;
     counts[word(verdict)] = n;

@@ -13,9 +13,9 @@ namespace sunder::plots {
 
 /// A complaint of any stage, for `sunder.errors/1`.
 struct Complaint {
-  std::string severity;     ///< "error", "warning", "note"
-  std::string file;         ///< "" if it is about no file
-  int line = 0, column = 0; ///< 0: none
+  std::string severity;      ///< "error", "warning", "note"
+  std::string file;          ///< "" if it is about no file
+  int line = 0, column = 0;  ///< 0: none
   std::string message;
   std::string source_line;
   std::string hint;

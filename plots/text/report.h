@@ -13,7 +13,7 @@ namespace sunder::plots {
 
 struct TextStyle {
   bool colour = false;
-  int width = 100;        ///< columns of the terminal
+  int width = 100;          ///< columns of the terminal
   bool every_step = false;  ///< the whole working instead of one or two lines
   std::string date;         ///< "2026-12-01", printed in the head of reports; "" leaves it out
   std::string program;      ///< "sunder 0.1.0", printed beside it
@@ -24,16 +24,16 @@ struct TextStyle {
 
 /// Failures first with working and remedies, then what is undecided, then a summary by board, then
 /// the assumptions and the cautions.
-[[nodiscard]] std::string check_report(const models::Network& network,
-                                       const std::vector<solver::Finding>& findings, const TextStyle& style);
+[[nodiscard]] std::string check_report(const models::Network& network, const std::vector<solver::Finding>& findings,
+                                       const TextStyle& style);
 [[nodiscard]] std::string check_json(const models::Network& network, const std::vector<solver::Finding>& findings);
 
 [[nodiscard]] std::string faults_report(const models::Network& network, const std::vector<solver::FaultRow>& rows,
                                         const TextStyle& style);
 [[nodiscard]] std::string faults_json(const models::Network& network, const std::vector<solver::FaultRow>& rows);
 
-[[nodiscard]] std::string schedule_report(const models::Network& network,
-                                          const std::vector<solver::ScheduleRow>& rows, const TextStyle& style);
+[[nodiscard]] std::string schedule_report(const models::Network& network, const std::vector<solver::ScheduleRow>& rows,
+                                          const TextStyle& style);
 [[nodiscard]] std::string schedule_csv(const std::vector<solver::ScheduleRow>& rows);
 [[nodiscard]] std::string schedule_json(const models::Network& network, const std::vector<solver::ScheduleRow>& rows);
 

@@ -1,10 +1,10 @@
 // SPDX-License-Identifier: Apache-2.0
+#include <fmt/format.h>
+
 #include <algorithm>
 #include <cmath>
 #include <map>
 #include <set>
-
-#include <fmt/format.h>
 
 #include "plots/text/report.h"
 #include "plots/text/tables.h"
@@ -30,8 +30,7 @@ std::string head(const Network& network, const TextStyle& style) {
   if (!style.date.empty()) out += fmt::format("; calculated {}", style.date);
   if (!style.program.empty()) out += " by " + style.program;
   out += '\n';
-  out += fmt::format("{}, {}, {}; {}: {}; ambient {}\n",
-                     count_text(network.boards.size(), "board", "boards"),
+  out += fmt::format("{}, {}, {}; {}: {}; ambient {}\n", count_text(network.boards.size(), "board", "boards"),
                      count_text(network.submains.size(), "submain", "submains"),
                      count_text(network.circuits.size(), "circuit", "circuits"),
                      network.states.size() == 1 ? "state" : "states", states,
@@ -51,12 +50,17 @@ std::string governing(const Finding& f) {
   if (!f.state.empty()) add("state " + f.state);
   add(f.clause);
   switch (f.confidence) {
-    case models::Confidence::memory: add("data from memory, not compared with the standard"); break;
-    case models::Confidence::low: add("data of LOW confidence: check against the standard before use"); break;
+    case models::Confidence::memory:
+      add("data from memory, not compared with the standard");
+      break;
+    case models::Confidence::low:
+      add("data of LOW confidence: check against the standard before use");
+      break;
     case models::Confidence::declared:
     case models::Confidence::found:
     case models::Confidence::derived:
-    case models::Confidence::checked: break;
+    case models::Confidence::checked:
+      break;
   }
   return text;
 }
@@ -88,7 +92,8 @@ std::string finding_block(const Network& network, const Finding& f, const TextSt
   const std::string in = "    ";
   std::string title = f.subject;
   if (!f.upstream.empty()) title += " below " + f.upstream;
-  std::string out = fmt::format("{} {}  {}", verdict_text(style, f.verdict, 9), ink(style, Ink::heading, title), f.check);
+  std::string out =
+      fmt::format("{} {}  {}", verdict_text(style, f.verdict, 9), ink(style, Ink::heading, title), f.check);
   const std::string place = place_text(network, f.at);
   const int used = 10 + display_width(title) + 2 + display_width(f.check) + 4 + display_width(place);
   if (!place.empty()) out += (used <= style.width ? std::string("  (") : '\n' + in + '(') + place + ')';
@@ -110,18 +115,19 @@ std::string finding_block(const Network& network, const Finding& f, const TextSt
     for (const solver::Remedy& remedy : f.remedies) {
       if (remedy.holds != holds) continue;
       std::string line = remedy.what;
-      if (holds) line += ": then every check is met";
-      else if (remedy.note.empty()) line += ": not enough alone";
-      else line += ": not enough alone, " + remedy.note;
+      if (holds)
+        line += ": then every check is met";
+      else if (remedy.note.empty())
+        line += ": not enough alone";
+      else
+        line += ": not enough alone, " + remedy.note;
       out += wrap(line, style.width, in + (holds ? "mend:  " : "tried: "));
     }
   }
   return out + '\n';
 }
 
-std::string section(const TextStyle& style, const std::string& title) {
-  return ink(style, Ink::heading, title) + '\n';
-}
+std::string section(const TextStyle& style, const std::string& title) { return ink(style, Ink::heading, title) + '\n'; }
 
 // Which board a subject is counted under: a circuit's and a group's own, a submain's feeding one,
 // a source's first one.
@@ -161,8 +167,13 @@ std::string board_summary(const Network& network, const std::vector<Finding>& fi
     if (f.verdict == Verdict::noted || !std::isfinite(f.margin) || f.check == "additional protection") continue;
     if (tally.tightest == nullptr || f.margin < tally.tightest->margin) tally.tightest = &f;
   }
-  Table table({{"board"}, {"fail", Align::right}, {"undecided", Align::right}, {"meet", Align::right},
-               {"noted", Align::right}, {"least margin", Align::right}, {"where"}});
+  Table table({{"board"},
+               {"fail", Align::right},
+               {"undecided", Align::right},
+               {"meet", Align::right},
+               {"noted", Align::right},
+               {"least margin", Align::right},
+               {"where"}});
   const auto add = [&](const std::string& name, const Tally& tally) {
     const auto n = [&tally](Verdict v) { return std::to_string(tally.counts[static_cast<std::size_t>(v)]); };
     table.add({name, n(Verdict::fails), n(Verdict::undecided), n(Verdict::meets), n(Verdict::noted),
@@ -182,8 +193,12 @@ std::string board_summary(const Network& network, const std::vector<Finding>& fi
 std::string selectivity_list(const std::vector<Finding>& findings, const TextStyle& style) {
   // What it rests on is often the same sentence: told once, by number.
   std::vector<std::string> bases;
-  Table table({{"downstream", Align::left, 14}, {"upstream", Align::left, 14}, {"selective"}, {"up to", Align::right},
-               {"available", Align::right}, {"basis", Align::right}});
+  Table table({{"downstream", Align::left, 14},
+               {"upstream", Align::left, 14},
+               {"selective"},
+               {"up to", Align::right},
+               {"available", Align::right},
+               {"basis", Align::right}});
   for (const Finding& f : findings) {
     if (f.upstream.empty()) continue;
     std::string result = f.selectivity;
@@ -196,8 +211,7 @@ std::string selectivity_list(const std::vector<Finding>& findings, const TextSty
       if (found == bases.end()) bases.push_back(why);
     }
     const bool whole = f.selectivity == "total" && std::isnan(f.limit_A);
-    table.add({f.subject, f.upstream, result,
-               whole ? "" : value_text(f.limit_A, models::Quantity::current, 3),
+    table.add({f.subject, f.upstream, result, whole ? "" : value_text(f.limit_A, models::Quantity::current, 3),
                value_text(f.available_A, models::Quantity::current, 3), number});
   }
   if (table.empty()) return "";
@@ -206,8 +220,7 @@ std::string selectivity_list(const std::vector<Finding>& findings, const TextSty
   return out + '\n';
 }
 
-std::string assumption_register(const Network& network, const std::vector<Finding>& findings,
-                                const TextStyle& style) {
+std::string assumption_register(const Network& network, const std::vector<Finding>& findings, const TextStyle& style) {
   std::string list;
   std::set<std::string> seen;
   const auto add = [&](const std::string& text) {
@@ -247,7 +260,8 @@ std::string weak_data(const std::vector<Finding>& findings, const TextStyle& sty
   }
   if (memory > 0) {
     out += wrap(fmt::format("{} on reference data written from memory; `--working` and `--json` say which",
-                            count_text(memory, "finding rests", "findings rest")), style.width, "  - ");
+                            count_text(memory, "finding rests", "findings rest")),
+                style.width, "  - ");
   }
   return out + '\n';
 }
@@ -276,9 +290,14 @@ std::string check_report(const Network& network, const std::vector<Finding>& fin
   const std::string result =
       fmt::format("{} of {} checks FAIL, {} undecided, {} met, {} noted.", count(Verdict::fails), findings.size(),
                   count(Verdict::undecided), count(Verdict::meets), count(Verdict::noted));
-  if (findings.empty()) out += "Nothing to check: the network has no circuit, submain or device.\n";
-  else if (clean) out += ink(style, Ink::good, fmt::format("All {} checks are met, {} noted.", count(Verdict::meets), count(Verdict::noted))) + '\n';
-  else out += ink(style, count(Verdict::fails) > 0 ? Ink::bad : Ink::open, result) + '\n';
+  if (findings.empty())
+    out += "Nothing to check: the network has no circuit, submain or device.\n";
+  else if (clean)
+    out += ink(style, Ink::good,
+               fmt::format("All {} checks are met, {} noted.", count(Verdict::meets), count(Verdict::noted))) +
+           '\n';
+  else
+    out += ink(style, count(Verdict::fails) > 0 ? Ink::bad : Ink::open, result) + '\n';
   out += '\n';
 
   for (const Verdict verdict : {Verdict::fails, Verdict::undecided}) {

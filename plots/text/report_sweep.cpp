@@ -1,12 +1,12 @@
 // SPDX-License-Identifier: Apache-2.0
 // What a sweep found: flips, undecided stretches, and the values that change.
+#include <fmt/format.h>
+
 #include <algorithm>
 #include <cmath>
 #include <map>
 #include <set>
 #include <utility>
-
-#include <fmt/format.h>
 
 #include "plots/text/report.h"
 #include "plots/text/tables.h"
@@ -72,10 +72,16 @@ bool changes(const Track& track) {
 }
 
 std::string flips_table(const Sweep& sweep, const TextStyle& style) {
-  Table table({{"at " + sweep.key, Align::right}, {"check", Align::left, 18}, {"subject", Align::left, 12},
-               {"below"}, {""}, {"above"}, {"state"}});
+  Table table({{"at " + sweep.key, Align::right},
+               {"check", Align::left, 18},
+               {"subject", Align::left, 12},
+               {"below"},
+               {""},
+               {"above"},
+               {"state"}});
   for (const solver::Flip& flip : sweep.flips) {
-    table.add({place_of(sweep, flip.at), flip.check, flip.subject, word(flip.before), "->", word(flip.after), flip.state});
+    table.add(
+        {place_of(sweep, flip.at), flip.check, flip.subject, word(flip.before), "->", word(flip.after), flip.state});
   }
   return table.text(style.width, 2);
 }
@@ -84,13 +90,15 @@ std::string undecided_list(const Sweep& sweep, const TextStyle& style) {
   std::string out;
   for (const solver::Stretch& s : sweep.undecided) {
     out += wrap(fmt::format("{} to {}: {} of {}; needs {}", place_of(sweep, s.from), place_of(sweep, s.to), s.check,
-                            s.subject, s.needs), style.width, "  ? ");
+                            s.subject, s.needs),
+                style.width, "  ? ");
   }
   return out;
 }
 
 // Margins of the checks that flip or are undecided, a few columns at a time.
-std::string margins_table(const Sweep& sweep, const std::vector<std::pair<Name, Track>>& shown, const TextStyle& style) {
+std::string margins_table(const Sweep& sweep, const std::vector<std::pair<Name, Track>>& shown,
+                          const TextStyle& style) {
   constexpr std::size_t kColumns = 4;
   std::string out;
   for (std::size_t from = 0; from < shown.size(); from += kColumns) {
@@ -118,11 +126,16 @@ std::string margins_table(const Sweep& sweep, const std::vector<std::pair<Name, 
   return out;
 }
 
-std::string changes_table(const Sweep& sweep, const std::vector<std::pair<Name, Track>>& tracks, const TextStyle& style) {
+std::string changes_table(const Sweep& sweep, const std::vector<std::pair<Name, Track>>& tracks,
+                          const TextStyle& style) {
   const std::string first = point_text(sweep, sweep.points.front());
   const std::string last = point_text(sweep, sweep.points.back());
-  Table table({{"\ncheck", Align::left, 18}, {"\nsubject", Align::left, 12}, {clip(first, 22) + "\nvalue", Align::right},
-               {clip(last, 22) + "\nvalue", Align::right}, {"\nlimit", Align::right}, {"least\nmargin", Align::right},
+  Table table({{"\ncheck", Align::left, 18},
+               {"\nsubject", Align::left, 12},
+               {clip(first, 22) + "\nvalue", Align::right},
+               {clip(last, 22) + "\nvalue", Align::right},
+               {"\nlimit", Align::right},
+               {"least\nmargin", Align::right},
                {"\nverdicts"}});
   for (const auto& [name, track] : tracks) {
     if (!changes(track)) continue;
@@ -151,8 +164,9 @@ std::string sweep_report(const models::Network& network, const Sweep& sweep, con
   std::string out;
   if (!network.title.empty()) out += ink(style, Ink::heading, network.title) + '\n';
   if (sweep.points.empty()) return out + "No value of " + sweep.key + " was tried.\n";
-  std::string what = fmt::format("{} from {} to {}, {} values; rules {}", sweep.key, point_text(sweep, sweep.points.front()),
-                                 point_text(sweep, sweep.points.back()), sweep.points.size(), network.rules_name);
+  std::string what =
+      fmt::format("{} from {} to {}, {} values; rules {}", sweep.key, point_text(sweep, sweep.points.front()),
+                  point_text(sweep, sweep.points.back()), sweep.points.size(), network.rules_name);
   if (!style.date.empty()) what += "; calculated " + style.date;
   if (!style.program.empty()) what += " by " + style.program;
   out += wrap(what, style.width) + '\n';

@@ -1,9 +1,9 @@
 // SPDX-License-Identifier: Apache-2.0
 // Fault currents and the circuit schedule as tables for a terminal.
+#include <fmt/format.h>
+
 #include <cmath>
 #include <map>
-
-#include <fmt/format.h>
 
 #include "plots/text/fields.h"
 #include "plots/text/report.h"
@@ -30,7 +30,7 @@ struct Pair {
 };
 
 std::string faults_of_state(const std::string& state, const std::vector<FaultRow>& rows, const TextStyle& style) {
-  std::vector<std::string> nodes;                           // in order of first appearance
+  std::vector<std::string> nodes;  // in order of first appearance
   std::map<std::string, std::map<solver::Fault, Pair>> table_rows;
   for (const FaultRow& row : rows) {
     if (row.state != state) continue;
@@ -39,9 +39,15 @@ std::string faults_of_state(const std::string& state, const std::vector<FaultRow
     Pair& pair = at->second[row.fault];
     (row.condition == Condition::maximum ? pair.maximum : pair.minimum) = &row;
   }
-  Table table({{"\nnode", Align::left, 12}, {"\nfault", Align::left, 12}, {"maximum\ncurrent", Align::right},
-               {"\npeak", Align::right}, {"\nX/R", Align::right}, {"\nbetween", Align::left, 8},
-               {"minimum\ncurrent", Align::right}, {"\nloop ohm", Align::right}, {"\nX/R", Align::right},
+  Table table({{"\nnode", Align::left, 12},
+               {"\nfault", Align::left, 12},
+               {"maximum\ncurrent", Align::right},
+               {"\npeak", Align::right},
+               {"\nX/R", Align::right},
+               {"\nbetween", Align::left, 8},
+               {"minimum\ncurrent", Align::right},
+               {"\nloop ohm", Align::right},
+               {"\nX/R", Align::right},
                {"\nbetween", Align::left, 8}});
   std::string needs;
   for (const std::string& node : nodes) {
@@ -53,9 +59,9 @@ std::string faults_of_state(const std::string& state, const std::vector<FaultRow
       const bool least_known = least != nullptr && least->known;
       table.add({first ? node : "", word(fault), current_text(most),
                  most_known ? value_text(most->peak, Quantity::current, 3) : "",
-                 most_known ? ratio_text(most->x_over_r) : "", most != nullptr ? most->phases : "",
-                 current_text(least), least_known ? cell_text(least->loop_ohms) : "",
-                 least_known ? ratio_text(least->x_over_r) : "", least != nullptr ? least->phases : ""});
+                 most_known ? ratio_text(most->x_over_r) : "", most != nullptr ? most->phases : "", current_text(least),
+                 least_known ? cell_text(least->loop_ohms) : "", least_known ? ratio_text(least->x_over_r) : "",
+                 least != nullptr ? least->phases : ""});
       for (const FaultRow* row : {most, least}) {
         if (row != nullptr && !row->known && !row->needs.empty()) {
           needs += wrap(fmt::format("{}, {} {}: needs {}", node, word(row->condition), word(fault), row->needs),
@@ -90,9 +96,10 @@ std::string faults_report(const models::Network& network, const std::vector<Faul
     }
   }
   for (const std::string& state : states) out += faults_of_state(state, rows, style);
-  out += wrap("maximum: conductors at 20 degC and the strongest supply, for capacity. minimum: conductors hot and the "
-              "weakest supply, for disconnection. loop: the impedance that the driving voltage acts on.",
-              style.width);
+  out += wrap(
+      "maximum: conductors at 20 degC and the strongest supply, for capacity. minimum: conductors hot and the "
+      "weakest supply, for disconnection. loop: the impedance that the driving voltage acts on.",
+      style.width);
   return out;
 }
 
@@ -100,9 +107,13 @@ std::string schedule_report(const models::Network& network, const std::vector<so
                             const TextStyle& style) {
   std::string out = title_line(network, style, "Circuit schedule");
   // Three lines a way, so that nothing of device and cable has to be cut at 100 columns.
-  Table table({{"way\nphases", Align::left, 10}, {"serves\ndevice\ncable, protective conductor", Align::left, 24},
-               {"length\ndrop\nZs ohm", Align::right}, {"Ib A\nIn A\nIz A", Align::right},
-               {"least A\ngreatest A", Align::right}, {"time\nlimit", Align::right}, {"verdict"}});
+  Table table({{"way\nphases", Align::left, 10},
+               {"serves\ndevice\ncable, protective conductor", Align::left, 24},
+               {"length\ndrop\nZs ohm", Align::right},
+               {"Ib A\nIn A\nIz A", Align::right},
+               {"least A\ngreatest A", Align::right},
+               {"time\nlimit", Align::right},
+               {"verdict"}});
   std::string board;
   bool first = true;
   for (const solver::ScheduleRow& r : rows) {
@@ -123,9 +134,12 @@ std::string schedule_report(const models::Network& network, const std::vector<so
                value_text(r.time, Quantity::time, 3) + '\n' + value_text(r.limit, Quantity::time, 3), verdict});
   }
   out += table.text(style.width);
-  out += '\n' + wrap("Three lines a way, as in the heading. drop: from the supply terminals. Zs, least: far end, minimum "
-                     "condition. greatest: at the device. time: latest disconnection. verdict: the worst of all checks of "
-                     "the way; `sunder check` says why.", style.width);
+  out +=
+      '\n' + wrap(
+                 "Three lines a way, as in the heading. drop: from the supply terminals. Zs, least: far end, minimum "
+                 "condition. greatest: at the device. time: latest disconnection. verdict: the worst of all checks of "
+                 "the way; `sunder check` says why.",
+                 style.width);
   return out;
 }
 

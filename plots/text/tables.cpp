@@ -1,11 +1,11 @@
 // SPDX-License-Identifier: Apache-2.0
 #include "plots/text/tables.h"
 
+#include <fmt/format.h>
+
 #include <algorithm>
 #include <cmath>
 #include <cstdint>
-
-#include <fmt/format.h>
 
 namespace sunder::plots {
 namespace {
@@ -15,9 +15,12 @@ std::size_t code_point(std::string_view text, std::uint32_t& point) noexcept {
   const auto byte = [&](std::size_t i) { return static_cast<unsigned char>(text[i]); };
   const unsigned lead = byte(0);
   std::size_t length = 1;
-  if (lead >= 0xF0 && lead < 0xF8) length = 4;
-  else if (lead >= 0xE0) length = 3;
-  else if (lead >= 0xC0) length = 2;
+  if (lead >= 0xF0 && lead < 0xF8)
+    length = 4;
+  else if (lead >= 0xE0)
+    length = 3;
+  else if (lead >= 0xC0)
+    length = 2;
   if (length == 1 || length > text.size()) {
     point = lead;
     return 1;
@@ -169,8 +172,10 @@ std::string Table::text(int width, int indent) const {
   out += rule + '\n';
   for (const auto& row : rows_) {
     cells.assign(row.begin(), row.end());
-    if (row.empty()) out += '\n';
-    else print(cells);
+    if (row.empty())
+      out += '\n';
+    else
+      print(cells);
   }
   return out;
 }
@@ -179,11 +184,21 @@ std::string ink(const TextStyle& style, Ink kind, std::string_view text) {
   if (!style.colour) return std::string(text);
   const char* code = "1";
   switch (kind) {
-    case Ink::heading: code = "1"; break;
-    case Ink::good: code = "32"; break;
-    case Ink::bad: code = "1;31"; break;
-    case Ink::open: code = "1;33"; break;
-    case Ink::faint: code = "2"; break;
+    case Ink::heading:
+      code = "1";
+      break;
+    case Ink::good:
+      code = "32";
+      break;
+    case Ink::bad:
+      code = "1;31";
+      break;
+    case Ink::open:
+      code = "1;33";
+      break;
+    case Ink::faint:
+      code = "2";
+      break;
   }
   return fmt::format("\x1b[{}m{}\x1b[0m", code, text);
 }
@@ -195,10 +210,14 @@ std::string verdict_text(const TextStyle& style, solver::Verdict verdict, int wi
   }
   text = padded(text, width, Align::left);
   switch (verdict) {
-    case solver::Verdict::meets: return ink(style, Ink::good, text);
-    case solver::Verdict::fails: return ink(style, Ink::bad, text);
-    case solver::Verdict::undecided: return ink(style, Ink::open, text);
-    case solver::Verdict::noted: break;
+    case solver::Verdict::meets:
+      return ink(style, Ink::good, text);
+    case solver::Verdict::fails:
+      return ink(style, Ink::bad, text);
+    case solver::Verdict::undecided:
+      return ink(style, Ink::open, text);
+    case solver::Verdict::noted:
+      break;
   }
   return text;
 }
@@ -214,7 +233,8 @@ std::string margin_text(double margin) {
   const double percent = 100 * margin;
   if (std::fabs(percent) >= 1000) return percent > 0 ? "> +999 %" : "< -999 %";
   // The sign stays where rounding makes a miss look like zero: "-0.0 %".
-  return std::fabs(percent) >= 100 ? fmt::format("{:+.0f} %", std::clamp(percent, -999.0, 999.0)) : fmt::format("{:+.1f} %", percent);
+  return std::fabs(percent) >= 100 ? fmt::format("{:+.0f} %", std::clamp(percent, -999.0, 999.0))
+                                   : fmt::format("{:+.1f} %", percent);
 }
 
 std::string cell_text(double value, int digits, bool time) {

@@ -27,9 +27,9 @@ enum class Align { left, right };
 class Table {
  public:
   struct Column {
-    std::string heading;        ///< may hold several lines
+    std::string heading;  ///< may hold several lines
     Align align = Align::left;
-    int least = 8;              ///< a left column that must give way is not made narrower
+    int least = 8;  ///< a left column that must give way is not made narrower
   };
 
   explicit Table(std::vector<Column> columns) : columns_(std::move(columns)) {}

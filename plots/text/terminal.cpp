@@ -1,6 +1,7 @@
 // SPDX-License-Identifier: Apache-2.0
 #include "plots/text/terminal.h"
 
+#include <fmt/format.h>
 #include <sys/ioctl.h>
 #include <unistd.h>
 
@@ -8,8 +9,6 @@
 #include <cstdlib>
 #include <ctime>
 #include <string_view>
-
-#include <fmt/format.h>
 
 namespace sunder::plots {
 
@@ -31,8 +30,8 @@ TextStyle style_for(int descriptor, bool shown) {
   const bool terminal = shown && ::isatty(descriptor) == 1;
   const char* no_colour = std::getenv("NO_COLOR");
   const char* kind = std::getenv("TERM");
-  style.colour = terminal && (no_colour == nullptr || *no_colour == '\0') &&
-                 (kind == nullptr || std::string_view(kind) != "dumb");
+  style.colour =
+      terminal && (no_colour == nullptr || *no_colour == '\0') && (kind == nullptr || std::string_view(kind) != "dumb");
   struct winsize size {};
   if (terminal && ::ioctl(descriptor, TIOCGWINSZ, &size) == 0 && size.ws_col > 0) {
     style.width = std::clamp(static_cast<int>(size.ws_col), 70, 160);

@@ -38,24 +38,24 @@ Finding judge_device(const Situation& s, const Device& device, const std::string
   }
   finding.fault = word(fault);
   double amps = current->amps;
-  finding.steps.push_back({"greatest prospective current at the line side", "I = c U / |Z|",
-                           fmt::format("{} / {}", say(current->volts, Quantity::voltage),
-                                       say(current->ohms, Quantity::impedance)),
-                           amps, Quantity::current, s.at});
+  finding.steps.push_back(
+      {"greatest prospective current at the line side", "I = c U / |Z|",
+       fmt::format("{} / {}", say(current->volts, Quantity::voltage), say(current->ohms, Quantity::impedance)), amps,
+       Quantity::current, s.at});
   if (s.motors > kMotorShare * amps) {
     amps += kMotorFactor * s.motors;
-    finding.steps.push_back({"bound with motors", "I + 5 sum(IrM)",
-                             fmt::format("{} + 5 x {}", say(current->amps, Quantity::current),
-                                         say(s.motors, Quantity::current)),
-                             amps, Quantity::current, s.at});
+    finding.steps.push_back(
+        {"bound with motors", "I + 5 sum(IrM)",
+         fmt::format("{} + 5 x {}", say(current->amps, Quantity::current), say(s.motors, Quantity::current)), amps,
+         Quantity::current, s.at});
     finding.assumptions.push_back("motors above 1 % of the current: 5 times their rated currents are added as a bound");
   }
   finding.confidence = models::worse(path_confidence(s, false), device.Icn_confidence);
   if (device.Icn <= 0) {
     finding.value = amps;
     lack(finding, "Icn of the device of " + whose, "the breaking capacity of the device is not given");
-    finding.summary = fmt::format("{} may flow; what the {} can break is not given", say(amps, Quantity::current),
-                                  device.text);
+    finding.summary =
+        fmt::format("{} may flow; what the {} can break is not given", say(amps, Quantity::current), device.text);
     return finding;
   }
   compare_upper(finding, amps, device.Icn, Quantity::current);
@@ -92,8 +92,7 @@ std::vector<Finding> judge(const Situation& s) {
 }  // namespace
 
 Check breaking_capacity_check() {
-  return {{kName,
-           "the greatest prospective current at the line side of a device against its rated breaking capacity",
+  return {{kName, "the greatest prospective current at the line side of a device against its rated breaking capacity",
            "circuits, submains, incomers and group devices that break short-circuits",
            "the supply's maximum; Icn of the device"},
           applies,

@@ -60,24 +60,26 @@ std::vector<Finding> judge(const Situation& s) {
   finding.limit = std::min(kLongest, thermal);
   finding.value = std::isfinite(time) ? time : kNone;
   finding.confidence = models::worse(path_confidence(s, false), by->device->confidence);
-  finding.steps.push_back({fmt::format("least {} current at the far end", word(fault)), "I = c_min U / |Z|",
-                           fmt::format("{} / {}", say(current->volts, Quantity::voltage),
-                                       say(current->ohms, Quantity::impedance)),
-                           amps, Quantity::current, s.at});
-  finding.steps.push_back({"time to the conductor's final temperature", "t = k2 S2 / I2",
-                           fmt::format("{} / ({})2", say(withstand, Quantity::let_through), say(amps, Quantity::current)),
-                           thermal, Quantity::time, s.at});
-  finding.steps.push_back({fmt::format("latest operation of {} ({})", by->address, by->device->text), "t(I)",
-                           std::isfinite(time) ? say(amps, Quantity::current) : say(amps, Quantity::current) + ", never for sure",
-                           finding.value, Quantity::time, by->at});
+  finding.steps.push_back(
+      {fmt::format("least {} current at the far end", word(fault)), "I = c_min U / |Z|",
+       fmt::format("{} / {}", say(current->volts, Quantity::voltage), say(current->ohms, Quantity::impedance)), amps,
+       Quantity::current, s.at});
+  finding.steps.push_back(
+      {"time to the conductor's final temperature", "t = k2 S2 / I2",
+       fmt::format("{} / ({})2", say(withstand, Quantity::let_through), say(amps, Quantity::current)), thermal,
+       Quantity::time, s.at});
+  finding.steps.push_back(
+      {fmt::format("latest operation of {} ({})", by->address, by->device->text), "t(I)",
+       std::isfinite(time) ? say(amps, Quantity::current) : say(amps, Quantity::current) + ", never for sure",
+       finding.value, Quantity::time, by->at});
   const bool in_time = time <= kLongest;
   // What passes before the latest operation; below 0.1 s that is let-through, not a time.
   const Heat heat = greatest_heat(*by->device, amps, kLeastPeak);
   const bool cool = in_time && heat.total <= withstand * (1 + 1e-12);
   if (cool && time > thermal) {
     finding.limit = kLongest;
-    finding.steps.push_back({"heat by let-through data instead of a time", "I2 t", heat.basis, heat.total,
-                             Quantity::let_through, by->at});
+    finding.steps.push_back(
+        {"heat by let-through data instead of a time", "I2 t", heat.basis, heat.total, Quantity::let_through, by->at});
   }
   finding.verdict = cool ? Verdict::meets : Verdict::fails;
   finding.margin = std::isfinite(needed) ? amps / needed - 1.0 : -1.0;
@@ -90,8 +92,8 @@ std::vector<Finding> judge(const Situation& s) {
   // All of the declared loop was put into the line; half of it there is what a supply usually has.
   const bool split_open = fault == Fault::line_line && !s.source->transformer && !s.source->minimum.three_phase.given();
   const double likely = current->volts / (current->ohms - current->source_ohms / 2);
-  const bool by_split = split_open && likely >= needed &&
-                        greatest_heat(*by->device, likely, kLeastPeak).total <= withstand;
+  const bool by_split =
+      split_open && likely >= needed && greatest_heat(*by->device, likely, kLeastPeak).total <= withstand;
   if (!cool && by_split) {
     lack(finding, s.source->name + ".minimum.three_phase",
          "it is not met only because all of the declared loop is taken to lie in the line");
@@ -118,8 +120,7 @@ Check clearance_check() {
   return {{kName,
            "the latest time at which the least line-neutral or line-line current at the far end is cleared against the "
            "lesser of 5 s and the time to the conductor's final temperature",
-           "circuits, submains, tails",
-           "the supply's minimum, line-neutral too; length, cable, device"},
+           "circuits, submains, tails", "the supply's minimum, line-neutral too; length, cable, device"},
           applies,
           judge};
 }

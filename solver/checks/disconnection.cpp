@@ -19,7 +19,8 @@ constexpr const char* kName = "disconnection time";
 // What a public supply does before its terminals is the distributor's; a transformer's cable is not.
 bool applies(const Situation& s) {
   if (s.kind == SubjectKind::tails)
-    return s.source->transformer && s.cable != nullptr && s.device->present() && s.conductors.has(models::Conductor::PE);
+    return s.source->transformer && s.cable != nullptr && s.device->present() &&
+           s.conductors.has(models::Conductor::PE);
   return s.kind == SubjectKind::circuit ||
          (s.kind == SubjectKind::submain && s.submain->conductors.has(models::Conductor::PE));
 }
@@ -28,8 +29,8 @@ bool applies(const Situation& s) {
 // memory, low confidence). What it could add to the loop, where a cable of 50 mm2 or more has its armour
 // alone as protective conductor [ohm].
 double unknown_reactance(const Situation& s) {
-  constexpr double kMost = 0.4e-3;   // [ohm/m]
-  constexpr double kLarge = 50e-6;   // [m2]
+  constexpr double kMost = 0.4e-3;  // [ohm/m]
+  constexpr double kLarge = 50e-6;  // [m2]
   double ohms = 0;
   auto add = [&](const models::Cable& cable, double length, int in_parallel) {
     if (cable.protective.size() != 1 || cable.line.area < kLarge) return;
@@ -50,22 +51,26 @@ double unknown_reactance(const Situation& s) {
 
 void say_working(Finding& finding, const Situation& s, const FaultCurrent& current, const Disconnection& cleared,
                  const TimeLimit& limit) {
-  finding.steps.push_back({"earth-fault loop at the far end", "Zs = |Z source + Z1 + Z2|",
-                           fmt::format("{} of it before the installation", say(current.source_ohms, Quantity::impedance)),
-                           current.ohms, Quantity::impedance, s.at});
-  finding.steps.push_back({"least line-earth current", "I = c_min U0 / Zs",
-                           fmt::format("{} / {}", say(current.volts, Quantity::voltage),
-                                       say(current.ohms, Quantity::impedance)),
-                           current.amps, Quantity::current, s.at});
+  finding.steps.push_back(
+      {"earth-fault loop at the far end", "Zs = |Z source + Z1 + Z2|",
+       fmt::format("{} of it before the installation", say(current.source_ohms, Quantity::impedance)), current.ohms,
+       Quantity::impedance, s.at});
+  finding.steps.push_back(
+      {"least line-earth current", "I = c_min U0 / Zs",
+       fmt::format("{} / {}", say(current.volts, Quantity::voltage), say(current.ohms, Quantity::impedance)),
+       current.amps, Quantity::current, s.at});
   if (cleared.by != nullptr && std::isfinite(cleared.needed)) {
     finding.steps.push_back({fmt::format("current at which {} of {} operates within {}",
                                          cleared.residual ? "the residual element" : "the device", cleared.by->address,
                                          say(limit.seconds, Quantity::time)),
                              "Ia", cleared.by->device->text, cleared.needed, Quantity::current, cleared.by->at});
-    finding.steps.push_back({"greatest loop that would do", "Zs,max = c_min U0 / Ia",
-                             fmt::format("{} / {}", say(current.volts, Quantity::voltage),
-                                         say(cleared.needed, Quantity::current)),
-                             current.volts / cleared.needed, Quantity::impedance, {}});
+    finding.steps.push_back(
+        {"greatest loop that would do",
+         "Zs,max = c_min U0 / Ia",
+         fmt::format("{} / {}", say(current.volts, Quantity::voltage), say(cleared.needed, Quantity::current)),
+         current.volts / cleared.needed,
+         Quantity::impedance,
+         {}});
   }
 }
 
@@ -117,16 +122,16 @@ std::vector<Finding> judge(const Situation& s) {
          fmt::format("time-current points of the device of {}{}", cleared.by->address,
                      device.family == "gG" ? " (fuses to BS 88-2 have printed ones)" : ""),
          "only a line drawn between the standard's gates would meet the time");
-  const std::string by = fmt::format("{}{}", device.text, cleared.by->address == s.address ? "" : " of " + cleared.by->address);
+  const std::string by =
+      fmt::format("{}{}", device.text, cleared.by->address == s.address ? "" : " of " + cleared.by->address);
   finding.summary = fmt::format(
       "Zs {} lets {} flow: {} operates {}; {} demanded{}", say(current.ohms, Quantity::impedance),
       say(current.amps, Quantity::current), by,
       std::isfinite(cleared.time) ? "within " + say(cleared.time, Quantity::time) : std::string("at no sure time"),
       say(limit.seconds, Quantity::time),
-      std::isfinite(cleared.needed)
-          ? fmt::format(", which takes {} (Zs {})", say(cleared.needed, Quantity::current),
-                        say(current.volts / cleared.needed, Quantity::impedance))
-          : std::string(", which it never guarantees"));
+      std::isfinite(cleared.needed) ? fmt::format(", which takes {} (Zs {})", say(cleared.needed, Quantity::current),
+                                                  say(current.volts / cleared.needed, Quantity::impedance))
+                                    : std::string(", which it never guarantees"));
   std::vector<double> steps;
   for (const Protector& protector : s.path) {
     if (!protector.device->residual.empty()) steps.push_back(residual_capacity(*protector.device));
@@ -144,8 +149,7 @@ Check disconnection_check() {
   return {{kName,
            "the latest time at which the least line-earth current at the far end is disconnected against the rule "
            "set's time for system, voltage, use and rating; the margin is that of the current",
-           "circuits, submains",
-           "the supply's minimum; length, cable, cpc, device; use"},
+           "circuits, submains", "the supply's minimum; length, cable, cpc, device; use"},
           applies,
           judge};
 }

@@ -19,7 +19,7 @@ constexpr double kLongest = 5.0;  // [s]
 struct Interval {
   double low = 0, high = 0;  // prospective, through the device [A]
   double kappa = 1.02;
-  bool earth = false;        // a line-earth fault: residual elements act too
+  bool earth = false;                                             // a line-earth fault: residual elements act too
   Fault least = Fault::line_neutral, most = Fault::line_neutral;  // what flows at either end
 };
 
@@ -80,14 +80,13 @@ bool applies(const Situation& s) { return s.cable != nullptr; }
 
 struct Part {
   const models::Strand* strand;
-  double share;     // of the fault current
+  double share;  // of the fault current
   Interval interval;
   std::string name;
 };
 
 // Currents at the far end (minimum) and at the device (maximum) for a set of faults.
-bool interval_of(const Situation& s, FaultList faults, bool earth, Interval& out, std::string& needs,
-                 bool& possible) {
+bool interval_of(const Situation& s, FaultList faults, bool earth, Interval& out, std::string& needs, bool& possible) {
   const FaultCurrent* low = least(s.far_min, faults, &out.least);
   const FaultCurrent* high = greatest(s.origin_max, faults, &out.most);
   possible = low != nullptr && high != nullptr;
@@ -105,8 +104,7 @@ bool interval_of(const Situation& s, FaultList faults, bool earth, Interval& out
 
 std::vector<Part> parts_of(const Situation& s, Finding& finding) {
   std::vector<Part> parts;
-  auto add = [&](const models::Strand& strand, double share, FaultList faults, bool earth,
-                 const std::string& name) {
+  auto add = [&](const models::Strand& strand, double share, FaultList faults, bool earth, const std::string& name) {
     Interval interval;
     std::string needs;
     bool possible = false;
@@ -147,18 +145,19 @@ void judge_part(const Situation& s, const Protector& by, const Part& part, Findi
   if (worst.current > 0) {
     const double heat = worst.heat * square;
     compare_upper(finding, heat, withstand, Quantity::let_through);
-    const std::string share = part.share < 1 - 1e-12 ? fmt::format(" ({} of the current)", models::format_number(part.share, 3)) : "";
+    const std::string share =
+        part.share < 1 - 1e-12 ? fmt::format(" ({} of the current)", models::format_number(part.share, 3)) : "";
     finding.steps.push_back({"what the " + part.name + " stands", "k2 S2",
                              fmt::format("({} x {})2, {}", models::format_number(k->k / 1e6, 3),
                                          say(part.strand->area, Quantity::area), k->clause),
                              withstand, Quantity::let_through, s.at});
-    finding.steps.push_back({fmt::format("greatest heat, at {} between {} and {}", say(worst.current, Quantity::current),
-                                         say(part.interval.low, Quantity::current),
-                                         say(part.interval.high, Quantity::current)),
-                             "I2 t", fmt::format("{}{}", worst.basis, share), heat, Quantity::let_through, by.at});
-    finding.summary = fmt::format("{}{} may meet {} at {} ({}); it stands {}", part.name, share,
-                                  say(heat, Quantity::let_through), say(worst.current, Quantity::current), worst.basis,
-                                  say(withstand, Quantity::let_through));
+    finding.steps.push_back(
+        {fmt::format("greatest heat, at {} between {} and {}", say(worst.current, Quantity::current),
+                     say(part.interval.low, Quantity::current), say(part.interval.high, Quantity::current)),
+         "I2 t", fmt::format("{}{}", worst.basis, share), heat, Quantity::let_through, by.at});
+    finding.summary =
+        fmt::format("{}{} may meet {} at {} ({}); it stands {}", part.name, share, say(heat, Quantity::let_through),
+                    say(worst.current, Quantity::current), worst.basis, say(withstand, Quantity::let_through));
     if (finding.verdict == Verdict::fails && !worst.decisive &&
         least_heat(*by.device, worst.current) * square <= withstand)
       lack(finding,

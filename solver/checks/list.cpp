@@ -8,9 +8,9 @@ namespace sunder::solver {
 
 std::vector<Check>& checks() {
   static std::vector<Check> all{
-      breaking_capacity_check(), disconnection_check(),        clearance_check(),
-      heating_check(),           overload_check(),             voltage_drop_check(),
-      selectivity_check(),       additional_protection_check(), earth_electrode_check(),
+      breaking_capacity_check(), disconnection_check(), clearance_check(),   heating_check(),
+      overload_check(),          voltage_drop_check(),  selectivity_check(), additional_protection_check(),
+      earth_electrode_check(),
   };
   return all;
 }

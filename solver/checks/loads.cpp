@@ -28,8 +28,9 @@ void judge_comparisons(Finding& finding, const Situation& s, const std::vector<C
   const Comparison* worst = nullptr;
   for (const Comparison& c : comparisons) {
     if (!c.known) continue;
-    finding.steps.push_back({c.what, "", fmt::format("{} against {}", say(c.value, Quantity::current), say(c.limit, Quantity::current)),
-                             kNone, Quantity::current, s.at});
+    finding.steps.push_back(
+        {c.what, "", fmt::format("{} against {}", say(c.value, Quantity::current), say(c.limit, Quantity::current)),
+         kNone, Quantity::current, s.at});
     if (worst == nullptr || c.value * worst->limit > worst->value * c.limit) worst = &c;
   }
   if (worst == nullptr) return;
@@ -43,7 +44,8 @@ void judge_comparisons(Finding& finding, const Situation& s, const std::vector<C
 }
 
 Demand demand_of(const Situation& s) {
-  if (s.circuit != nullptr) return {s.circuit->load.value, 1.0, s.circuit->load.given, true, "load of " + s.address, {}};
+  if (s.circuit != nullptr)
+    return {s.circuit->load.value, 1.0, s.circuit->load.given, true, "load of " + s.address, {}};
   if (s.submain != nullptr) return s.loading->submain[static_cast<std::size_t>(s.submain - s.network->submains.data())];
   return s.loading->source[static_cast<std::size_t>(s.source - s.network->sources.data())];
 }
@@ -71,12 +73,12 @@ std::vector<Finding> judge_run(const Situation& s) {
   }
   if (!Iz.given) lack(finding, "Iz of " + s.address, "Iz is not declared");
   if (s.ring && rules.ring_device_to > 0 && device.In <= rules.ring_device_to) {
-    comparisons.push_back({fmt::format("ring: {} <= Iz of one leg", say(rules.ring_Iz, Quantity::current)), rules.ring_Iz, Iz.value,
-                           Iz.given});
+    comparisons.push_back({fmt::format("ring: {} <= Iz of one leg", say(rules.ring_Iz, Quantity::current)),
+                           rules.ring_Iz, Iz.value, Iz.given});
     finding.assumptions.push_back("ring: its load is spread so that no leg carries more than its Iz for long");
   } else {
-    comparisons.push_back({device.overload_factor < 1 ? fmt::format("In <= {} Iz", device.overload_factor) : "In <= Iz", device.In,
-                           device.overload_factor * Iz.value, Iz.given});
+    comparisons.push_back({device.overload_factor < 1 ? fmt::format("In <= {} Iz", device.overload_factor) : "In <= Iz",
+                           device.In, device.overload_factor * Iz.value, Iz.given});
     const bool by_I2 = !device.I2_deemed && device.overload_factor >= 1;
     if (by_I2 && device.I2_ratio > 0) {
       comparisons.push_back({fmt::format("I2 <= {} Iz", rules.I2_factor), device.I2_ratio * device.In,
@@ -99,12 +101,15 @@ Finding judge_rating(const Situation& s, const models::Device& device, const Dem
   finding.clause = s.network->rules.overload_clause;
   const Protector* upstream = overcurrent_protector(before);
   if (upstream != nullptr && upstream->device->In <= device.In) {
-    judge_comparisons(finding, s, {{fmt::format("In of {} <= In of {}", upstream->address, device.text),
-                                    upstream->device->In, device.In}});
+    judge_comparisons(
+        finding, s,
+        {{fmt::format("In of {} <= In of {}", upstream->address, device.text), upstream->device->In, device.In}});
     return finding;
   }
   if (!demand.known) lack(finding, demand.needs, "the load through it is not known");
-  judge_comparisons(finding, s, {{fmt::format("load <= In of {}", device.text), demand.amps, device.In, demand.known, !demand.declared}});
+  judge_comparisons(
+      finding, s,
+      {{fmt::format("load <= In of {}", device.text), demand.amps, device.In, demand.known, !demand.declared}});
   return finding;
 }
 
@@ -183,7 +188,8 @@ std::vector<Finding> judge_drop(const Situation& s) {
   }
   compare_upper(finding, s.drop.share, limit, Quantity::percentage);
   finding.confidence = path_confidence(s, false);
-  if (demands_on_the_way(s)) finding.assumptions.push_back("a declared demand is taken as balanced over the lines of its submain");
+  if (demands_on_the_way(s))
+    finding.assumptions.push_back("a declared demand is taken as balanced over the lines of its submain");
   const double here = s.drop.share - s.loading->drop[static_cast<std::size_t>(s.board_index)].share;
   finding.steps.push_back({"drop from the supply terminals", "sum of I (R cos + X sin) / U",
                            fmt::format("{} to the board + {} along it", say(s.drop.share - here, Quantity::percentage),
@@ -202,20 +208,19 @@ Check overload_check() {
   return {{kOverload,
            "Ib <= In <= Iz and I2 <= 1.45 Iz; of incomers, switches and group devices the load, or the device before "
            "them, against their rating",
-           "circuits, submains, tails, incomers, groups",
-           "load or demand; device; Iz"},
+           "circuits, submains, tails, incomers, groups", "load or demand; device; Iz"},
           has_overload,
           judge_overload};
 }
 
 Check voltage_drop_check() {
-  return {{kDrop,
-           "the drop from the supply terminals (own transformer: from its no-load side) to the far end at the "
-           "conductors' temperature under load against the rule set's limit for the use",
-           "circuits; submains to boards that feed nothing yet",
-           "load; demands or loads of everything on the way; use"},
-          has_drop,
-          judge_drop};
+  return {
+      {kDrop,
+       "the drop from the supply terminals (own transformer: from its no-load side) to the far end at the "
+       "conductors' temperature under load against the rule set's limit for the use",
+       "circuits; submains to boards that feed nothing yet", "load; demands or loads of everything on the way; use"},
+      has_drop,
+      judge_drop};
 }
 
 }  // namespace sunder::solver

@@ -26,8 +26,8 @@ bool needs_additional(const Situation& s) {
   const models::RuleSet& rules = s.network->rules;
   const Protector* by = overcurrent_protector(s.path);
   const double In = by == nullptr ? 0 : by->device->In;
-  const bool sockets = (s.use == models::Use::sockets || s.use == models::Use::unknown) &&
-                       In <= rules.additional_sockets_to;
+  const bool sockets =
+      (s.use == models::Use::sockets || s.use == models::Use::unknown) && In <= rules.additional_sockets_to;
   const bool dwelling_lights =
       s.use == models::Use::lighting && s.network->dwelling && rules.additional_dwelling_lighting;
   return sockets || dwelling_lights;
@@ -96,15 +96,16 @@ std::vector<Finding> judge_electrode(const Situation& given) {
     finding.verdict = Verdict::noted;
     finding.limit = rules.touch_limit;
     finding.reason = "no residual current device stands before the board";
-    finding.summary = "no residual current device before it: the board and what leads to it must be Class II or equivalent";
+    finding.summary =
+        "no residual current device before it: the board and what leads to it must be Class II or equivalent";
     finding.needs.push_back("Class II (or equivalent) up to the first residual current device");
     return {finding};
   }
   compare_upper(finding, electrode.resistance * by->device->IdN, rules.touch_limit, Quantity::voltage);
-  finding.steps.push_back({"voltage at the electrode at the rated residual current", "RA IdN",
-                           fmt::format("{} x {}", say(electrode.resistance, Quantity::impedance),
-                                       say(by->device->IdN, Quantity::current)),
-                           finding.value, Quantity::voltage, electrode.at});
+  finding.steps.push_back(
+      {"voltage at the electrode at the rated residual current", "RA IdN",
+       fmt::format("{} x {}", say(electrode.resistance, Quantity::impedance), say(by->device->IdN, Quantity::current)),
+       finding.value, Quantity::voltage, electrode.at});
   finding.summary = fmt::format("RA {} with {} of {}: {}; {} allowed", say(electrode.resistance, Quantity::impedance),
                                 say(by->device->IdN, Quantity::current), by->address,
                                 say(finding.value, Quantity::voltage), say(finding.limit, Quantity::voltage));
@@ -116,20 +117,19 @@ std::vector<Finding> judge_electrode(const Situation& given) {
 }  // namespace
 
 Check additional_protection_check() {
-  return {{kAdditional,
-           "the residual current device the rule set asks for: no more than 30 mA, not delayed",
-           "circuits with sockets; in dwellings lighting where the rule set says so",
-           "use; device, groups, incomer"},
+  return {{kAdditional, "the residual current device the rule set asks for: no more than 30 mA, not delayed",
+           "circuits with sockets; in dwellings lighting where the rule set says so", "use; device, groups, incomer"},
           needs_additional,
           judge_additional};
 }
 
 Check earth_electrode_check() {
-  return {{kElectrode, "RA IdN <= 50 V in a TT installation; before a board without any residual device the need for Class II is noted",
-           "circuits, submains and boards of a TT installation",
-           "electrode; IdN"},
-          in_tt,
-          judge_electrode};
+  return {
+      {kElectrode,
+       "RA IdN <= 50 V in a TT installation; before a board without any residual device the need for Class II is noted",
+       "circuits, submains and boards of a TT installation", "electrode; IdN"},
+      in_tt,
+      judge_electrode};
 }
 
 }  // namespace sunder::solver

@@ -91,12 +91,10 @@ Finding judge_pair(const Situation& s, const Protector& down, const Protector& u
   finding.value = pair.limit;
   finding.limit = most->amps;
   finding.margin = std::isfinite(pair.limit) ? pair.limit / most->amps - 1.0 : kNone;
-  finding.summary = fmt::format("{} below {} ({}): {}{}; {} available", down.device->text, up.device->text, up.address,
-                                finding.selectivity,
-                                pair.selectivity == Selectivity::partial
-                                    ? " to " + say(pair.limit, Quantity::current)
-                                    : std::string(),
-                                say(most->amps, Quantity::current));
+  finding.summary = fmt::format(
+      "{} below {} ({}): {}{}; {} available", down.device->text, up.device->text, up.address, finding.selectivity,
+      pair.selectivity == Selectivity::partial ? " to " + say(pair.limit, Quantity::current) : std::string(),
+      say(most->amps, Quantity::current));
   finding.steps.push_back({"limit of selectivity", "greatest current up to which it is proven", pair.basis, pair.limit,
                            Quantity::current, down.at});
   if (!required.empty()) {

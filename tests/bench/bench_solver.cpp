@@ -48,7 +48,8 @@ sources = ["second"]
     text += fmt::format("[circuit.b{}]\n", b);
     for (int w = 0; w < kPerBoard && done < circuits; ++w, ++done)
       text += fmt::format(
-          "W{} = {{ use = \"fixed\", phases = \"L{}\", device = \"B 16 A 10 kA class 3\", cable = \"singles-pvc-cu 2.5 mm2\", "
+          "W{} = {{ use = \"fixed\", phases = \"L{}\", device = \"B 16 A 10 kA class 3\", cable = \"singles-pvc-cu 2.5 "
+          "mm2\", "
           "length = \"{} m\", load = \"9 A\", pf = 0.95, Iz = \"24 A\" }}\n",
           w, 1 + w % 3, 5 + (w * 7 + b) % 30);
   }
@@ -79,9 +80,8 @@ void all_nodes(benchmark::State& state) {
     const solver::Walk walked = solver::walk(site_network, tree, solver::Condition::minimum);
     double sum = 0;
     for (const models::Circuit& circuit : site_network.circuits) {
-      const solver::ConductorMatrix z =
-          walked.boards[static_cast<std::size_t>(circuit.board)] +
-          solver::circuit_matrix(site_network, circuit, {}, solver::Condition::minimum);
+      const solver::ConductorMatrix z = walked.boards[static_cast<std::size_t>(circuit.board)] +
+                                        solver::circuit_matrix(site_network, circuit, {}, solver::Condition::minimum);
       sum += solver::fault_current(site_network, site_network.sources[0], z, circuit.conductors,
                                    solver::Condition::minimum, solver::Fault::line_earth)
                  .amps;
@@ -94,8 +94,8 @@ void all_nodes(benchmark::State& state) {
 void all_nodes_general(benchmark::State& state) {
   using solver::Complex;
   const models::Network site_network = network(static_cast<int>(state.range(0)));
-  const solver::SourceTerm term = solver::source_term(site_network, site_network.sources[0], solver::Condition::minimum,
-                                                      solver::Fault::line_earth);
+  const solver::SourceTerm term =
+      solver::source_term(site_network, site_network.sources[0], solver::Condition::minimum, solver::Fault::line_earth);
   const int n_boards = static_cast<int>(site_network.boards.size());
   const int n = n_boards + static_cast<int>(site_network.circuits.size());
   for (auto _ : state) {
@@ -116,7 +116,8 @@ void all_nodes_general(benchmark::State& state) {
       branch(n + from, n + to, z(4, 4));
     };
     for (const models::Submain& s : site_network.submains)
-      run(s.from, s.to, solver::run_matrix(site_network, s.cable, s.length.value, 1, false, solver::Condition::minimum));
+      run(s.from, s.to,
+          solver::run_matrix(site_network, s.cable, s.length.value, 1, false, solver::Condition::minimum));
     for (int c = 0; c < n - n_boards; ++c) {
       const models::Circuit& circuit = site_network.circuits[static_cast<std::size_t>(c)];
       run(circuit.board, n_boards + c, solver::circuit_matrix(site_network, circuit, {}, solver::Condition::minimum));

@@ -146,7 +146,7 @@ std::string file_text(const std::string& path) {
 
 // One case: a mutated netlist, or a sound one with a mutated schedule.
 void run_case(long iteration, const std::vector<std::string>& seeds, const std::filesystem::path& folder,
-                     Counts& counts) {
+              Counts& counts) {
   Dice dice(static_cast<std::uint64_t>(iteration) * 0xD1B54A32D192ED03ULL + 1);
   const std::string& seed = seeds[dice.below(seeds.size())];
   const std::string& other = seeds[dice.below(seeds.size())];
@@ -185,15 +185,16 @@ int main(int argc, char** argv) {
   std::vector<std::string> seeds = {sunder::netlists::starter_netlist("A \"seed\""), kRich};
   for (int k = 3; k < argc; ++k) seeds.push_back(file_text(argv[k]));
   std::error_code status;
-  const std::filesystem::path folder = std::filesystem::temp_directory_path(status) /
-                                       fmt::format("fuzz_netlists_{}_{}", first, iterations);
+  const std::filesystem::path folder =
+      std::filesystem::temp_directory_path(status) / fmt::format("fuzz_netlists_{}_{}", first, iterations);
   std::filesystem::create_directories(folder, status);
   // every seed of ours must be sound itself, or nothing behind the reader is reached
   Counts counts;
   for (std::size_t k = 0; k < 2; ++k) {
     const auto reading = sunder::netlists::read_network_text(seeds[k], "seed.toml");
     if (reading.network && sunder::solver::check_topology(*reading.network).empty()) continue;
-    for (const auto& diagnostic : reading.diagnostics) fmt::print(stderr, "{}", sunder::netlists::format_diagnostic(diagnostic));
+    for (const auto& diagnostic : reading.diagnostics)
+      fmt::print(stderr, "{}", sunder::netlists::format_diagnostic(diagnostic));
     broken(-1, "a seed is not sound", seeds[k]);
   }
   for (long n = first; n < first + iterations; ++n) run_case(n, seeds, folder, counts);

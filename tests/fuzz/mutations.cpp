@@ -13,16 +13,33 @@ namespace {
 
 using namespace std::string_view_literals;
 
-constexpr std::array kNumbers = {"0"sv,     "-1"sv,   "1e9"sv, "1e-9"sv,  "1e308"sv, "-1e308"sv, "nan"sv, "inf"sv,
-                                 "0.0001"sv, "999999"sv, "00"sv,  "1.2.3"sv, "2,5"sv,   "\xC2\xBD"sv, "4e"sv,  "0x10"sv};
-constexpr std::array kUnits = {"mm2"sv, "A"sv,   "kA"sv,  "mA"sv, "ohm"sv, "mohm/m"sv, "m"sv,  "km"sv,
-                               "kV"sv,  "V"sv,   "degC"sv, "%"sv, "s"sv,   "kVA"sv,    "MVA"sv, "furlong"sv};
-constexpr std::array kWords = {"L1"sv,  "L1 L2 L3"sv, "N"sv,    "PE"sv,   "armour"sv, "core + core"sv, "TT"sv,
+constexpr std::array kNumbers = {"0"sv,   "-1"sv,       "1e9"sv,    "1e-9"sv,   "1e308"sv, "-1e308"sv,
+                                 "nan"sv, "inf"sv,      "0.0001"sv, "999999"sv, "00"sv,    "1.2.3"sv,
+                                 "2,5"sv, "\xC2\xBD"sv, "4e"sv,     "0x10"sv};
+constexpr std::array kUnits = {"mm2"sv, "A"sv, "kA"sv,   "mA"sv, "ohm"sv, "mohm/m"sv, "m"sv,   "km"sv,
+                               "kV"sv,  "V"sv, "degC"sv, "%"sv,  "s"sv,   "kVA"sv,    "MVA"sv, "furlong"sv};
+constexpr std::array kWords = {"L1"sv,   "L1 L2 L3"sv, "N"sv,     "PE"sv,     "armour"sv, "core + core"sv, "TT"sv,
                                "TN-S"sv, "true"sv,     "false"sv, "switch"sv, "RCD"sv,    "gG"sv,          "B"sv};
-constexpr std::array kOdd = {"\0"sv,         "\xFF"sv,     "\xC0\x80"sv, "\xEF\xBB\xBF"sv, "\xF0\x9F\x94\x8C"sv,
-                             "\xE2\x80\xAE"sv, "\xED\xA0\x80"sv, "\r"sv,     "\t"sv,           "\""sv,
-                             "\"\"\""sv,      "["sv,        "]"sv,       "{"sv,            "}"sv,
-                             "="sv,           ";"sv,        "#"sv,       "\\u0000"sv,      "[["sv};
+constexpr std::array kOdd = {"\0"sv,
+                             "\xFF"sv,
+                             "\xC0\x80"sv,
+                             "\xEF\xBB\xBF"sv,
+                             "\xF0\x9F\x94\x8C"sv,
+                             "\xE2\x80\xAE"sv,
+                             "\xED\xA0\x80"sv,
+                             "\r"sv,
+                             "\t"sv,
+                             "\""sv,
+                             "\"\"\""sv,
+                             "["sv,
+                             "]"sv,
+                             "{"sv,
+                             "}"sv,
+                             "="sv,
+                             ";"sv,
+                             "#"sv,
+                             "\\u0000"sv,
+                             "[["sv};
 
 std::vector<std::pair<std::size_t, std::size_t>> lines_of(const std::string& text) {
   std::vector<std::pair<std::size_t, std::size_t>> lines;  // start, length with its end
@@ -63,8 +80,12 @@ void change_lines(std::string& text, Dice& dice) {
   const auto [start, length] = lines[dice.below(lines.size())];
   const std::string line = text.substr(start, length);
   switch (dice.below(4)) {
-    case 0: text.erase(start, length); break;
-    case 1: text.insert(start, line); break;
+    case 0:
+      text.erase(start, length);
+      break;
+    case 1:
+      text.insert(start, line);
+      break;
     case 2: {
       text.erase(start, length);
       const auto rest = lines_of(text);
@@ -83,10 +104,18 @@ void change_number(std::string& text, Dice& dice) {
   const auto [start, length] = some_number(text, dice);
   if (length == 0) return;
   switch (dice.below(4)) {
-    case 0: text.replace(start, length, kNumbers[dice.below(kNumbers.size())]); break;
-    case 1: text.insert(start, 1, static_cast<char>('0' + dice.below(10))); break;
-    case 2: text.insert(start + length, 1, static_cast<char>('0' + dice.below(10))); break;
-    default: text.replace(start, length, std::to_string(dice.below(1000))); break;
+    case 0:
+      text.replace(start, length, kNumbers[dice.below(kNumbers.size())]);
+      break;
+    case 1:
+      text.insert(start, 1, static_cast<char>('0' + dice.below(10)));
+      break;
+    case 2:
+      text.insert(start + length, 1, static_cast<char>('0' + dice.below(10)));
+      break;
+    default:
+      text.replace(start, length, std::to_string(dice.below(1000)));
+      break;
   }
 }
 
@@ -161,13 +190,34 @@ std::string mutated(const std::string& text, const std::string& other, Dice& dic
   for (std::size_t n = 1 + dice.below(6); n > 0 && !made.empty(); --n) {
     // values rather than form more often: what still parses goes deeper
     switch (dice.below(16)) {
-      case 0: flip_bytes(made, dice); break;
-      case 1: delete_range(made, dice); break;
-      case 2: case 3: change_lines(made, dice); break;
-      case 4: case 5: case 6: case 7: change_number(made, dice); break;
-      case 8: case 9: change_unit(made, dice); break;
-      case 10: case 11: change_text(made, dice); break;
-      case 12: case 13: swap_texts(made, dice); break;
+      case 0:
+        flip_bytes(made, dice);
+        break;
+      case 1:
+        delete_range(made, dice);
+        break;
+      case 2:
+      case 3:
+        change_lines(made, dice);
+        break;
+      case 4:
+      case 5:
+      case 6:
+      case 7:
+        change_number(made, dice);
+        break;
+      case 8:
+      case 9:
+        change_unit(made, dice);
+        break;
+      case 10:
+      case 11:
+        change_text(made, dice);
+        break;
+      case 12:
+      case 13:
+        swap_texts(made, dice);
+        break;
       case 14:
         if (dice.below(8) == 0) {
           made.resize(dice.below(made.size() + 1));  // cut short
@@ -175,7 +225,9 @@ std::string mutated(const std::string& text, const std::string& other, Dice& dic
           splice(made, other, dice);
         }
         break;
-      default: made.insert(dice.below(made.size() + 1), kOdd[dice.below(kOdd.size())]); break;
+      default:
+        made.insert(dice.below(made.size() + 1), kOdd[dice.below(kOdd.size())]);
+        break;
     }
   }
   return made;

@@ -35,8 +35,7 @@ Complex conductor(const models::Cable& cable, const models::Strand& strand, bool
 // metre.
 Complex earth_loop(const models::Cable& cable, bool hot) {
   Complex admittance = 0;
-  for (const models::Strand& strand : cable.protective)
-    admittance += 1.0 / conductor(cable, strand, hot);
+  for (const models::Strand& strand : cable.protective) admittance += 1.0 / conductor(cable, strand, hot);
   return conductor(cable, cable.line, hot) + 1.0 / admittance;
 }
 
@@ -65,8 +64,7 @@ Complex source_loop(const Site& site, bool hot) {
   const double r = site.losses_kW / site.kVA * base;
   const double z = site.uk_percent / 100 * base;
   const Complex winding(r, std::sqrt(z * z - r * r));
-  const Complex network =
-      (hot ? 1.0 : 1.1) * 160e3 / (site.fault_MVA * 1e6) * Complex(0.0995, 0.995);
+  const Complex network = (hot ? 1.0 : 1.1) * 160e3 / (site.fault_MVA * 1e6) * Complex(0.0995, 0.995);
   return (2.0 * (winding + network) + winding * site.z0_over_z1) / 3.0;
 }
 
@@ -86,12 +84,10 @@ TEST_CASE(
         const Complex metre = earth_loop(circuit.cable, hot);
         const std::string node = models::address(network, circuit);
         const auto ohms = [&](const std::string& place) {
-          return rows.at(std::string(hot ? "minimum " : "maximum ") + place + " line-earth")
-              .loop_ohms;
+          return rows.at(std::string(hot ? "minimum " : "maximum ") + place + " line-earth").loop_ohms;
         };
         if (!circuit.ring) {
-          RC_ASSERT(close(ohms(node),
-                          std::abs(before + metre * (circuit.length.value / circuit.in_parallel))));
+          RC_ASSERT(close(ohms(node), std::abs(before + metre * (circuit.length.value / circuit.in_parallel))));
           continue;
         }
         double worst = circuit.length.value / 4;  // the mid-point, unless a spur's end is farther
@@ -99,8 +95,7 @@ TEST_CASE(
           const double x = circuit.spurs[i].at / circuit.length.value;
           const double metres = circuit.length.value * x * (1 - x) + circuit.spurs[i].length;
           worst = std::max(worst, metres);
-          RC_ASSERT(close(ohms(node + "/spur" + std::to_string(i + 1)),
-                          std::abs(before + metre * metres)));
+          RC_ASSERT(close(ohms(node + "/spur" + std::to_string(i + 1)), std::abs(before + metre * metres)));
         }
         RC_ASSERT(close(ohms(node), std::abs(before + metre * worst)));
       }

@@ -17,9 +17,7 @@ using namespace sunder;
 using laws::Site;
 
 // A current anywhere from a tenth of the rating to five hundred times it.
-double current_near(double In) {
-  return In * std::pow(10.0, *rc::gen::inRange(-1000, 2700) * 0.001);
-}
+double current_near(double In) { return In * std::pow(10.0, *rc::gen::inRange(-1000, 2700) * 0.001); }
 
 TEST_CASE("No library device operates later at its latest than it may at its earliest") {
   laws::check_law([] {
@@ -38,8 +36,7 @@ TEST_CASE("No library device operates later at its latest than it may at its ear
   });
 }
 
-TEST_CASE(
-    "More current never makes a library device slower, neither at its latest nor at its earliest") {
+TEST_CASE("More current never makes a library device slower, neither at its latest nor at its earliest") {
   laws::check_law([] {
     const models::Device& device = *rc::gen::elementOf(laws::library_devices());
     RC_LOG() << device.text << '\n';
@@ -63,8 +60,7 @@ TEST_CASE("The current for a time is the least at which the curve is that fast")
   laws::check_law([] {
     const models::Device& device = *rc::gen::elementOf(laws::library_devices());
     RC_LOG() << device.text << '\n';
-    const models::Curve& curve =
-        device.overcurrent.empty() ? device.residual.latest : device.overcurrent.latest;
+    const models::Curve& curve = device.overcurrent.empty() ? device.residual.latest : device.overcurrent.latest;
     if (curve.empty()) return;
     const double time = std::pow(10.0, *rc::gen::inRange(-1500, 3500) * 0.001);
     const double current = models::current_for(curve, time);
@@ -84,10 +80,8 @@ TEST_CASE("The heat a library device lets through is never below the least that 
     if (device.overcurrent.empty()) return;
     const double current = current_near(device.In);
     RC_LOG() << current << " A\n";
-    const solver::Heat most =
-        solver::greatest_heat(device, current, 1.02 + *rc::gen::inRange(0, 900) * 0.001);
-    RC_ASSERT(std::isinf(most.time) ||
-              solver::least_heat(device, current) <= most.total * (1 + 1e-9));
+    const solver::Heat most = solver::greatest_heat(device, current, 1.02 + *rc::gen::inRange(0, 900) * 0.001);
+    RC_ASSERT(std::isinf(most.time) || solver::least_heat(device, current) <= most.total * (1 + 1e-9));
   });
 }
 
@@ -113,8 +107,7 @@ TEST_CASE("A greater earth-fault loop never turns a disconnection time from not 
       network.sources.front().minimum.line_earth.ohms = ohms;
       std::map<std::string, int> all;
       for (const solver::Finding& finding : solver::run_checks(network, options))
-        if (finding.check == "disconnection time")
-          all.emplace(finding.subject, rank(finding.verdict));
+        if (finding.check == "disconnection time") all.emplace(finding.subject, rank(finding.verdict));
       return all;
     };
     const double Ze = std::pow(10.0, *rc::gen::inRange(-2000, 2000) * 0.001);

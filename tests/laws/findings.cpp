@@ -25,15 +25,13 @@ TEST_CASE(
     "needs") {
   laws::check_law([] {
     for (const solver::Finding& finding : findings_of(*laws::sites())) {
-      RC_LOG() << finding.check << " of " << finding.subject << ": " << word(finding.verdict)
-               << ", " << finding.margin << '\n';
+      RC_LOG() << finding.check << " of " << finding.subject << ": " << word(finding.verdict) << ", " << finding.margin
+               << '\n';
       if (finding.verdict == Verdict::meets) RC_ASSERT(!(finding.margin < -1e-12));
       if (finding.verdict == Verdict::fails) RC_ASSERT(!(finding.margin > 1e-12));
-      if (finding.verdict == Verdict::undecided)
-        RC_ASSERT(!finding.needs.empty() || !finding.reason.empty());
+      if (finding.verdict == Verdict::undecided) RC_ASSERT(!finding.needs.empty() || !finding.reason.empty());
       if (std::isnan(finding.value) || std::isnan(finding.limit))
-        RC_ASSERT(!finding.reason.empty() || finding.verdict == Verdict::noted ||
-                  finding.verdict == Verdict::meets);
+        RC_ASSERT(!finding.reason.empty() || finding.verdict == Verdict::noted || finding.verdict == Verdict::meets);
     }
   });
 }
@@ -49,8 +47,7 @@ TEST_CASE(
     for (const solver::Finding& finding : findings)
       if (finding.check == "conductor heating") heating.emplace(finding.subject, finding.verdict);
     for (const solver::Finding& finding : findings) {
-      if (finding.check != "fault clearance" || heating.at(finding.subject) != Verdict::meets)
-        continue;
+      if (finding.check != "fault clearance" || heating.at(finding.subject) != Verdict::meets) continue;
       RC_LOG() << finding.subject << ": " << finding.summary << '\n';
       const bool in_time = !std::isnan(finding.value) && finding.value <= 5;
       if (in_time) RC_ASSERT(finding.verdict == Verdict::meets);

@@ -89,8 +89,7 @@ TEST_CASE(
         bool unmet = false;
         bool worse = false;
         for (const auto& [name, now] : after) {
-          const std::string of =
-              name.substr(name.find('\n') + 1, name.rfind('\n') - name.find('\n') - 1);
+          const std::string of = name.substr(name.find('\n') + 1, name.rfind('\n') - name.find('\n') - 1);
           unmet = unmet || (of == finding.subject && now < 2);
           const auto earlier = before.find(name);
           worse = worse || (earlier != before.end() && now < earlier->second);

@@ -16,10 +16,7 @@ using solver::Selectivity;
 
 // What selectivity at one current means: the downstream device is sure to be done before the
 // upstream one may begin, or lets through less than may melt it.
-bool selective_at(const models::Device& down,
-                  const models::Device& up,
-                  double current,
-                  double kappa) {
+bool selective_at(const models::Device& down, const models::Device& up, double current, double kappa) {
   const double latest = down.overcurrent.latest.time_at(current);
   const double earliest = up.overcurrent.earliest.time_at(current);
   if (std::isfinite(latest) && !up.overcurrent.earliest.empty() && latest <= earliest) return true;
@@ -30,8 +27,8 @@ bool selective_at(const models::Device& down,
 // Fuses of one family at 1.6 : 1 are selective because the standard makes them so, although its
 // gates at long times are too far apart to show it.
 bool built_selective(const models::Device& down, const models::Device& up) {
-  return down.kind == models::DeviceKind::fuse && up.kind == down.kind &&
-         up.family == down.family && down.by_gates && up.by_gates && up.In >= 1.55 * down.In;
+  return down.kind == models::DeviceKind::fuse && up.kind == down.kind && up.family == down.family && down.by_gates &&
+         up.by_gates && up.In >= 1.55 * down.In;
 }
 
 TEST_CASE("The limit of selectivity is where both of its conditions have ceased to hold") {
@@ -64,8 +61,7 @@ TEST_CASE("The limit of selectivity is where both of its conditions have ceased 
         RC_ASSERT(!selective_at(down, up, first, kappa));
         break;
       case Selectivity::undecided:
-        RC_ASSERT(available <= first ||
-                  (up.overcurrent.earliest.empty() && up.let_through.pre_arcing_min <= 0));
+        RC_ASSERT(available <= first || (up.overcurrent.earliest.empty() && up.let_through.pre_arcing_min <= 0));
         break;
     }
   });

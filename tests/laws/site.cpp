@@ -69,32 +69,21 @@ CircuitText circuit(const std::string& board, int number, const Limits& limits) 
   made.board = board;
   made.name = "W" + std::to_string(number);
   made.use = *rc::gen::element<std::string>("sockets", "fixed", "lighting", "distribution");
-  made.device = *rc::gen::element<std::string>("B 6 A 6 kA",
-                                               "B 16 A 10 kA class 3",
-                                               "B 32 A 10 kA",
-                                               "C 10 A 6 kA",
-                                               "C 32 A 10 kA class 3",
-                                               "D 16 A 10 kA",
-                                               "gG 20 A",
-                                               "gG 32 A",
-                                               "B 32 A 6 kA 30 mA A",
-                                               "BS 88-2 20 A",
-                                               "BS 88-3 32 A",
-                                               "BS 3036 30 A");
+  made.device = *rc::gen::element<std::string>("B 6 A 6 kA", "B 16 A 10 kA class 3", "B 32 A 10 kA", "C 10 A 6 kA",
+                                               "C 32 A 10 kA class 3", "D 16 A 10 kA", "gG 20 A", "gG 32 A",
+                                               "B 32 A 6 kA 30 mA A", "BS 88-2 20 A", "BS 88-3 32 A", "BS 3036 30 A");
   made.phases = *rc::gen::weightedElement<std::string>(
       {{4, "L1"}, {3, "L2"}, {2, "L3"}, {3, "L1 L2 L3"}, {2, "L1 L2 L3 N"}, {1, "L2 L3"}});
   made.run = run(kSingleCables, between(5, 900, 0.1), limits.single_cables);
   if (made.phases == "L1 L2 L3" || made.phases == "L2 L3")
     made.run = run(kThreeCables, made.run.metres, limits.single_cables);
-  if (made.phases == "L1 L2 L3 N")
-    made.run = run(kFourCables, made.run.metres, limits.single_cables);
+  if (made.phases == "L1 L2 L3 N") made.run = run(kFourCables, made.run.metres, limits.single_cables);
   made.load = between(1, 200, 0.1);
   made.Iz = between(10, 60, 1);
   if (limits.sensible) {
     made.use = *rc::gen::element<std::string>("fixed", "distribution");
     const int In = *rc::gen::element(16, 20, 32);
-    made.device =
-        *rc::gen::element<std::string>("B", "C") + " " + std::to_string(In) + " A 10 kA class 3";
+    made.device = *rc::gen::element<std::string>("B", "C") + " " + std::to_string(In) + " A 10 kA class 3";
     made.load = 0.5 * In;
     made.Iz = 1.2 * In;
   }
@@ -103,8 +92,7 @@ CircuitText circuit(const std::string& board, int number, const Limits& limits) 
     made.run.in_parallel = 1;
     made.run.metres += 20;
     const int spurs = *rc::gen::inRange(0, 3);
-    for (int i = 0; i < spurs; ++i)
-      made.spurs.push_back({made.run.metres * between(1, 99, 0.01), between(1, 80, 0.1)});
+    for (int i = 0; i < spurs; ++i) made.spurs.push_back({made.run.metres * between(1, 99, 0.01), between(1, 80, 0.1)});
   }
   return made;
 }
@@ -124,8 +112,7 @@ Site random_site(const Limits& limits) {
     site.Ze = between(1, 30, 1);
     site.electrode = between(1, 180, 1);
   }
-  if (limits.declared_angle || *rc::gen::inRange(0, 2) == 0)
-    site.power_factor = between(10, 100, 0.01);
+  if (limits.declared_angle || *rc::gen::inRange(0, 2) == 0) site.power_factor = between(10, 100, 0.01);
   site.kVA = *rc::gen::element<double>(100, 315, 500, 1000);
   site.uk_percent = between(30, 60, 0.1);
   site.losses_kW = site.kVA * between(5, 25, 1e-3);
@@ -141,8 +128,8 @@ Site random_site(const Limits& limits) {
       submain.name = "S" + std::to_string(b);
       submain.from = "B" + std::to_string(*rc::gen::inRange(0, b));
       submain.to = name;
-      submain.device = *rc::gen::element<std::string>(
-          "gG 63 A", "gG 80 A", "gG 100 A", "C 63 A 10 kA", "BS 88-3 100 A");
+      submain.device =
+          *rc::gen::element<std::string>("gG 63 A", "gG 80 A", "gG 100 A", "C 63 A 10 kA", "BS 88-3 100 A");
       submain.run = run(kSubmainCables, between(3, 120, 1), limits.single_cables);
       site.submains.push_back(submain);
     }
@@ -162,37 +149,31 @@ std::string run_text(const RunText& run, const char* separator) {
 
 std::string source_table(const Site& site) {
   const std::string name = site.transformer ? "[transformer.grid]\n" : "[supply.grid]\n";
-  std::string text =
-      name + "feeds = \"B0\"\nvoltage = \"230/400 V\"\nearthing = \"" + site.earthing + "\"\n";
+  std::string text = name + "feeds = \"B0\"\nvoltage = \"230/400 V\"\nearthing = \"" + site.earthing + "\"\n";
   if (site.transformer) {
-    text += "rating = \"" + digits(site.kVA) + " kVA\"\nuk = \"" + digits(site.uk_percent) +
-            " %\"\nlosses = \"" + digits(site.losses_kW) +
-            " kW\"\nz0_over_z1 = " + digits(site.z0_over_z1) + "\nfault_level = \"" +
+    text += "rating = \"" + digits(site.kVA) + " kVA\"\nuk = \"" + digits(site.uk_percent) + " %\"\nlosses = \"" +
+            digits(site.losses_kW) + " kW\"\nz0_over_z1 = " + digits(site.z0_over_z1) + "\nfault_level = \"" +
             digits(site.fault_MVA) + " MVA\"\n";
     return text;
   }
-  const std::string angle =
-      site.power_factor < 0 ? "" : ", power_factor = " + digits(site.power_factor);
+  const std::string angle = site.power_factor < 0 ? "" : ", power_factor = " + digits(site.power_factor);
   return text + "maximum = { three_phase = \"" + digits(site.three_phase_ohms) + " ohm\"" + angle +
-         " }\nminimum = { Ze = \"" + digits(site.Ze) + " ohm\", Zn = \"" + digits(site.Zn) +
-         " ohm\"" + angle + " }\n";
+         " }\nminimum = { Ze = \"" + digits(site.Ze) + " ohm\", Zn = \"" + digits(site.Zn) + " ohm\"" + angle + " }\n";
 }
 
 std::string circuit_text(const CircuitText& circuit) {
-  std::string text = circuit.name + " = { device = \"" + circuit.device + "\", use = \"" +
-                     circuit.use + "\", phases = \"" + circuit.phases + "\", " +
-                     run_text(circuit.run, ", ");
+  std::string text = circuit.name + " = { device = \"" + circuit.device + "\", use = \"" + circuit.use +
+                     "\", phases = \"" + circuit.phases + "\", " + run_text(circuit.run, ", ");
   if (circuit.ring) text += "ring = true, ";
   if (!circuit.spurs.empty()) {
     text += "spurs = [";
     for (std::size_t i = 0; i < circuit.spurs.size(); ++i) {
-      text += std::string(i == 0 ? "" : ", ") + "{ at = \"" + digits(circuit.spurs[i].at) +
-              " m\", length = \"" + digits(circuit.spurs[i].metres) + " m\" }";
+      text += std::string(i == 0 ? "" : ", ") + "{ at = \"" + digits(circuit.spurs[i].at) + " m\", length = \"" +
+              digits(circuit.spurs[i].metres) + " m\" }";
     }
     text += "], ";
   }
-  return text + "Iz = \"" + digits(circuit.Iz) + " A\", load = \"" + digits(circuit.load) +
-         " A\" }\n";
+  return text + "Iz = \"" + digits(circuit.Iz) + " A\", load = \"" + digits(circuit.load) + " A\" }\n";
 }
 
 }  // namespace
@@ -211,9 +192,8 @@ std::vector<std::string> tables(const Site& site) {
   std::vector<std::string> all = {source_table(site)};
   for (const std::string& board : site.boards) all.push_back("[board." + board + "]\n");
   for (const SubmainText& submain : site.submains) {
-    all.push_back("[submain." + submain.name + "]\nfrom = \"" + submain.from + "\"\nto = \"" +
-                  submain.to + "\"\ndevice = \"" + submain.device + "\"\n" +
-                  run_text(submain.run, "\n"));
+    all.push_back("[submain." + submain.name + "]\nfrom = \"" + submain.from + "\"\nto = \"" + submain.to +
+                  "\"\ndevice = \"" + submain.device + "\"\n" + run_text(submain.run, "\n"));
   }
   for (const std::string& board : site.boards) {
     std::string table = "[circuit." + board + "]\n";
@@ -226,8 +206,7 @@ std::vector<std::string> tables(const Site& site) {
     if (any) all.push_back(table);
   }
   if (site.electrode > 0) {
-    all.push_back("[electrode.rod]\nboard = \"B0\"\nresistance = \"" + digits(site.electrode) +
-                  " ohm\"\n");
+    all.push_back("[electrode.rod]\nboard = \"B0\"\nresistance = \"" + digits(site.electrode) + " ohm\"\n");
   }
   return all;
 }
@@ -245,8 +224,7 @@ models::Network network_of(const std::string& text) {
     if (diagnostic.severity != netlists::Severity::warning)
       complaints += netlists::format_diagnostic(diagnostic) + "\n";
   if (!reading.network) RC_FAIL("the netlist does not read:\n" + complaints + text);
-  for (const solver::Trouble& trouble : solver::check_topology(*reading.network))
-    RC_FAIL(trouble.message);
+  for (const solver::Trouble& trouble : solver::check_topology(*reading.network)) RC_FAIL(trouble.message);
   return std::move(*reading.network);
 }
 

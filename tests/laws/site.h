@@ -49,7 +49,7 @@ struct Limits {
   bool supplies_only = false;   ///< no transformer
   bool tn_only = false;
   bool single_cables = false;  ///< none in parallel
-  bool sensible = false;  ///< as designed but for the lengths: rated, loaded and limited in energy
+  bool sensible = false;       ///< as designed but for the lengths: rated, loaded and limited in energy
 };
 
 struct Site {
@@ -79,9 +79,7 @@ struct Site {
 
 /// The network of a netlist; aborts the property with the diagnostics if it does not read.
 [[nodiscard]] models::Network network_of(const std::string& text);
-[[nodiscard]] inline models::Network network_of(const Site& site) {
-  return network_of(netlist(site));
-}
+[[nodiscard]] inline models::Network network_of(const Site& site) { return network_of(netlist(site)); }
 
 void showValue(const Site& site, std::ostream& out);
 

@@ -37,8 +37,7 @@ TEST_CASE(
     const Rows in_amps = laws::rows_of(laws::network_of(text));
     RC_ASSERT(close(in_amps.at("maximum B0 three-phase").current, amps));
     for (const auto& [name, row] : in_amps)
-      if (row.known && row.fault == solver::Fault::three_phase)
-        RC_ASSERT(close(row.current, ohms.at(name).current));
+      if (row.known && row.fault == solver::Fault::three_phase) RC_ASSERT(close(row.current, ohms.at(name).current));
   });
 }
 
@@ -55,10 +54,8 @@ TEST_CASE(
     site.power_factor = 0.9 + *rc::gen::inRange(0, 101) * 0.001;
     for (const auto& [key, row] : laws::rows_of(laws::network_of(site))) {
       if (!row.known) continue;
-      if (row.condition == solver::Condition::maximum)
-        RC_ASSERT(row.current <= open.at(key).current * (1 + 1e-9));
-      if (row.condition == solver::Condition::minimum)
-        RC_ASSERT(row.current >= open.at(key).current * (1 - 1e-9));
+      if (row.condition == solver::Condition::maximum) RC_ASSERT(row.current <= open.at(key).current * (1 + 1e-9));
+      if (row.condition == solver::Condition::minimum) RC_ASSERT(row.current >= open.at(key).current * (1 - 1e-9));
     }
   });
 }
@@ -73,8 +70,7 @@ TEST_CASE("States that connect the same source give the results of one state") {
     for (const char* state : {"day", "night"}) {
       const Rows rows = laws::rows_of(two, state);
       RC_ASSERT(rows.size() == single.size());
-      for (const auto& [key, row] : rows)
-        RC_ASSERT(!row.known || row.current == single.at(key).current);
+      for (const auto& [key, row] : rows) RC_ASSERT(!row.known || row.current == single.at(key).current);
     }
     solver::CheckOptions options;
     options.remedies = false;

@@ -38,8 +38,7 @@ TEST_CASE("On either side of a flip the netlist checks as the sweep says") {
     if (!submain) site.circuits[circuit].spurs.clear();
     laws::RunText& run = submain ? site.submains[chosen].run : site.circuits[circuit].run;
     const std::string address =
-        submain ? site.submains[chosen].name
-                : site.circuits[circuit].board + "/" + site.circuits[circuit].name;
+        submain ? site.submains[chosen].name : site.circuits[circuit].board + "/" + site.circuits[circuit].name;
     solver::VaryRequest request;
     request.key = address + ".length";
     request.from = metres(0.5);

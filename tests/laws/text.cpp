@@ -76,22 +76,11 @@ TEST_CASE("The order of tables and of the lines in them changes no current and n
 TEST_CASE("A quantity that is written with twelve digits reads back as itself") {
   using models::Quantity;
   laws::check_law([] {
-    const auto quantity = *rc::gen::element(Quantity::length,
-                                            Quantity::area,
-                                            Quantity::current,
-                                            Quantity::voltage,
-                                            Quantity::impedance,
-                                            Quantity::impedance_per_length,
-                                            Quantity::apparent_power,
-                                            Quantity::power,
-                                            Quantity::time,
-                                            Quantity::temperature,
-                                            Quantity::ratio,
-                                            Quantity::percentage,
-                                            Quantity::let_through,
-                                            Quantity::adiabatic_k,
-                                            Quantity::voltage_drop_per,
-                                            Quantity::count);
+    const auto quantity =
+        *rc::gen::element(Quantity::length, Quantity::area, Quantity::current, Quantity::voltage, Quantity::impedance,
+                          Quantity::impedance_per_length, Quantity::apparent_power, Quantity::power, Quantity::time,
+                          Quantity::temperature, Quantity::ratio, Quantity::percentage, Quantity::let_through,
+                          Quantity::adiabatic_k, Quantity::voltage_drop_per, Quantity::count);
     const double value = *rc::gen::inRange(1, 1000000) * std::pow(10.0, *rc::gen::inRange(-9, 4));
     const std::string text = models::format_quantity(value, quantity, 12);
     RC_LOG() << text << '\n';
@@ -104,10 +93,7 @@ TEST_CASE("A quantity that is written with twelve digits reads back as itself") 
 TEST_CASE("What is printed with four digits is within half a unit of the fourth") {
   using models::Quantity;
   laws::check_law([] {
-    const auto quantity = *rc::gen::element(Quantity::length,
-                                            Quantity::current,
-                                            Quantity::impedance,
-                                            Quantity::time,
+    const auto quantity = *rc::gen::element(Quantity::length, Quantity::current, Quantity::impedance, Quantity::time,
                                             Quantity::let_through);
     const double value = *rc::gen::inRange(1, 1000000) * std::pow(10.0, *rc::gen::inRange(-6, 3));
     const auto read = models::parse_quantity(models::format_quantity(value, quantity), quantity);

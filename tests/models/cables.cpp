@@ -16,24 +16,18 @@ using sunder::tests::construction;
 
 constexpr double kMm2 = 1e-6;
 
-Cable resolved(
-    const std::string& name, double mm2, const CpcChoice& cpc, int n_loaded, bool neutral = true) {
+Cable resolved(const std::string& name, double mm2, const CpcChoice& cpc, int n_loaded, bool neutral = true) {
   Cable cable;
-  const auto error = resolve_cable(construction(name),
-                                   mm2 * kMm2,
-                                   cpc,
-                                   n_loaded,
-                                   neutral,
-                                   construction("singles-pvc-cu"),
-                                   cable);
+  const auto error =
+      resolve_cable(construction(name), mm2 * kMm2, cpc, n_loaded, neutral, construction("singles-pvc-cu"), cable);
   if (error) FAIL(error->message);
   return cable;
 }
 
 std::string refused(const std::string& name, double mm2, const CpcChoice& cpc, int n_loaded) {
   Cable cable;
-  const auto error = resolve_cable(
-      construction(name), mm2 * kMm2, cpc, n_loaded, true, construction("singles-pvc-cu"), cable);
+  const auto error =
+      resolve_cable(construction(name), mm2 * kMm2, cpc, n_loaded, true, construction("singles-pvc-cu"), cable);
   return error ? error->message : "accepted";
 }
 
@@ -95,15 +89,11 @@ TEST_CASE("Singles bring a protective single of the size asked for") {
 }
 
 TEST_CASE("Sizes, armour and protective conductors that do not exist are refused by name") {
-  CHECK(refused("swa-xlpe-cu-4c", 30, armour(), 4) ==
-        "'swa-xlpe-cu-4c' has no 30 mm2; the nearest are 25 and 35 mm2");
-  CHECK(refused("swa-xlpe-cu-4c", 1, armour(), 4) ==
-        "'swa-xlpe-cu-4c' has no 1 mm2; its smallest is 1.5 mm2");
-  CHECK(refused("swa-xlpe-cu-4c", 1000, armour(), 4) ==
-        "'swa-xlpe-cu-4c' has no 1000 mm2; its largest is 400 mm2");
+  CHECK(refused("swa-xlpe-cu-4c", 30, armour(), 4) == "'swa-xlpe-cu-4c' has no 30 mm2; the nearest are 25 and 35 mm2");
+  CHECK(refused("swa-xlpe-cu-4c", 1, armour(), 4) == "'swa-xlpe-cu-4c' has no 1 mm2; its smallest is 1.5 mm2");
+  CHECK(refused("swa-xlpe-cu-4c", 1000, armour(), 4) == "'swa-xlpe-cu-4c' has no 1000 mm2; its largest is 400 mm2");
   CHECK(refused("singles-pvc-cu", 4, armour(), 2) == "'singles-pvc-cu' 4 mm2 has no armour");
-  CHECK(refused("singles-pvc-cu", 4, built_in(), 2) ==
-        "'singles-pvc-cu' has no protective conductor of its own");
+  CHECK(refused("singles-pvc-cu", 4, built_in(), 2) == "'singles-pvc-cu' has no protective conductor of its own");
   CpcChoice wrong = built_in();
   wrong.core_area = 2.5 * kMm2;
   CHECK(refused("flat-pvc-cu", 2.5, wrong, 2) ==
@@ -168,8 +158,7 @@ TEST_CASE("Resistances at 70 degC are those of the handbook") {
     double mm2;
     const char* printed;
   };
-  const auto row = GENERATE(
-      values<Row>({{2.5, "8.868"}, {4, "5.518"}, {6, "3.688"}, {25, ".870"}, {35, ".627"}}));
+  const auto row = GENERATE(values<Row>({{2.5, "8.868"}, {4, "5.518"}, {6, "3.688"}, {25, ".870"}, {35, ".627"}}));
   const double r20 = resolved("multicore-pvc-cu-4c", row.mm2, CpcChoice{}, 4).line.r20;
   const double alpha = alpha20(sunder::tests::rules("IEC 60364"), Material::copper);
   // The handbook multiplies by 1.197 (rounded up), hence 0.1 %.

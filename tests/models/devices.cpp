@@ -79,8 +79,7 @@ TEST_CASE("Breakers of types B, C and D give the loop impedances of Table 41.3")
   }));
   const double time = GENERATE(0.4, 5.0);
   CAPTURE(row.type, row.In, time);
-  CHECK_THAT(0.95 * 230 / current_for(resolved(row.type, row.In).overcurrent.latest, time),
-             Printed(row.printed));
+  CHECK_THAT(0.95 * 230 / current_for(resolved(row.type, row.In).overcurrent.latest, time), Printed(row.printed));
 }
 
 TEST_CASE("A maker's own multiples replace the band and leave the delayed trip unknown") {
@@ -125,15 +124,13 @@ TEST_CASE("Device texts that mean nothing are refused in one sentence") {
 
   DeviceSpec bad = spec("B", 16);
   bad.energy_class = 3;
-  CHECK(refusal(bad) ==
-        "energy class 3 needs the breaking capacity, such as 'B 16 A 6 kA class 3'");
+  CHECK(refusal(bad) == "energy class 3 needs the breaking capacity, such as 'B 16 A 6 kA class 3'");
   bad.Icn = 15000;
   CHECK(refusal(bad) == "EN 60898-1 has no energy class 3 for type B of 16 A and 15 kA");
   bad.energy_class = 0;
   bad.multiple_low = 10;
   bad.multiple_high = 7;
-  CHECK(refusal(bad) ==
-        "instantaneous multiples 10 and 7 are out of order: above 1, the lower one first");
+  CHECK(refusal(bad) == "instantaneous multiples 10 and 7 are out of order: above 1, the lower one first");
 
   DeviceSpec fuse = spec("gG", 80);
   fuse.energy_class = 3;
@@ -240,20 +237,16 @@ TEST_CASE("British fuses give the tabulated loop impedances") {
     double printed;
   };
   const auto row = GENERATE(values<Row>({
-      {"BS 88-2", 6, 0.4, 8.21},  {"BS 88-2", 10, 0.4, 4.89}, {"BS 88-2", 16, 0.4, 2.56},
-      {"BS 88-2", 20, 0.4, 1.77}, {"BS 88-2", 25, 0.4, 1.35}, {"BS 88-2", 32, 0.4, 1.04},
-      {"BS 88-2", 6, 5, 12.8},    {"BS 88-2", 10, 5, 7.19},   {"BS 88-2", 32, 5, 1.84},
-      {"BS 88-2", 40, 5, 1.35},   {"BS 88-2", 63, 5, 0.82},   {"BS 88-2", 80, 5, 0.57},
-      {"BS 88-2", 125, 5, 0.34},  {"BS 88-2", 160, 5, 0.28},  {"BS 88-2", 200, 5, 0.19},
-      {"BS 88-3", 5, 0.4, 10.45}, {"BS 88-3", 16, 0.4, 2.42}, {"BS 88-3", 32, 0.4, 0.96},
-      {"BS 88-3", 45, 5, 1.04},   {"BS 88-3", 80, 5, 0.53},   {"BS 88-3", 100, 5, 0.40},
-      {"BS 3036", 5, 0.4, 9.58},  {"BS 3036", 15, 0.4, 2.55}, {"BS 3036", 20, 0.4, 1.77},
-      {"BS 3036", 30, 0.4, 1.09}, {"BS 3036", 5, 5, 17.7},    {"BS 3036", 15, 5, 5.35},
-      {"BS 3036", 30, 5, 2.64},   {"BS 3036", 45, 5, 1.59},   {"BS 3036", 60, 5, 1.12},
-      {"BS 3036", 100, 5, 0.53},  {"BS 1361", 5, 0.4, 10.45}, {"BS 1361", 15, 0.4, 3.28},
-      {"BS 1361", 30, 0.4, 1.15}, {"BS 1361", 45, 5, 0.96},   {"BS 1361", 100, 5, 0.36},
-      {"BS 1362", 3, 0.4, 16.4},  {"BS 1362", 13, 0.4, 2.42}, {"BS 1362", 3, 5, 23.2},
-      {"BS 1362", 13, 5, 3.83},
+      {"BS 88-2", 6, 0.4, 8.21},  {"BS 88-2", 10, 0.4, 4.89}, {"BS 88-2", 16, 0.4, 2.56}, {"BS 88-2", 20, 0.4, 1.77},
+      {"BS 88-2", 25, 0.4, 1.35}, {"BS 88-2", 32, 0.4, 1.04}, {"BS 88-2", 6, 5, 12.8},    {"BS 88-2", 10, 5, 7.19},
+      {"BS 88-2", 32, 5, 1.84},   {"BS 88-2", 40, 5, 1.35},   {"BS 88-2", 63, 5, 0.82},   {"BS 88-2", 80, 5, 0.57},
+      {"BS 88-2", 125, 5, 0.34},  {"BS 88-2", 160, 5, 0.28},  {"BS 88-2", 200, 5, 0.19},  {"BS 88-3", 5, 0.4, 10.45},
+      {"BS 88-3", 16, 0.4, 2.42}, {"BS 88-3", 32, 0.4, 0.96}, {"BS 88-3", 45, 5, 1.04},   {"BS 88-3", 80, 5, 0.53},
+      {"BS 88-3", 100, 5, 0.40},  {"BS 3036", 5, 0.4, 9.58},  {"BS 3036", 15, 0.4, 2.55}, {"BS 3036", 20, 0.4, 1.77},
+      {"BS 3036", 30, 0.4, 1.09}, {"BS 3036", 5, 5, 17.7},    {"BS 3036", 15, 5, 5.35},   {"BS 3036", 30, 5, 2.64},
+      {"BS 3036", 45, 5, 1.59},   {"BS 3036", 60, 5, 1.12},   {"BS 3036", 100, 5, 0.53},  {"BS 1361", 5, 0.4, 10.45},
+      {"BS 1361", 15, 0.4, 3.28}, {"BS 1361", 30, 0.4, 1.15}, {"BS 1361", 45, 5, 0.96},   {"BS 1361", 100, 5, 0.36},
+      {"BS 1362", 3, 0.4, 16.4},  {"BS 1362", 13, 0.4, 2.42}, {"BS 1362", 3, 5, 23.2},    {"BS 1362", 13, 5, 3.83},
   }));
   CAPTURE(row.name, row.In, row.time);
   const double current = current_for(resolved(row.name, row.In).overcurrent.latest, row.time);
@@ -273,8 +266,7 @@ TEST_CASE(
         if (device.overcurrent.earliest.empty()) break;
         REQUIRE(device.overcurrent.earliest.time_at(current) <= latest.time_at(current));
       }
-      if (each.form != DeviceFamily::Form::points || device.by_gates || each.name == "BS 1362")
-        continue;
+      if (each.form != DeviceFamily::Form::points || device.by_gates || each.name == "BS 1362") continue;
       // Ten percent between neighbours for the arc and five for reading a figure.
       for (std::size_t i = 1; i < latest.points.size(); ++i) {
         const CurvePoint& a = latest.points[i - 1];
@@ -300,8 +292,7 @@ TEST_CASE("A semi-enclosed fuse needs a larger cable and bounds no let-through")
   CHECK(fuse.let_through.basis == LetThrough::Basis::none);
 }
 
-TEST_CASE(
-    "A cartridge fuse without limits of its own lets through no more than at its 0.4 s point") {
+TEST_CASE("A cartridge fuse without limits of its own lets through no more than at its 0.4 s point") {
   const Device fuse = resolved("BS 88-3", 32);
   CHECK(fuse.let_through.basis == LetThrough::Basis::falling);
   CHECK(fuse.let_through.total == Approx(240.0 * 240.0 * 0.4));

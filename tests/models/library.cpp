@@ -62,8 +62,7 @@ TEST_CASE("Resistance times area of every conductor is the resistivity of its me
 }
 
 // Lay and tolerance of wire armour: 1.08 to 1.23 over all cells of BS 5467.
-TEST_CASE(
-    "Resistance times area of every armour is the resistivity of steel, lay and tolerance added") {
+TEST_CASE("Resistance times area of every armour is the resistivity of steel, lay and tolerance added") {
   for (const CableConstruction& cable : library().constructions) {
     for (const CableSize& size : cable.sizes) {
       if (size.armour_area <= 0) continue;
@@ -91,8 +90,7 @@ TEST_CASE("No cable or breaker of the library rests on a value of low confidence
   for (const CableConstruction& cable : library().constructions) {
     CAPTURE(cable.name);
     for (const CableSize& size : cable.sizes) {
-      CHECK(worse(worse(size.confidence, size.x_confidence), size.armour_confidence) <
-            Confidence::low);
+      CHECK(worse(worse(size.confidence, size.x_confidence), size.armour_confidence) < Confidence::low);
     }
   }
   for (const char* name : {"B", "C", "D", "RCD"}) {
@@ -102,8 +100,7 @@ TEST_CASE("No cable or breaker of the library rests on a value of low confidence
 
 std::string only_error(const std::string& text) {
   const auto parsed = parse_library({{"own.toml", text}});
-  return parsed.errors.size() == 1 ? parsed.errors[0]
-                                   : std::to_string(parsed.errors.size()) + " errors";
+  return parsed.errors.size() == 1 ? parsed.errors[0] : std::to_string(parsed.errors.size()) + " errors";
 }
 
 const std::string kCable =
@@ -126,14 +123,11 @@ TEST_CASE("Defects of a data file are named with their place") {
   CHECK(only_error("[cable.x\n").substr(0, 11) == "own.toml:1:");
   CHECK(only_error(kCable + kSize + "colour = 'red'\n") == "own.toml: x: unknown key 'colour'");
   CHECK(only_error(kCable) == "own.toml: x: 'sizes' is missing");
-  CHECK(only_error(
-            kCable +
-            "sizes = [{ size = '1.5', r20 = '12.1 mohm/m', x = '0.1 mohm/m', status = 'found', "
-            "x_status = 'found' }]\n") ==
+  CHECK(only_error(kCable + "sizes = [{ size = '1.5', r20 = '12.1 mohm/m', x = '0.1 mohm/m', status = 'found', "
+                            "x_status = 'found' }]\n") ==
         "own.toml: x, sizes 1: 'size': '1.5' has no unit; an area is written in mm2, cm2, m2");
-  CHECK(only_error(kCable +
-                   "sizes = [{ size = '1.5 mm2', r20 = '12.1 mohm/m', x = '0.1 mohm/m', status = "
-                   "'guess', x_status = 'found' }]\n") ==
+  CHECK(only_error(kCable + "sizes = [{ size = '1.5 mm2', r20 = '12.1 mohm/m', x = '0.1 mohm/m', status = "
+                            "'guess', x_status = 'found' }]\n") ==
         "own.toml: x, sizes 1: 'status' has the unknown word 'guess'");
   CHECK(only_error("[widget.x]\n") == "own.toml: unknown kind 'widget'");
   const auto twice = parse_library({{"a.toml", kCable + kSize}, {"b.toml", kCable + kSize}});

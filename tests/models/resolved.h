@@ -15,23 +15,18 @@ namespace sunder::tests {
 /// The item of that name; the test fails where there is none.
 template <class T>
 const T& named(const std::vector<T>& items, const std::string& name) {
-  const auto found =
-      std::find_if(items.begin(), items.end(), [&](const T& item) { return item.name == name; });
+  const auto found = std::find_if(items.begin(), items.end(), [&](const T& item) { return item.name == name; });
   if (found == items.end()) FAIL("no '" << name << "' in the library");
   return *found;
 }
 
-inline const models::DeviceFamily& family(const std::string& name) {
-  return named(netlists::library().families, name);
-}
+inline const models::DeviceFamily& family(const std::string& name) { return named(netlists::library().families, name); }
 
 inline const models::CableConstruction& construction(const std::string& name) {
   return named(netlists::library().constructions, name);
 }
 
-inline const models::RuleSet& rules(const std::string& name) {
-  return named(netlists::library().rule_sets, name);
-}
+inline const models::RuleSet& rules(const std::string& name) { return named(netlists::library().rule_sets, name); }
 
 /// The device of `spec`, resolved with the library; the test fails where it cannot be.
 inline models::Device resolved(const models::DeviceSpec& spec) {

@@ -41,8 +41,8 @@ TEST_CASE("Every k of the rule sets follows from the constants of IEC 60949") {
   for (const AdiabaticRow& row : rules(name).k) {
     CAPTURE(word(row.material), word(row.place), row.insulation, row.initial_degc, row.final_degc);
     const Constants c = constants(row.material);
-    const double k = std::sqrt(c.heat * (c.beta + 20) / c.rho *
-                               std::log((c.beta + row.final_degc) / (c.beta + row.initial_degc)));
+    const double k =
+        std::sqrt(c.heat * (c.beta + 20) / c.rho * std::log((c.beta + row.final_degc) / (c.beta + row.initial_degc)));
     CHECK(row.k / 1e6 == Approx(k).margin(1.0));
   }
 }

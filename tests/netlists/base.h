@@ -63,9 +63,9 @@ inline std::string said(const Reading& reading) {
 }
 
 struct Complaint {
-  int line;                ///< of the base that is replaced; 0: appended
-  std::string_view text;   ///< what stands there instead
-  std::string_view said;   ///< everything that is to be said, word for word
+  int line;               ///< of the base that is replaced; 0: appended
+  std::string_view text;  ///< what stands there instead
+  std::string_view said;  ///< everything that is to be said, word for word
 };
 
 }  // namespace sunder::netlists

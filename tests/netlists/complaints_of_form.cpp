@@ -34,7 +34,8 @@ incomer = "switch 63 A"
        R"~(28:1+12 error: board 'shop' is declared twice
 15:1+1 note: first declared here
 )~"},
-      {27, R"~(W1 = { use = "fixed", phases = "L1 L2 L3", device = "C 16 A 6 kA", cable = "singles-pvc-cu 2.5 mm2", length = "21 m", load = "11 A", pf = 0.8 })~",
+      {27,
+       R"~(W1 = { use = "fixed", phases = "L1 L2 L3", device = "C 16 A 6 kA", cable = "singles-pvc-cu 2.5 mm2", length = "21 m", load = "11 A", pf = 0.8 })~",
        R"~(27:1+2 error: circuit 'shop/W1' is declared twice
 26:1+1 note: first declared here
 )~"},
@@ -186,7 +187,8 @@ TEST_CASE("Boards and their groups are read strictly", "[netlists]") {
       {16, R"~(groups = { rcd = { device = "RCD 63 A 30 mA A", ways = [1] } })~",
        R"~(16:57+1 error: a way of group 'rcd' is a number; a name is expected
 )~"},
-      {16, R"~(groups = { rcd = { device = "RCD 63 A 30 mA A", ways = ["W1"] }, two = { device = "RCD 63 A 30 mA A", ways = ["W1"] } })~",
+      {16,
+       R"~(groups = { rcd = { device = "RCD 63 A 30 mA A", ways = ["W1"] }, two = { device = "RCD 63 A 30 mA A", ways = ["W1"] } })~",
        R"~(16:112+2 error: way 'W1' of board 'shop' is in two groups or twice in one
 16:12+1 note: the other mention is in this group
 )~"},

@@ -100,43 +100,56 @@ TEST_CASE("A submain is read strictly and unusual values are warned about", "[ne
 
 TEST_CASE("A circuit is read strictly and unusual values are warned about", "[netlists]") {
   const std::vector<Complaint> complaints = {
-      {26, R"~(W1 = { use = "sockets", phases = "L4", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = true, load = "20 A", pf = 1 })~",
+      {26,
+       R"~(W1 = { use = "sockets", phases = "L4", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = true, load = "20 A", pf = 1 })~",
        R"~(26:35+2 error: unknown phase 'L4' of circuit 'shop/W1' | expected: "L1", "L1 L2", "L1 L2 L3" or "L1 L2 L3 N"
 )~"},
-      {26, R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", spurs = [{ at = "20 m", length = "4 m" }], load = "20 A", pf = 1 })~",
+      {26,
+       R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", spurs = [{ at = "20 m", length = "4 m" }], load = "20 A", pf = 1 })~",
        R"~(26:124+33 error: circuit 'shop/W1' has spurs but is no ring | ring = true
 )~"},
-      {26, R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = true, in_parallel = 2, load = "20 A", pf = 1 })~",
+      {26,
+       R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = true, in_parallel = 2, load = "20 A", pf = 1 })~",
        R"~(26:143+1 error: circuit 'shop/W1' is a ring and cannot have cables in parallel
 )~"},
-      {26, R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = true, spurs = [{ at = "41 m", length = "4 m" }], load = "20 A", pf = 1 })~",
+      {26,
+       R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = true, spurs = [{ at = "41 m", length = "4 m" }], load = "20 A", pf = 1 })~",
        R"~(26:138+1 error: a spur of circuit 'shop/W1' is at 41 m, beyond the ring of 40 m
 )~"},
-      {26, R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = true, spurs = [{ at = "20 m" }], load = "20 A", pf = 1 })~",
+      {26,
+       R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = true, spurs = [{ at = "20 m" }], load = "20 A", pf = 1 })~",
        R"~(26:138+1 error: a spur of circuit 'shop/W1' has no 'length', which is obligatory | length: Its length.
 )~"},
-      {26, R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = true, spurs = 3, load = "20 A", pf = 1 })~",
+      {26,
+       R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = true, spurs = 3, load = "20 A", pf = 1 })~",
        R"~(26:137+1 error: spurs of circuit 'shop/W1' is a number; a list of tables is expected
 )~"},
-      {26, R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = 1, load = "20 A", pf = 1 })~",
+      {26,
+       R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = 1, load = "20 A", pf = 1 })~",
        R"~(26:123+1 error: ring of circuit 'shop/W1' is a number; true or false is expected
 )~"},
-      {26, R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = "maybe", load = "20 A", pf = 1 })~",
+      {26,
+       R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = "maybe", load = "20 A", pf = 1 })~",
        R"~(26:124+5 error: ring of circuit 'shop/W1' is 'maybe'; true or false is expected
 )~"},
-      {26, R"~(W1 = { use = "sockets", phases = "L1", device = "B 20 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = true, load = "20 A", pf = 1 })~",
+      {26,
+       R"~(W1 = { use = "sockets", phases = "L1", device = "B 20 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = true, load = "20 A", pf = 1 })~",
        R"~(26:50+11 warning: circuit 'shop/W1' is a ring on a device of 20 A; usual are 30 A and 32 A
 )~"},
-      {26, R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "0 m", ring = true, load = "20 A", pf = 1 })~",
+      {26,
+       R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "0 m", ring = true, load = "20 A", pf = 1 })~",
        R"~(26:109+3 error: length of circuit 'shop/W1' is 0 m; it must be above 0 m
 )~"},
-      {26, R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1 mm2", length = "40 m", ring = true, load = "20 A", pf = 1 })~",
+      {26,
+       R"~(W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1 mm2", length = "40 m", ring = true, load = "20 A", pf = 1 })~",
        R"~(26:73+21 error: cable of circuit 'shop/W1': 'flat-pvc-cu' of 2.5 mm2 has a protective conductor of 1.5 mm2
 )~"},
-      {26, R"~(W1 = { use = "socket", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = true, load = "20 A", pf = 1 })~",
+      {26,
+       R"~(W1 = { use = "socket", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = true, load = "20 A", pf = 1 })~",
        R"~(26:15+6 error: unknown use 'socket' of circuit 'shop/W1' | did you mean 'sockets'?
 )~"},
-      {26, R"~(W1 = { use = "sockets", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = true, load = "20 A", pf = 1 })~",
+      {26,
+       R"~(W1 = { use = "sockets", device = "B 32 A 6 kA", cable = "flat-pvc-cu 2.5/1.5 mm2", length = "40 m", ring = true, load = "20 A", pf = 1 })~",
        R"~(26:1+1 error: circuit 'shop/W1' has no 'phases', which is obligatory | phases: Its live conductors: "L2" has a neutral, "L1 L2" and "L1 L2 L3" have none.
 )~"},
       {26, R"~(W1 = 3)~",
@@ -145,7 +158,8 @@ TEST_CASE("A circuit is read strictly and unusual values are warned about", "[ne
       {25, R"~([circuit.shpo])~",
        R"~(25:10+4 error: unknown board 'shpo' | did you mean 'shop'?
 )~"},
-      {27, R"~(W2 = { use = "fixed", phases = "L1 L2 L3 N", device = "C 16 A 6 kA", cable = "multicore-xlpe-cu-3c 2.5 mm2", length = "21 m", load = "11 A", pf = 0.8 })~",
+      {27,
+       R"~(W2 = { use = "fixed", phases = "L1 L2 L3 N", device = "C 16 A 6 kA", cable = "multicore-xlpe-cu-3c 2.5 mm2", length = "21 m", load = "11 A", pf = 0.8 })~",
        R"~(27:79+28 error: cable of circuit 'shop/W2': 'multicore-xlpe-cu-3c' has 3 cores, but 4 loaded conductors are needed
 )~"},
   };

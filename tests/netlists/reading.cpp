@@ -2,9 +2,8 @@
 /// @file
 /// What a sound netlist becomes: values in SI with their places, defaults, assumptions; and the text form
 /// of diagnostics.
-#include <catch2/catch.hpp>
-
 #include <algorithm>
+#include <catch2/catch.hpp>
 #include <cmath>
 
 #include "tests/netlists/base.h"
@@ -26,9 +25,8 @@ Network read_sound(const std::string& text) {
 }
 
 bool assumed(const Network& network, std::string_view subject, std::string_view sentence) {
-  return std::any_of(network.assumptions.begin(), network.assumptions.end(), [&](const models::Assumption& one) {
-    return one.subject == subject && one.sentence == sentence;
-  });
+  return std::any_of(network.assumptions.begin(), network.assumptions.end(),
+                     [&](const models::Assumption& one) { return one.subject == subject && one.sentence == sentence; });
 }
 
 }  // namespace
@@ -56,16 +54,14 @@ TEST_CASE("A sound netlist reads without a word and in SI", "[netlists]") {
   const models::Submain& s1 = network.submains[0];
   CHECK(network.boards.at(static_cast<std::size_t>(s1.from)).name == "intake");
   CHECK(network.boards.at(static_cast<std::size_t>(s1.to)).name == "shop");
-  CHECK(s1.conductors ==
-        ConductorSet{Conductor::L1, Conductor::L2, Conductor::L3, Conductor::N, Conductor::PE});
+  CHECK(s1.conductors == ConductorSet{Conductor::L1, Conductor::L2, Conductor::L3, Conductor::N, Conductor::PE});
   CHECK(s1.cable.area == Approx(16e-6).epsilon(1e-12));
   CHECK(s1.device.Icn == 80000.0);
   REQUIRE(network.circuits.size() == 2);
   const models::Circuit& w1 = network.circuits[0];
   CHECK(w1.ring);
   CHECK(w1.conductors == ConductorSet{Conductor::L1, Conductor::N, Conductor::PE});
-  CHECK(network.circuits[1].conductors ==
-        ConductorSet{Conductor::L1, Conductor::L2, Conductor::L3, Conductor::PE});
+  CHECK(network.circuits[1].conductors == ConductorSet{Conductor::L1, Conductor::L2, Conductor::L3, Conductor::PE});
   CHECK(w1.group == 0);
   CHECK(network.circuits[1].group == -1);
   const models::Group& group = network.boards[1].groups.at(0);
@@ -113,17 +109,22 @@ TEST_CASE("Every assumption taken is listed with its subject", "[netlists]") {
       {9, "tails = { cable = \"singles-pvc-cu 25 mm2\", length = \"2 m\" }", "grid",
        "main earthing conductor of the tails of supply 'grid' taken as large as the line conductor"},
       {24, "", "S1", "pf of S1 taken as 1"},
-      {24, "cpc = \"16 mm2\"", "S1", "the protective conductor beside the cable of S1 is taken to run close to it, not bunched with it: "
+      {24, "cpc = \"16 mm2\"", "S1",
+       "the protective conductor beside the cable of S1 is taken to run close to it, not bunched with it: "
        "at ambient temperature, k as such"},
-      {27, R"(W2 = { phases = "L1", device = "B 6 A", cable = "flat-pvc-cu 1.5/1 mm2", length = "21 m", load = "4 A" })",
+      {27,
+       R"(W2 = { phases = "L1", device = "B 6 A", cable = "flat-pvc-cu 1.5/1 mm2", length = "21 m", load = "4 A" })",
        "shop/W2", "use of shop/W2 not given: the strictest limits are taken"},
-      {27, R"(W2 = { phases = "L1", device = "B 6 A", cable = "flat-pvc-cu 1.5/1 mm2", length = "21 m", load = "4 A" })",
+      {27,
+       R"(W2 = { phases = "L1", device = "B 6 A", cable = "flat-pvc-cu 1.5/1 mm2", length = "21 m", load = "4 A" })",
        "shop/W2", "pf of shop/W2 taken as 1"},
-      {0, transformer, "T", "no fault level before transformer 'T': stiff for the greatest currents, the least ones are unknown"},
+      {0, transformer, "T",
+       "no fault level before transformer 'T': stiff for the greatest currents, the least ones are unknown"},
       {0, transformer, "T", "no-load voltage of transformer 'T' taken as 400 V"},
       {0, transformer, "T", "zero-sequence impedance of transformer 'T' taken as its positive-sequence one"},
-      {0, transformer.substr(0, transformer.find("[state")) + "fault_level = \"250 MVA\"\n" +
-              transformer.substr(transformer.find("[state")),
+      {0,
+       transformer.substr(0, transformer.find("[state")) + "fault_level = \"250 MVA\"\n" +
+           transformer.substr(transformer.find("[state")),
        "T", "one fault level before transformer 'T': taken as most and least"},
   };
   for (const Case& one : cases) {
@@ -135,8 +136,8 @@ TEST_CASE("Every assumption taken is listed with its subject", "[netlists]") {
 }
 
 TEST_CASE("What only a check needs stays not given", "[netlists]") {
-  const Network network = read_sound(spoiled(
-      27, R"(W2 = { phases = "L1", device = "C 6 A", cable = "flat-pvc-cu 1.5/1 mm2", length = "21 m" })"));
+  const Network network = read_sound(
+      spoiled(27, R"(W2 = { phases = "L1", device = "C 6 A", cable = "flat-pvc-cu 1.5/1 mm2", length = "21 m" })"));
   const models::Circuit& w2 = network.circuits[1];
   CHECK_FALSE(w2.load.given);
   CHECK_FALSE(w2.Iz.given);
@@ -145,13 +146,14 @@ TEST_CASE("What only a check needs stays not given", "[netlists]") {
 }
 
 TEST_CASE("A transformer is read with its angle, its fault levels and its link", "[netlists]") {
-  const Network network = read_sound(std::string(kBase) +
-                                     "[transformer.T]\nfeeds = \"intake\"\nvoltage = \"230/400 V\"\nrating = \"500 kVA\"\n"
-                                     "uk = \"4.75 %\"\nlosses = \"5.1 kW\"\nsecondary = \"433 V\"\nearthing = \"TN-C-S\"\n"
-                                     "link = \"board\"\nz0_over_z1 = 0.9\n"
-                                     "fault_level = { maximum = \"500 MVA\", minimum = \"150 MVA\" }\n"
-                                     "tails = { cable = \"singles-pvc-cu 240 mm2\", length = \"8 m\", in_parallel = 2 }\n"
-                                     "[state.a]\nsources = [\"grid\"]\n[state.b]\nsources = [\"T\"]\n");
+  const Network network =
+      read_sound(std::string(kBase) +
+                 "[transformer.T]\nfeeds = \"intake\"\nvoltage = \"230/400 V\"\nrating = \"500 kVA\"\n"
+                 "uk = \"4.75 %\"\nlosses = \"5.1 kW\"\nsecondary = \"433 V\"\nearthing = \"TN-C-S\"\n"
+                 "link = \"board\"\nz0_over_z1 = 0.9\n"
+                 "fault_level = { maximum = \"500 MVA\", minimum = \"150 MVA\" }\n"
+                 "tails = { cable = \"singles-pvc-cu 240 mm2\", length = \"8 m\", in_parallel = 2 }\n"
+                 "[state.a]\nsources = [\"grid\"]\n[state.b]\nsources = [\"T\"]\n");
   const models::Source& t = network.sources.at(1);
   CHECK(t.transformer);
   CHECK(t.own_transformer);
@@ -337,8 +339,8 @@ TEST_CASE("A diagnostic shows its line with a caret, tabs kept and long lines cu
   d.severity = Severity::warning;
   d.column = 12;
   d.source_line = "\xC3\xA9\xC3\xA9\xC3\xA9 = \"\xE2\x82\xAC\xE2\x82\xAC\" x";
-  CHECK(format_diagnostic(d) == "a.toml:7:12: warning: unknown key 'abcd'\n 7 | " + d.source_line +
-                                    "\n   |            ^\n");
+  CHECK(format_diagnostic(d) ==
+        "a.toml:7:12: warning: unknown key 'abcd'\n 7 | " + d.source_line + "\n   |            ^\n");
   d.source_line = std::string(300, 'a') + "HERE" + std::string(300, 'b');
   d.column = 301;
   CHECK(format_diagnostic(d) == "a.toml:7:301: warning: unknown key 'abcd'\n 7 | ..." + std::string(60, 'a') + "HERE" +

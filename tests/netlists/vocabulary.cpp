@@ -2,7 +2,6 @@
 /// @file
 /// The vocabulary is whole, its examples can be read, and every band of the unusual holds at both edges.
 #include <catch2/catch.hpp>
-
 #include <cmath>
 
 #include "models/registry.h"
@@ -42,29 +41,37 @@ std::string netlist_with(std::string_view kind, std::string_view key, const std:
     std::string text = std::string(kBase) + "[transformer.T]\n";
     for (const std::string& one : keys) text += one + "\n";
     if (kind == "transformer.fault_level") return text + "fault_level = { " + pair + " }" + states;
-    return text + "tails = { " + without({"cable = \"singles-pvc-cu 25 mm2\"", "length = \"2 m\""}, ", ") + " }" + states;
+    return text + "tails = { " + without({"cable = \"singles-pvc-cu 25 mm2\"", "length = \"2 m\""}, ", ") + " }" +
+           states;
   }
   if (kind == "supply") return spoiled(9, pair);
   if (kind == "board.groups") {
-    return spoiled(16, "groups = { rcd = { " + without({"device = \"RCD 63 A 30 mA A\"", "ways = [\"W1\"]"}, ", ") + " } }");
+    return spoiled(
+        16, "groups = { rcd = { " + without({"device = \"RCD 63 A 30 mA A\"", "ways = [\"W1\"]"}, ", ") + " } }");
   }
   if (kind == "submain") return spoiled(key == "length" ? 22 : key == "demand" ? 23 : 24, pair);
   if (kind == "circuit") {
     return std::string(kBase) + "W3 = { " +
-           without({"phases = \"L1\"", "device = \"C 16 A\"", "cable = \"singles-pvc-cu 2.5 mm2\"", "length = \"9 m\""}, ", ") +
+           without({"phases = \"L1\"", "device = \"C 16 A\"", "cable = \"singles-pvc-cu 2.5 mm2\"", "length = \"9 m\""},
+                   ", ") +
            " }\n";
   }
   if (kind == "circuit.spurs") {
     return std::string(kBase) +
-           "W3 = { phases = \"L1\", device = \"B 32 A\", cable = \"singles-pvc-cu 4 mm2\", length = \"400 m\", ring = true, "
-           "spurs = [{ " + without({"at = \"2 m\"", "length = \"3 m\""}, ", ") + " }] }\n";
+           "W3 = { phases = \"L1\", device = \"B 32 A\", cable = \"singles-pvc-cu 4 mm2\", length = \"400 m\", ring = "
+           "true, "
+           "spurs = [{ " +
+           without({"at = \"2 m\"", "length = \"3 m\""}, ", ") + " }] }\n";
   }
   if (kind == "electrode") {
-    return std::string(kBase) + "[electrode.rod]\n" + without({"board = \"shop\"", "resistance = \"9 ohm\""}, "\n") + "\n";
+    return std::string(kBase) + "[electrode.rod]\n" + without({"board = \"shop\"", "resistance = \"9 ohm\""}, "\n") +
+           "\n";
   }
   if (kind == "device") {
     return std::string(kBase) + "[device.d]\n" +
-           without({"kind = \"fuse\"", "In = \"6 A\"", "latest = [[\"200 A\", \"1 s\"]]", "source = \"invented\""}, "\n") + "\n";
+           without({"kind = \"fuse\"", "In = \"6 A\"", "latest = [[\"200 A\", \"1 s\"]]", "source = \"invented\""},
+                   "\n") +
+           "\n";
   }
   const std::string cable = std::string(kBase) + "[cable.c]\n";
   const std::string size = "sizes = [{ size = \"16 mm2\", r20 = \"1.15 mohm/m\" }]";
@@ -88,7 +95,8 @@ bool says_unusual(const std::string& text, const Key& key) {
   const std::string all = said(read_network_text(text, "base.toml"));
   for (std::size_t i = all.find("usual are"); i != std::string::npos; i = all.find("usual are", i + 1)) {
     const std::size_t start = all.rfind('\n', i) == std::string::npos ? 0 : all.rfind('\n', i);
-    if (all.substr(start, i - start).find("warning: " + std::string(key.name) + " of") != std::string::npos) return true;
+    if (all.substr(start, i - start).find("warning: " + std::string(key.name) + " of") != std::string::npos)
+      return true;
   }
   return false;
 }

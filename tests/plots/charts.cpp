@@ -2,7 +2,6 @@
 #include "plots/figures/charts.h"
 
 #include <catch2/catch.hpp>
-
 #include <cstdlib>
 #include <filesystem>
 #include <fstream>
@@ -58,9 +57,10 @@ TEST_CASE("A coordination chart names every device and current once, with ticks 
   const Folder folder;
   REQUIRE(plots::draw_coordination(test::path_chart(), folder.file("c.svg")).value_or("") == "");
   const std::string svg = content(folder.file("c.svg"));
-  for (const char* text : {"S1  gG 80 A<", "workshop/W2  B 32 A 30 mA<", "workshop/W2 residual 30 mA<", "S1 armour of 78 mm2<",
-                           "least line-earth at workshop/W2  231 A<", "greatest at intake  9.8 kA<",
-                           "prospective current at 230/400 V [A]<", "time [s]<", ">10 A<", ">1 kA<", ">10 kA<"}) {
+  for (const char* text :
+       {"S1  gG 80 A<", "workshop/W2  B 32 A 30 mA<", "workshop/W2 residual 30 mA<", "S1 armour of 78 mm2<",
+        "least line-earth at workshop/W2  231 A<", "greatest at intake  9.8 kA<",
+        "prospective current at 230/400 V [A]<", "time [s]<", ">10 A<", ">1 kA<", ">10 kA<"}) {
     CAPTURE(text);
     CHECK(times(svg, text) == 1);
   }
@@ -95,8 +95,10 @@ TEST_CASE("Names with quotes, markup and percent signs are drawn as they are") {
 
 TEST_CASE("What cannot be drawn is refused with a sentence and leaves no file") {
   const Folder folder;
-  CHECK_THAT(plots::draw_coordination(test::path_chart(), folder.file("c.gif")).value_or(""), Contains("expected .svg, .png or .pdf, got '.gif'"));
-  CHECK_THAT(plots::draw_coordination(test::path_chart(), folder.file("none/c.svg")).value_or(""), Contains("cannot write"));
+  CHECK_THAT(plots::draw_coordination(test::path_chart(), folder.file("c.gif")).value_or(""),
+             Contains("expected .svg, .png or .pdf, got '.gif'"));
+  CHECK_THAT(plots::draw_coordination(test::path_chart(), folder.file("none/c.svg")).value_or(""),
+             Contains("cannot write"));
   solver::PathChart bare;
   bare.address = "intake";
   CHECK_THAT(plots::draw_coordination(bare, folder.file("c.svg")).value_or(""), Contains("has a curve to draw"));

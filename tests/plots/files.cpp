@@ -2,7 +2,6 @@
 #include "plots/text/files.h"
 
 #include <catch2/catch.hpp>
-
 #include <cstdlib>
 #include <filesystem>
 #include <fstream>

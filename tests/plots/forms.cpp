@@ -1,15 +1,13 @@
 // SPDX-License-Identifier: Apache-2.0
 // JSON and CSV.
 #include <catch2/catch.hpp>
-
 #include <limits>
-
 
 #include "made.h"
 #include "plots/figures/charts.h"
 #include "plots/text/json.h"
-#include "tests/support/json.h"
 #include "plots/text/report.h"
+#include "tests/support/json.h"
 
 using namespace sunder;
 using support::Json;
@@ -18,8 +16,8 @@ TEST_CASE("sunder.check/1 has the keys that others build on") {
   const Json json = Json::parse(plots::check_json(test::small_network(), test::findings()));
   CHECK(json.at("format") == "sunder.check/1");
   REQUIRE(json.at("findings").size() == 4);
-  for (const char* key : {"check", "subject", "verdict", "value", "limit", "unit", "margin", "state", "condition", "fault",
-                          "clause", "confidence", "needs", "steps", "remedies"}) {
+  for (const char* key : {"check", "subject", "verdict", "value", "limit", "unit", "margin", "state", "condition",
+                          "fault", "clause", "confidence", "needs", "steps", "remedies"}) {
     CAPTURE(key);
     CHECK(json.at("findings")[0].contains(key));
   }
@@ -63,10 +61,24 @@ TEST_CASE("Pairs of devices carry the keys of selectivity, others do not") {
 }
 
 TEST_CASE("sunder.faults/1 has the keys that others build on, and peak is null in the minimum") {
-  solver::FaultRow most{"normal", solver::Condition::maximum, "intake", solver::Fault::three_phase, "L1-L2-L3",
-                        16000, 30000, 2.5, 0.0159, 254, true, ""};
-  solver::FaultRow least{"normal", solver::Condition::minimum, "workshop/W2/spur1", solver::Fault::line_earth, "L1-PE",
-                         231, solver::kNone, 0.2, 0.94, 218.5, true, ""};
+  solver::FaultRow most{"normal",   solver::Condition::maximum,
+                        "intake",   solver::Fault::three_phase,
+                        "L1-L2-L3", 16000,
+                        30000,      2.5,
+                        0.0159,     254,
+                        true,       ""};
+  solver::FaultRow least{"normal",
+                         solver::Condition::minimum,
+                         "workshop/W2/spur1",
+                         solver::Fault::line_earth,
+                         "L1-PE",
+                         231,
+                         solver::kNone,
+                         0.2,
+                         0.94,
+                         218.5,
+                         true,
+                         ""};
   solver::FaultRow unknown = least;
   unknown.known = false;
   unknown.needs = "Zn of grid";
@@ -104,8 +116,9 @@ TEST_CASE("The other forms are valid JSON and name themselves") {
 }
 
 TEST_CASE("Errors carry their place, or null where there is none") {
-  const Json json = Json::parse(plots::errors_json(
-      {{"error", "net.toml", 14, 10, "unknown cable 'x'", "cable = \"x\"", "did you mean 'y'?"}, {"error", "", 0, 0, "no such file", "", ""}}));
+  const Json json = Json::parse(
+      plots::errors_json({{"error", "net.toml", 14, 10, "unknown cable 'x'", "cable = \"x\"", "did you mean 'y'?"},
+                          {"error", "", 0, 0, "no such file", "", ""}}));
   CHECK(json["errors"][0]["line"] == 14);
   CHECK(json["errors"][0]["hint"] == "did you mean 'y'?");
   CHECK(json["errors"][1]["line"].is_null());
@@ -127,7 +140,9 @@ TEST_CASE("Every key of a finding is explained in the description of JSON, and t
   std::size_t explained = 0;
   for (const plots::StructHelp& part : plots::describe_json()) {
     for (const plots::FieldHelp& field : part.fields) CHECK_FALSE(field.meaning.empty());
-    if (part.format != "sunder.check/1" || part.place.rfind("findings[]", 0) != 0 || part.place.find('.') != std::string::npos) continue;
+    if (part.format != "sunder.check/1" || part.place.rfind("findings[]", 0) != 0 ||
+        part.place.find('.') != std::string::npos)
+      continue;
     for (const plots::FieldHelp& field : part.fields) {
       CAPTURE(field.key);
       CHECK(json["findings"][2].contains(field.key));  // a pair, so all of them

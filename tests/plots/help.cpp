@@ -2,7 +2,6 @@
 #include "plots/text/help.h"
 
 #include <catch2/catch.hpp>
-
 #include <sstream>
 
 #include "models/registry.h"
@@ -29,8 +28,8 @@ TEST_CASE("Help on the netlist explains every kind and every key of the registry
 }
 
 TEST_CASE("Help on checks lists what each compares, applies to and needs") {
-  const std::string text =
-      plots::help_text(plots::help_checks({{"voltage drop", "the drop against its limit", "circuits", "length, load"}}), {});
+  const std::string text = plots::help_text(
+      plots::help_checks({{"voltage drop", "the drop against its limit", "circuits", "length, load"}}), {});
   CHECK_THAT(text, Contains("voltage drop  the drop against its limit. Applies to: circuits. Needs: length, load."));
 }
 

@@ -111,10 +111,13 @@ solver::PathChart path_chart() {
   chart.address = "workshop/W2";
   chart.state = "normal";
   chart.voltage = "230/400 V";
-  chart.devices = {{"S1", "S1  gG 80 A", fuse, 900, 9800}, {"workshop/W2", "workshop/W2  B 32 A 30 mA", breaker, 231, 3400}};
+  chart.devices = {{"S1", "S1  gG 80 A", fuse, 900, 9800},
+                   {"workshop/W2", "workshop/W2  B 32 A 30 mA", breaker, 231, 3400}};
   chart.damage = {{"S1 armour of 78 mm2", 12.9e6}, {"workshop/W2 cpc 1.5 mm2", 29756}};
-  chart.currents = {{"least line-earth at workshop/W2", 231}, {"least line-neutral at workshop/W2", 240},
-                    {"greatest at workshop", 3400}, {"greatest at intake", 9800}};
+  chart.currents = {{"least line-earth at workshop/W2", 231},
+                    {"least line-neutral at workshop/W2", 240},
+                    {"greatest at workshop", 3400},
+                    {"greatest at intake", 9800}};
   return chart;
 }
 

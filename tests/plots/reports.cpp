@@ -1,11 +1,9 @@
 // SPDX-License-Identifier: Apache-2.0
-#include "plots/text/report.h"
-
 #include <catch2/catch.hpp>
-
 #include <sstream>
 
 #include "made.h"
+#include "plots/text/report.h"
 #include "plots/text/tables.h"
 
 using namespace sunder;
@@ -34,9 +32,10 @@ TEST_CASE("A check report names title, rules with edition, date and program firs
 
 TEST_CASE("Failures come first, then what is undecided, then boards, pairs, assumptions and cautions") {
   const std::string text = plots::check_report(test::small_network(), test::findings(), {});
-  const std::size_t order[] = {place(text, "What fails"), place(text, "What is undecided"), place(text, "By board"),
-                               place(text, "Selectivity, pair by pair"), place(text, "Assumptions:"),
-                               place(text, "Data that needs confirming"), place(text, "Cautions")};
+  const std::size_t order[] = {place(text, "What fails"),   place(text, "What is undecided"),
+                               place(text, "By board"),     place(text, "Selectivity, pair by pair"),
+                               place(text, "Assumptions:"), place(text, "Data that needs confirming"),
+                               place(text, "Cautions")};
   for (std::size_t i = 1; i < std::size(order); ++i) CHECK(order[i - 1] < order[i]);
 }
 
@@ -120,8 +119,12 @@ TEST_CASE("A clean network is said to be met in one line") {
 }
 
 TEST_CASE("Fault currents of a node stand side by side for maximum and minimum") {
-  const solver::FaultRow most{"normal", solver::Condition::maximum, "intake", solver::Fault::line_earth, "L1-PE",
-                              16000, 30000, 2.5, 0.0159, 254, true, ""};
+  const solver::FaultRow most{"normal", solver::Condition::maximum,
+                              "intake", solver::Fault::line_earth,
+                              "L1-PE",  16000,
+                              30000,    2.5,
+                              0.0159,   254,
+                              true,     ""};
   solver::FaultRow least = most;
   least.condition = solver::Condition::minimum;
   least.current = 624;

@@ -2,7 +2,6 @@
 #include "plots/figures/scales.h"
 
 #include <catch2/catch.hpp>
-
 #include <cmath>
 #include <random>
 
@@ -57,10 +56,10 @@ TEST_CASE("An axis maps its ends to its ends, and back") {
 TEST_CASE("Segments are known to touch a rectangle or to pass it") {
   const Rect rect{10, 10, 20, 10};
   CHECK(crosses({0, 15}, {40, 15}, rect));
-  CHECK(crosses({15, 12}, {16, 13}, rect));      // wholly inside
+  CHECK(crosses({15, 12}, {16, 13}, rect));  // wholly inside
   CHECK_FALSE(crosses({0, 0}, {40, 5}, rect));
   CHECK_FALSE(crosses({0, 25}, {9, 5}, rect));
-  CHECK_FALSE(overlaps(rect, {30, 10, 5, 5}));   // side by side
+  CHECK_FALSE(overlaps(rect, {30, 10, 5, 5}));  // side by side
   CHECK(overlaps(rect, {29, 19, 5, 5}));
 }
 

@@ -2,7 +2,6 @@
 #include "plots/text/tables.h"
 
 #include <catch2/catch.hpp>
-
 #include <limits>
 #include <sstream>
 

@@ -2,7 +2,6 @@
 #include "plots/text/terminal.h"
 
 #include <catch2/catch.hpp>
-
 #include <cstdlib>
 #include <string>
 

@@ -33,14 +33,9 @@ double number(const Json& json) { return json.number(); }
 std::vector<FindingAnswer> findings_of(const Json& list) {
   std::vector<FindingAnswer> findings;
   for (const Json& item : list) {
-    findings.push_back({item.at("check").text(),
-                        item.at("subject").text(),
-                        item.at("verdict").text(),
-                        item.at("confidence").text(),
-                        item["upstream"].text(),
-                        item["selectivity"].text(),
-                        number(item.at("value")),
-                        number(item.at("limit"))});
+    findings.push_back({item.at("check").text(), item.at("subject").text(), item.at("verdict").text(),
+                        item.at("confidence").text(), item["upstream"].text(), item["selectivity"].text(),
+                        number(item.at("value")), number(item.at("limit"))});
   }
   return findings;
 }
@@ -48,11 +43,8 @@ std::vector<FindingAnswer> findings_of(const Json& list) {
 SweepAnswer sweep_of(const Json& json) {
   SweepAnswer sweep;
   for (const Json& item : json.at("flips")) {
-    sweep.flips.push_back({item.at("check").text(),
-                           item.at("subject").text(),
-                           item.at("before").text(),
-                           item.at("after").text(),
-                           number(item.at("at"))});
+    sweep.flips.push_back({item.at("check").text(), item.at("subject").text(), item.at("before").text(),
+                           item.at("after").text(), number(item.at("at"))});
   }
   for (const Json& item : json.at("points"))
     sweep.points.push_back({number(item.at("value")), findings_of(item.at("findings"))});
@@ -65,14 +57,9 @@ std::vector<FaultAnswer> faults(const std::string& netlist) {
   std::vector<FaultAnswer> rows;
   const Json json = answer(netlist, {"faults"});
   for (const Json& item : json.at("results")) {
-    rows.push_back({item.at("condition").text(),
-                    item.at("node").text(),
-                    item.at("fault").text(),
-                    number(item.at("current_A")),
-                    number(item.at("peak_A")),
-                    number(item.at("loop_ohm")),
-                    number(item.at("x_over_r")),
-                    number(item.at("driving_V"))});
+    rows.push_back({item.at("condition").text(), item.at("node").text(), item.at("fault").text(),
+                    number(item.at("current_A")), number(item.at("peak_A")), number(item.at("loop_ohm")),
+                    number(item.at("x_over_r")), number(item.at("driving_V"))});
   }
   return rows;
 }
@@ -89,22 +76,15 @@ double drop(const std::string& netlist, const std::string& address) {
   return 0;
 }
 
-SweepAnswer vary(const std::string& netlist,
-                 const std::string& key,
-                 const std::string& from,
-                 const std::string& to) {
+SweepAnswer vary(const std::string& netlist, const std::string& key, const std::string& from, const std::string& to) {
   return sweep_of(answer(netlist, {"vary", "--set", key, "--from", from, "--to", to}));
 }
 
-SweepAnswer vary_values(const std::string& netlist,
-                        const std::string& key,
-                        const std::string& values) {
+SweepAnswer vary_values(const std::string& netlist, const std::string& key, const std::string& values) {
   return sweep_of(answer(netlist, {"vary", "--set", key, "--values", values}));
 }
 
-FaultAnswer at(const std::vector<FaultAnswer>& rows,
-               const std::string& condition,
-               const std::string& node,
+FaultAnswer at(const std::vector<FaultAnswer>& rows, const std::string& condition, const std::string& node,
                const std::string& fault) {
   for (const FaultAnswer& row : rows)
     if (row.condition == condition && row.node == node && row.fault == fault) return row;
@@ -112,8 +92,7 @@ FaultAnswer at(const std::vector<FaultAnswer>& rows,
   return {};
 }
 
-FindingAnswer finding(const std::vector<FindingAnswer>& findings,
-                      const std::string& check,
+FindingAnswer finding(const std::vector<FindingAnswer>& findings, const std::string& check,
                       const std::string& subject) {
   for (const FindingAnswer& item : findings)
     if (item.check == check && item.subject == subject) return item;

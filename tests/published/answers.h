@@ -52,30 +52,21 @@ struct SweepAnswer {
 [[nodiscard]] double drop(const std::string& netlist, const std::string& address);
 
 /// `sunder vary --set key --from from --to to`.
-[[nodiscard]] SweepAnswer vary(const std::string& netlist,
-                               const std::string& key,
-                               const std::string& from,
+[[nodiscard]] SweepAnswer vary(const std::string& netlist, const std::string& key, const std::string& from,
                                const std::string& to);
 /// `sunder vary --set key --values values`.
-[[nodiscard]] SweepAnswer vary_values(const std::string& netlist,
-                                      const std::string& key,
-                                      const std::string& values);
+[[nodiscard]] SweepAnswer vary_values(const std::string& netlist, const std::string& key, const std::string& values);
 
 /// The row with these names; fails the test if there is none.
-[[nodiscard]] FaultAnswer at(const std::vector<FaultAnswer>& rows,
-                             const std::string& condition,
-                             const std::string& node,
-                             const std::string& fault);
-[[nodiscard]] FindingAnswer finding(const std::vector<FindingAnswer>& findings,
-                                    const std::string& check,
+[[nodiscard]] FaultAnswer at(const std::vector<FaultAnswer>& rows, const std::string& condition,
+                             const std::string& node, const std::string& fault);
+[[nodiscard]] FindingAnswer finding(const std::vector<FindingAnswer>& findings, const std::string& check,
                                     const std::string& subject);
 
 /// Where the check of a subject leaves (or, going the other way, reaches) `meets`; fails the test
 /// unless there is exactly one such flip, or if any finding on the way rests on low-confidence
 /// data.
-[[nodiscard]] double flip(const SweepAnswer& sweep,
-                          const std::string& check,
-                          const std::string& subject);
+[[nodiscard]] double flip(const SweepAnswer& sweep, const std::string& check, const std::string& subject);
 
 /// Matcher for a flip: as Printed, but both ends of the millionth to which `vary` knows a flip
 /// count, so that a value on the tie between two printed numbers is not lost to the bisection.
@@ -84,12 +75,9 @@ class FlipPrints : public Catch::MatcherBase<double> {
   explicit FlipPrints(const std::string& digits, double unit = 1.0) : printed_(digits, unit) {}
   [[nodiscard]] bool match(const double& at) const override {
     constexpr double kFlipAccuracy = 1e-6;
-    return printed_.match(at) || printed_.match(at * (1 - kFlipAccuracy)) ||
-           printed_.match(at * (1 + kFlipAccuracy));
+    return printed_.match(at) || printed_.match(at * (1 - kFlipAccuracy)) || printed_.match(at * (1 + kFlipAccuracy));
   }
-  [[nodiscard]] std::string describe() const override {
-    return printed_.describe() + ", give or take a millionth";
-  }
+  [[nodiscard]] std::string describe() const override { return printed_.describe() + ", give or take a millionth"; }
 
  private:
   support::Printed printed_;

@@ -16,8 +16,7 @@ struct Row {
   const char* type;
   const char* In;       // [A]
   const char* printed;  // Zs with Cmin 0.95, 18th edition [ohm]
-  const char*
-      without;  // Zs without Cmin, as printed before 2015 [ohm]; "" where the pages truncate
+  const char* without;  // Zs without Cmin, as printed before 2015 [ohm]; "" where the pages truncate
 };
 
 // BS 7671 Table 41.3 (0.4 s and 5 s alike): with Cmin, tag R (recomputed 0.95 x 230 / (5, 10, 20
@@ -27,32 +26,21 @@ struct Row {
 // https://pdfcoffee.com/bs-7671-tables-412-413-amp-414-pdf-free.html. Where those pages truncate
 // (16 A B 2.87, 63 A C 0.36, 100 A D 0.11) the second figure is left out.
 const std::vector<Row> kRows = {
-    {"B", "6", "7.28", "7.67"},
-    {"B", "16", "2.73", ""},
-    {"B", "32", "1.37", "1.44"},
-    {"B", "63", "0.69", "0.73"},
-    {"B", "100", "0.44", "0.46"},
-    {"C", "6", "3.64", "3.83"},
-    {"C", "10", "2.19", "2.30"},
-    {"C", "20", "1.09", "1.15"},
-    {"C", "32", "0.68", "0.72"},
-    {"C", "125", "0.17", "0.18"},
-    {"D", "6", "1.82", "1.92"},
-    {"D", "16", "0.68", "0.72"},
-    {"D", "32", "0.34", "0.36"},
-    {"D", "50", "0.22", "0.23"},
+    {"B", "6", "7.28", "7.67"},   {"B", "16", "2.73", ""},      {"B", "32", "1.37", "1.44"},
+    {"B", "63", "0.69", "0.73"},  {"B", "100", "0.44", "0.46"}, {"C", "6", "3.64", "3.83"},
+    {"C", "10", "2.19", "2.30"},  {"C", "20", "1.09", "1.15"},  {"C", "32", "0.68", "0.72"},
+    {"C", "125", "0.17", "0.18"}, {"D", "6", "1.82", "1.92"},   {"D", "16", "0.68", "0.72"},
+    {"D", "32", "0.34", "0.36"},  {"D", "50", "0.22", "0.23"},
 };
 
 std::string breakers(const char* use) {
   std::string text = head() +
-                     supply("230/400 V",
-                            "three_phase = \"50 kA\", power_factor = 1",
+                     supply("230/400 V", "three_phase = \"50 kA\", power_factor = 1",
                             "Ze = \"0.1 ohm\", Zn = \"0.1 ohm\", power_factor = 1") +
                      bar() + "[board.main]\n[circuit.main]\n";
   for (const Row& row : kRows) {
-    text += std::string(row.type) + row.In + " = { use = \"" + use +
-            "\", phases = \"L1\", device = \"" + row.type + " " + row.In +
-            " A\", cable = \"bar 1000 mm2\", length = \"1 m\" }\n";
+    text += std::string(row.type) + row.In + " = { use = \"" + use + "\", phases = \"L1\", device = \"" + row.type +
+            " " + row.In + " A\", cable = \"bar 1000 mm2\", length = \"1 m\" }\n";
   }
   return text;
 }
@@ -72,8 +60,7 @@ TEST_CASE("Breakers of distribution circuits need the same loop impedances for 5
   const SweepAnswer sweep = vary(breakers("distribution"), "grid.minimum.Ze", "0.05 ohm", "10 ohm");
   for (const Row& row : kRows) {
     CAPTURE(row.type, row.In);
-    CHECK_THAT(flip(sweep, "disconnection time", std::string("main/") + row.type + row.In),
-               FlipPrints(row.printed));
+    CHECK_THAT(flip(sweep, "disconnection time", std::string("main/") + row.type + row.In), FlipPrints(row.printed));
   }
 }
 

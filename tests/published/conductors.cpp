@@ -17,14 +17,11 @@ using sunder::support::Printed;
 
 // Resistance of the line-neutral loop of each size, half of it over 100 m: of one conductor
 // [ohm/m].
-std::vector<double> resistances(const char* rules,
-                                const std::string& construction,
-                                const std::vector<std::string>& sizes,
-                                const std::string& condition) {
+std::vector<double> resistances(const char* rules, const std::string& construction,
+                                const std::vector<std::string>& sizes, const std::string& condition) {
   std::string text = head(rules) + stiff_supply() + "[board.main]\n[circuit.main]\n";
   for (std::size_t i = 0; i < sizes.size(); ++i) {
-    text += "W" + std::to_string(i) +
-            " = { use = \"fixed\", phases = \"L1\", device = \"B 16 A\", cable = \"" +
+    text += "W" + std::to_string(i) + " = { use = \"fixed\", phases = \"L1\", device = \"B 16 A\", cable = \"" +
             construction + " " + sizes[i] + " mm2\", length = \"100 m\" }\n";
   }
   const auto all = faults(text);
@@ -39,10 +36,9 @@ std::vector<double> resistances(const char* rules,
 // Tag S: a cable maker's handbook, Table 69, https://online.flippingbook.com/view/377793823/57
 // (PVC; its heading says 90 degC, but 14.48 is 12.1 times 1.197, which is 70 degC).
 TEST_CASE("Copper conductors have at 70 degC the resistances of a maker's handbook") {
-  const std::vector<std::string> sizes = {
-      "1.5", "2.5", "4", "6", "10", "16", "25", "35", "95", "120"};
-  const std::vector<const char*> printed = {
-      "14.48", "8.87", "5.52", "3.69", "2.19", "1.38", ".870", ".627", ".231", ".183"};
+  const std::vector<std::string> sizes = {"1.5", "2.5", "4", "6", "10", "16", "25", "35", "95", "120"};
+  const std::vector<const char*> printed = {"14.48", "8.87", "5.52", "3.69", "2.19",
+                                            "1.38",  ".870", ".627", ".231", ".183"};
   const auto found = resistances(kInternational, "multicore-pvc-cu-3c", sizes, "minimum");
   for (std::size_t i = 0; i < 8; ++i) {
     CAPTURE(sizes[i]);
@@ -58,8 +54,7 @@ TEST_CASE("Copper conductors have at 70 degC the resistances of a maker's handbo
 // https://digilib.universitaspertamina.ac.id/ebook/Handbook%20of%20Electrical%20Engineering/files/basic-html/page217.html.
 TEST_CASE("Copper conductors have at 70 degC the resistances of a textbook table") {
   const std::vector<std::string> sizes = {"6", "16", "25", "35", "70"};
-  const std::vector<const char*> printed = {
-      "3.69", "1.38", ".870", ".627", ".321"};  // 6 and 16 mm2: to three digits
+  const std::vector<const char*> printed = {"3.69", "1.38", ".870", ".627", ".321"};  // 6 and 16 mm2: to three digits
   const auto found = resistances(kInternational, "multicore-pvc-cu-3c", sizes, "minimum");
   for (std::size_t i = 0; i < sizes.size(); ++i) {
     CAPTURE(sizes[i]);
@@ -83,27 +78,21 @@ TEST_CASE("Resistances rise by 1.20 to 70 degC and by 1.28 to 90 degC") {
 // Tag S: the model cable of Anders, Rating of Electric Power Cables: 300 mm2, 0.0601 ohm/km at 20
 // degC, 0.0766 ohm/km at 90 degC before skin effect (recomputed 0.076634 on the way to the
 // published 0.0781).
-TEST_CASE(
-    "A 300 mm2 copper conductor has at 90 degC the d.c. resistance of a published model cable") {
-  CHECK_THAT(resistances(kInternational, "multicore-xlpe-cu-3c", {"300"}, "minimum").front(),
-             Printed("0.0766", 1e-3));
+TEST_CASE("A 300 mm2 copper conductor has at 90 degC the d.c. resistance of a published model cable") {
+  CHECK_THAT(resistances(kInternational, "multicore-xlpe-cu-3c", {"300"}, "minimum").front(), Printed("0.0766", 1e-3));
 }
 
 // R1 + R2 of flat cables at 20 degC, the pairs of BS 7671 practice, tag M; 19.51 tag S (Linsley p.
 // 248).
 TEST_CASE("R1 + R2 of flat cables at 20 degC are the pairs of British practice") {
-  const std::vector<std::pair<const char*, const char*>> rows = {{"1/1", "36.2"},
-                                                                 {"1.5/1", "30.2"},
-                                                                 {"2.5/1.5", "19.51"},
-                                                                 {"4/1.5", "16.71"},
-                                                                 {"6/2.5", "10.49"},
-                                                                 {"10/4", "6.44"},
-                                                                 {"16/6", "4.23"}};
+  const std::vector<std::pair<const char*, const char*>> rows = {
+      {"1/1", "36.2"},    {"1.5/1", "30.2"}, {"2.5/1.5", "19.51"}, {"4/1.5", "16.71"},
+      {"6/2.5", "10.49"}, {"10/4", "6.44"},  {"16/6", "4.23"}};
   std::string text = head() + stiff_supply() + "[board.main]\n[circuit.main]\n";
   for (std::size_t i = 0; i < rows.size(); ++i) {
     text += "W" + std::to_string(i) +
-            " = { use = \"fixed\", phases = \"L1\", device = \"B 16 A\", cable = \"flat-pvc-cu " +
-            rows[i].first + " mm2\", length = \"100 m\" }\n";
+            " = { use = \"fixed\", phases = \"L1\", device = \"B 16 A\", cable = \"flat-pvc-cu " + rows[i].first +
+            " mm2\", length = \"100 m\" }\n";
   }
   const auto all = faults(text);
   for (std::size_t i = 0; i < rows.size(); ++i) {

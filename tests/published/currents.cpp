@@ -19,12 +19,10 @@ using Catch::Matchers::WithinAbs;
 using Catch::Matchers::WithinRel;
 using sunder::support::Printed;
 
-std::string transformer(const std::string& voltage,
-                        const std::string& rating,
-                        const std::string& uk,
+std::string transformer(const std::string& voltage, const std::string& rating, const std::string& uk,
                         const std::string& rest) {
-  return head() + "[transformer.T]\nfeeds = \"main\"\nvoltage = \"" + voltage + "\"\nrating = \"" +
-         rating + " kVA\"\nuk = \"" + uk + " %\"\nearthing = \"TN-S\"\n" + rest + "[board.main]\n";
+  return head() + "[transformer.T]\nfeeds = \"main\"\nvoltage = \"" + voltage + "\"\nrating = \"" + rating +
+         " kVA\"\nuk = \"" + uk + " %\"\nearthing = \"TN-S\"\n" + rest + "[board.main]\n";
 }
 
 // A page that mostly cuts digits and sometimes rounds them: the value lies less than half a unit of
@@ -45,22 +43,17 @@ TEST_CASE("Short-circuit currents behind eleven oil transformers are those of a 
     const char *rating, *uk, *losses, *z, *r, *amps;  // kVA, %, kW, mohm, mohm, kA
   };
   const std::vector<Row> rows = {
-      {"100", "4", "2.15", "70.56", "37.9", "3.43"},
-      {"160", "4", "2.35", "44.1", "16.19", "5.49"},
-      {"250", "4", "3.25", "28.22", "9.17", "8.59"},
-      {"315", "4", "3.9", "22.4", "6.9", "10.82"},
-      {"400", "4", "4.6", "17.64", "5.07", "13.74"},
-      {"500", "4", "5.5", "14.112", "3.88", "17.18"},
-      {"630", "4", "6.5", "11.2", "2.88", "21.65"},
-      {"800", "6", "10.7", "13.23", "2.94", "18.32"},
-      {"1000", "6", "13", "10.58", "2.3", "22.91"},
-      {"1250", "6", "16", "8.46", "1.8", "28.66"},
+      {"100", "4", "2.15", "70.56", "37.9", "3.43"}, {"160", "4", "2.35", "44.1", "16.19", "5.49"},
+      {"250", "4", "3.25", "28.22", "9.17", "8.59"}, {"315", "4", "3.9", "22.4", "6.9", "10.82"},
+      {"400", "4", "4.6", "17.64", "5.07", "13.74"}, {"500", "4", "5.5", "14.112", "3.88", "17.18"},
+      {"630", "4", "6.5", "11.2", "2.88", "21.65"},  {"800", "6", "10.7", "13.23", "2.94", "18.32"},
+      {"1000", "6", "13", "10.58", "2.3", "22.91"},  {"1250", "6", "16", "8.46", "1.8", "28.66"},
       {"1600", "6", "20", "6.615", "1.37", "36.65"},
   };
   for (const Row& row : rows) {
     CAPTURE(row.rating);
-    const auto all = faults(transformer(
-        "242.4871/420 V", row.rating, row.uk, std::string("losses = \"") + row.losses + " kW\"\n"));
+    const auto all =
+        faults(transformer("242.4871/420 V", row.rating, row.uk, std::string("losses = \"") + row.losses + " kW\"\n"));
     const FaultAnswer three = at(all, "maximum", "main", "three-phase");
     check_cut(three.ohms * 1e3, row.z);
     check_cut(three.ohms / std::hypot(1.0, three.x_over_r) * 1e3, row.r);
@@ -81,37 +74,26 @@ TEST_CASE("Short-circuit currents behind eleven oil transformers are those of a 
 // before it, so that the program's complex sum is the same. The minimum is used: there the network
 // has no voltage factor of its own. The note cuts the power to three digits first, hence up to two
 // units of the last digit.
-TEST_CASE(
-    "Short-circuit currents behind a finite network are those of the published power method") {
+TEST_CASE("Short-circuit currents behind a finite network are those of the published power method") {
   struct Row {
     const char *level, *rating, *uk, *amps;  // MVA, kVA, %, kA
   };
   const std::vector<Row> rows = {
-      {"125", "100", "4", "3.45"},
-      {"125", "160", "4", "5.45"},
-      {"125", "250", "4", "8.37"},
-      {"125", "315", "4", "10.42"},
-      {"125", "400", "4", "13.02"},
-      {"125", "500", "4", "16.00"},
-      {"125", "630", "4", "19.68"},
-      {"125", "800", "6", "16.96"},
-      {"250", "160", "4", "5.54"},
+      {"125", "100", "4", "3.45"},  {"125", "160", "4", "5.45"},  {"125", "250", "4", "8.37"},
+      {"125", "315", "4", "10.42"}, {"125", "400", "4", "13.02"}, {"125", "500", "4", "16.00"},
+      {"125", "630", "4", "19.68"}, {"125", "800", "6", "16.96"}, {"250", "160", "4", "5.54"},
       {"250", "315", "4", "10.75"},
   };
   for (const Row& row : rows) {
     CAPTURE(row.level, row.rating);
-    const auto all = faults(
-        transformer("236.7136/410 V",
-                    row.rating,
-                    row.uk,
-                    std::string("x_over_r = 10\nfault_level = \"") + row.level + " MVA\"\n"));
+    const auto all = faults(transformer("236.7136/410 V", row.rating, row.uk,
+                                        std::string("x_over_r = 10\nfault_level = \"") + row.level + " MVA\"\n"));
     check_cut(at(all, "minimum", "main", "three-phase").amps / kMinBritish / 1e3, row.amps, 2);
   }
   // These two are rounded.
   for (const auto& [rating, amps] : {std::pair{"100", "3.49"}, std::pair{"250", "8.59"}}) {
     CAPTURE(rating);
-    const auto all = faults(
-        transformer("236.7136/410 V", rating, "4", "x_over_r = 10\nfault_level = \"250 MVA\"\n"));
+    const auto all = faults(transformer("236.7136/410 V", rating, "4", "x_over_r = 10\nfault_level = \"250 MVA\"\n"));
     CHECK_THAT(at(all, "minimum", "main", "three-phase").amps / kMinBritish / 1e3, Printed(amps));
   }
 }
@@ -119,23 +101,17 @@ TEST_CASE(
 // A cable of resistances and reactances in mohm/m; its protective conductor is the armour, which in
 // the maximum has neither temperature nor magnetic factor.
 std::string cable(const std::string& name, double r, double x, double cpc_r, double cpc_x) {
-  return "[cable." + name +
-         "]\nmaterial = \"copper\"\ninsulation = \"pvc70\"\ncores = 4\narmour = \"steel\"\n" +
+  return "[cable." + name + "]\nmaterial = \"copper\"\ninsulation = \"pvc70\"\ncores = 4\narmour = \"steel\"\n" +
          "sizes = [{ size = \"10 mm2\", r20 = \"" + digits(r) + " mohm/m\", x = \"" + digits(x) +
-         " mohm/m\", armour_area = \"10 mm2\", armour_r20 = \"" + digits(cpc_r) +
-         " mohm/m\", armour_x = \"" + digits(cpc_x) +
-         " mohm/m\" }]\nsource = \"the published case\"\n";
+         " mohm/m\", armour_area = \"10 mm2\", armour_r20 = \"" + digits(cpc_r) + " mohm/m\", armour_x = \"" +
+         digits(cpc_x) + " mohm/m\" }]\nsource = \"the published case\"\n";
 }
 
-std::string submain(const std::string& name,
-                    const std::string& from,
-                    const std::string& to,
-                    const std::string& cable_name,
-                    double metres,
-                    const std::string& rest = "cpc = \"armour\"\n") {
+std::string submain(const std::string& name, const std::string& from, const std::string& to,
+                    const std::string& cable_name, double metres, const std::string& rest = "cpc = \"armour\"\n") {
   return "[submain." + name + "]\nfrom = \"" + from + "\"\nto = \"" + to +
-         "\"\ndevice = \"switch 1000 A\"\ncable = \"" + cable_name + " 10 mm2\"\nlength = \"" +
-         digits(metres) + " m\"\n" + rest + "[board." + to + "]\n";
+         "\"\ndevice = \"switch 1000 A\"\ncable = \"" + cable_name + " 10 mm2\"\nlength = \"" + digits(metres) +
+         " m\"\n" + rest + "[board." + to + "]\n";
 }
 
 constexpr double kFoot = 0.3048;  // [m]
@@ -146,12 +122,11 @@ constexpr double kFoot = 0.3048;  // [m]
 TEST_CASE("Currents of the point-to-point method on 208Y/120 V are those of a plan-review sheet") {
   const double source = 208 / std::numbers::sqrt3 / 46273;
   const std::string loops = "three_phase = \"" + digits(source) + " ohm\", power_factor = 1";
-  const std::string text =
-      head() + supply("120.0889/208 V", loops, loops) + "[board.main]\n" +
-      cable("service", 1e3 / 22185 / kFoot, 0, 1, 0) +
-      cable("feeder", 1e3 / 5907 / kFoot, 0, 1, 0) +
-      submain("S1", "main", "one", "service", 20 * kFoot, "cpc = \"armour\"\nin_parallel = 2\n") +
-      submain("S2", "one", "two", "feeder", 20 * kFoot);
+  const std::string text = head() + supply("120.0889/208 V", loops, loops) + "[board.main]\n" +
+                           cable("service", 1e3 / 22185 / kFoot, 0, 1, 0) +
+                           cable("feeder", 1e3 / 5907 / kFoot, 0, 1, 0) +
+                           submain("S1", "main", "one", "service", 20 * kFoot, "cpc = \"armour\"\nin_parallel = 2\n") +
+                           submain("S2", "one", "two", "feeder", 20 * kFoot);
   const auto all = faults(text);
   CHECK_THAT(at(all, "maximum", "main", "three-phase").amps / kMax, Printed("46273"));
   // Printed 39,425 and 18,687: the multiplier is rounded to 0.852 before it is used.
@@ -164,15 +139,12 @@ TEST_CASE("Currents of the point-to-point method on 208Y/120 V are those of a pl
 // sheet's faults to the mid-point are left out: it starts them from 1.5 times the current but
 // divides by the whole.
 TEST_CASE("Currents along a 240 V chain are those of a published spreadsheet") {
-  const std::string loops =
-      "line_neutral = \"0.005184 ohm\", line_earth = \"0.005184 ohm\", power_factor = 1";
-  const std::string text = head() + supply("240 V", loops, loops) + "[board.main]\n" +
-                           cable("first", 1e3 / 13923 / kFoot, 0, 1, 0) +
-                           cable("second", 1e3 / 2430 / kFoot, 0, 1, 0) +
-                           cable("third", 1e3 / 617 / kFoot, 0, 1, 0) +
-                           submain("S1", "main", "one", "first", 150 * kFoot) +
-                           submain("S2", "one", "two", "second", 40 * kFoot) +
-                           submain("S3", "two", "three", "third", 30 * kFoot);
+  const std::string loops = "line_neutral = \"0.005184 ohm\", line_earth = \"0.005184 ohm\", power_factor = 1";
+  const std::string text =
+      head() + supply("240 V", loops, loops) + "[board.main]\n" + cable("first", 1e3 / 13923 / kFoot, 0, 1, 0) +
+      cable("second", 1e3 / 2430 / kFoot, 0, 1, 0) + cable("third", 1e3 / 617 / kFoot, 0, 1, 0) +
+      submain("S1", "main", "one", "first", 150 * kFoot) + submain("S2", "one", "two", "second", 40 * kFoot) +
+      submain("S3", "two", "three", "third", 30 * kFoot);
   const auto all = faults(text);
   CHECK_THAT(at(all, "maximum", "main", "line-neutral").amps / kMax, Printed("46296"));
   CHECK_THAT(at(all, "maximum", "one", "line-neutral").amps / kMax, Printed("8978"));
@@ -191,11 +163,10 @@ TEST_CASE(
   const auto feeder = [](double r, double x, const char* key) {
     const std::string loops = std::string("three_phase = \"0.0001 ohm\", ") + key + " = \"" +
                               digits(std::hypot(r, x) / 20) + " ohm\", x_over_r = " + digits(x / r);
-    const std::string lines = std::string("three_phase = \"") + digits(std::hypot(r, x) / 20) +
-                              " ohm\", x_over_r = " + digits(x / r);
+    const std::string lines =
+        std::string("three_phase = \"") + digits(std::hypot(r, x) / 20) + " ohm\", x_over_r = " + digits(x / r);
     const bool earth = std::string(key) == "line_earth";
-    return faults(head() + supply("360/623.5383 V", earth ? loops : lines, "Ze = \"10 ohm\"") +
-                  "[board.main]\n" +
+    return faults(head() + supply("360/623.5383 V", earth ? loops : lines, "Ze = \"10 ohm\"") + "[board.main]\n" +
                   cable("line", 0.61248 / 20, 1.275648 / 20, 0.055264 / 20, 0.90992 / 20) +
                   submain("S", "main", "end", "line", 1000));
   };
@@ -212,8 +183,7 @@ TEST_CASE(
 // twentieth here.
 TEST_CASE("Greatest and least currents along a radial feeder are those of a textbook") {
   std::string text = head() +
-                     supply("398.3717/690 V",
-                            "three_phase = \"0.125 ohm\", power_factor = 0",
+                     supply("398.3717/690 V", "three_phase = \"0.125 ohm\", power_factor = 0",
                             "three_phase = \"0.25 ohm\", power_factor = 0") +
                      "[board.bus1]\n";
   text.replace(text.find("\"main\""), 6, "\"bus1\"");
@@ -224,11 +194,8 @@ TEST_CASE("Greatest and least currents along a radial feeder are those of a text
             submain("S" + n, "bus" + n, "bus" + std::to_string(i + 2), "s" + n, 1000);
   }
   const auto all = faults(text);
-  const std::vector<std::pair<const char*, const char*>> printed = {{"3187", "1380"},
-                                                                    {"658.5", "472.6"},
-                                                                    {"430.7", "328.6"},
-                                                                    {"300.7", "237.9"},
-                                                                    {"202.7", "165.1"}};
+  const std::vector<std::pair<const char*, const char*>> printed = {
+      {"3187", "1380"}, {"658.5", "472.6"}, {"430.7", "328.6"}, {"300.7", "237.9"}, {"202.7", "165.1"}};
   for (std::size_t i = 0; i < printed.size(); ++i) {
     const std::string bus = "bus" + std::to_string(i + 1);
     CAPTURE(bus);

@@ -21,24 +21,19 @@ struct Row {
 
 std::string circuits(const std::string& family, const std::vector<Row>& rows, const char* use) {
   std::string text = head() +
-                     supply("230/400 V",
-                            "three_phase = \"50 kA\", power_factor = 1",
+                     supply("230/400 V", "three_phase = \"50 kA\", power_factor = 1",
                             "Ze = \"0.1 ohm\", Zn = \"0.1 ohm\", power_factor = 1") +
                      bar() + "[board.main]\n[circuit.main]\n";
   for (const Row& row : rows) {
-    text += std::string("F") + row.In + " = { use = \"" + use + "\", phases = \"L1\", device = \"" +
-            family + " " + row.In + " A\", cable = \"bar 1000 mm2\", length = \"1 m\" }\n";
+    text += std::string("F") + row.In + " = { use = \"" + use + "\", phases = \"L1\", device = \"" + family + " " +
+            row.In + " A\", cable = \"bar 1000 mm2\", length = \"1 m\" }\n";
   }
   return text;
 }
 
 // truncated: the page cuts instead of rounding, so the value lies up to one unit above it.
-void compare(const std::string& family,
-             const std::vector<Row>& rows,
-             const char* use,
-             bool truncated = false) {
-  const SweepAnswer sweep =
-      vary(circuits(family, rows, use), "grid.minimum.Ze", "0.05 ohm", "30 ohm");
+void compare(const std::string& family, const std::vector<Row>& rows, const char* use, bool truncated = false) {
+  const SweepAnswer sweep = vary(circuits(family, rows, use), "grid.minimum.Ze", "0.05 ohm", "30 ohm");
   for (const Row& row : rows) {
     CAPTURE(family, row.In, use);
     const double Zs = flip(sweep, "disconnection time", std::string("main/F") + row.In);
@@ -90,13 +85,8 @@ TEST_CASE("BS 88-2 fuses disconnect in 5 s up to the loop impedances of Table 41
 // Without Cmin, tag S, as above; 100 A also
 // https://the-regs.co.uk/blog/index.php?rest_route=%2Fwp%2Fv2%2Fposts%2F499. Left out: 80 A with
 // Cmin (0.51 remembered, 0.95 x 0.53 is 0.50).
-TEST_CASE(
-    "BS 88-3 fuses disconnect in 0.4 s and 5 s up to the loop impedances of Tables 41.2 and 41.4") {
-  compare("BS 88-3",
-          {{"5", "10.45", "9.93"},
-           {"16", "2.42", "2.30"},
-           {"20", "2.04", "1.93"},
-           {"32", "0.96", "0.91"}},
+TEST_CASE("BS 88-3 fuses disconnect in 0.4 s and 5 s up to the loop impedances of Tables 41.2 and 41.4") {
+  compare("BS 88-3", {{"5", "10.45", "9.93"}, {"16", "2.42", "2.30"}, {"20", "2.04", "1.93"}, {"32", "0.96", "0.91"}},
           "fixed");
   compare("BS 88-3",
           {{"5", "15.33", "14.6"},
@@ -112,8 +102,7 @@ TEST_CASE(
 
 // Without Cmin, tag S, twice: the tester manual above and
 // https://it.scribd.com/document/36816780/Maximum-Ze-and-Zs-Values.
-TEST_CASE(
-    "BS 3036 fuses disconnect in 0.4 s and 5 s up to the loop impedances of Tables 41.2 and 41.4") {
+TEST_CASE("BS 3036 fuses disconnect in 0.4 s and 5 s up to the loop impedances of Tables 41.2 and 41.4") {
   compare("BS 3036", {{"5", "9.58", "9.10"}, {"20", "1.77", "1.68"}}, "fixed");
   // 90 A and 210 A give 2.556 and 1.095 ohm: the page cuts them to 2.55 and 1.09.
   compare("BS 3036", {{"15", "2.55", "2.43"}, {"30", "1.09", "1.04"}}, "fixed", true);
@@ -131,8 +120,7 @@ TEST_CASE(
 
 // BS 7671:2008, tag S: https://it.scribd.com/document/36816780/Maximum-Ze-and-Zs-Values; 0.4 s also
 // at https://pdfcoffee.com/bs-7671-tables-412-413-amp-414-pdf-free.html. Printed without Cmin.
-TEST_CASE(
-    "BS 1361 fuses disconnect in 0.4 s and 5 s up to the loop impedances of the 2008 tables") {
+TEST_CASE("BS 1361 fuses disconnect in 0.4 s and 5 s up to the loop impedances of the 2008 tables") {
   compare("BS 1361", {{"15", "3.28", ""}, {"20", "1.7", ""}, {"30", "1.15", ""}}, "fixed");
   compare("BS 1361",
           {{"15", "5.0", ""},
@@ -151,8 +139,7 @@ TEST_CASE(
   // 10.45 and 16.4 ohm are 22.01 and 14.02 A; the library's currents are those rounded up.
   for (const auto& [use, printed] : {std::pair{"fixed", 10.45}, std::pair{"distribution", 16.4}}) {
     CAPTURE(use);
-    const SweepAnswer sweep =
-        vary(circuits("BS 1361", {{"5", "", ""}}, use), "grid.minimum.Ze", "1 ohm", "30 ohm");
+    const SweepAnswer sweep = vary(circuits("BS 1361", {{"5", "", ""}}, use), "grid.minimum.Ze", "1 ohm", "30 ohm");
     const double Zs = flip(sweep, "disconnection time", "main/F5") / kMinBritish;
     CHECK(Zs <= printed * 1.003);
     CHECK(Zs >= printed * 0.99);
@@ -161,8 +148,7 @@ TEST_CASE(
 
 // Without Cmin, tag S, twice: as BS 3036. Left out: 3 A at 5 s with Cmin (22.0 remembered, 0.95
 // x 23.2 = 22.04).
-TEST_CASE(
-    "BS 1362 fuses disconnect in 0.4 s and 5 s up to the loop impedances of Tables 41.2 and 41.4") {
+TEST_CASE("BS 1362 fuses disconnect in 0.4 s and 5 s up to the loop impedances of Tables 41.2 and 41.4") {
   compare("BS 1362", {{"3", "16.4", "15.6"}, {"13", "2.42", "2.30"}}, "fixed");
   compare("BS 1362", {{"3", "23.2", ""}, {"13", "3.83", "3.64"}}, "distribution");
 }
@@ -175,34 +161,23 @@ struct Gate {
 // Tag S: a loop tester's manual, https://manualshive.com/ru/manual/kewtech/kt64/1959979?page=28 (Ia
 // 5 s). Its loop impedances are 230 V over these, some cut and some rounded, so the currents are
 // compared; 10 A is 46.5 A in IEC 60269 and cut to 46 there (the tie is within half a unit).
-const std::vector<Gate> kGates = {{"6", "28"},
-                                  {"10", "46"},
-                                  {"16", "65"},
-                                  {"20", "85"},
-                                  {"25", "110"},
-                                  {"32", "150"},
-                                  {"40", "190"},
-                                  {"50", "250"},
-                                  {"63", "320"},
-                                  {"80", "425"},
-                                  {"100", "580"}};
+const std::vector<Gate> kGates = {{"6", "28"},   {"10", "46"},  {"16", "65"},  {"20", "85"},
+                                  {"25", "110"}, {"32", "150"}, {"40", "190"}, {"50", "250"},
+                                  {"63", "320"}, {"80", "425"}, {"100", "580"}};
 
 TEST_CASE("gG fuses disconnect in 5 s from the currents that the standard's gates guarantee") {
   std::string text = head() +
-                     supply("230/400 V",
-                            "three_phase = \"50 kA\", power_factor = 1",
+                     supply("230/400 V", "three_phase = \"50 kA\", power_factor = 1",
                             "line_earth = \"100 A\", line_neutral = \"100 A\", power_factor = 1") +
                      bar() + "[board.main]\n[circuit.main]\n";
   for (const Gate& gate : kGates) {
-    text += std::string("F") + gate.In +
-            " = { use = \"distribution\", phases = \"L1\", device = \"gG " + gate.In +
+    text += std::string("F") + gate.In + " = { use = \"distribution\", phases = \"L1\", device = \"gG " + gate.In +
             " A\", cable = \"bar 1000 mm2\", length = \"1 m\" }\n";
   }
   const SweepAnswer sweep = vary(text, "grid.minimum.line_earth", "10 A", "1 kA");
   for (const Gate& gate : kGates) {
     CAPTURE(gate.In);
-    CHECK_THAT(flip(sweep, "disconnection time", std::string("main/F") + gate.In),
-               FlipPrints(gate.amps));
+    CHECK_THAT(flip(sweep, "disconnection time", std::string("main/F") + gate.In), FlipPrints(gate.amps));
   }
 }
 

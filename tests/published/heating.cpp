@@ -19,45 +19,33 @@ using sunder::support::Printed;
 std::string clock_fuse(const std::string& seconds) {
   return "[device.clock]\nkind = \"fuse\"\nIn = \"16 A\"\nIcn = \"200 kA\"\nlatest = [[\"20 A\", "
          "\"" +
-         seconds + " s\"], [\"200 kA\", \"" + seconds +
-         " s\"]]\nsource = \"a device of the test\"\n";
+         seconds + " s\"], [\"200 kA\", \"" + seconds + " s\"]]\nsource = \"a device of the test\"\n";
 }
 
 // Currents that the supply itself decides: the circuit has 1 m of little resistance.
-std::string declared(const std::string& most,
-                     const std::string& least,
-                     const std::string& least_neutral) {
-  return supply(
-      "230 V",
-      "line_neutral = \"" + least_neutral + "\", line_earth = \"" + most + "\", power_factor = 1",
-      "line_neutral = \"" + least_neutral + "\", line_earth = \"" + least + "\", power_factor = 1");
+std::string declared(const std::string& most, const std::string& least, const std::string& least_neutral) {
+  return supply("230 V", "line_neutral = \"" + least_neutral + "\", line_earth = \"" + most + "\", power_factor = 1",
+                "line_neutral = \"" + least_neutral + "\", line_earth = \"" + least + "\", power_factor = 1");
 }
 
 // One size of 100 mm2 (armour 10 mm2) without impedance worth mentioning.
-std::string cable(const std::string& material,
-                  const std::string& insulation,
-                  const std::string& armour) {
+std::string cable(const std::string& material, const std::string& insulation, const std::string& armour) {
   std::string size = "{ size = \"100 mm2\", r20 = \"0.000001 mohm/m\"";
   if (!armour.empty()) size += ", armour_area = \"10 mm2\", armour_r20 = \"0.000001 mohm/m\"";
-  return "[cable.c]\nmaterial = \"" + material + "\"\ninsulation = \"" + insulation +
-         "\"\ncores = 3\n" + (armour.empty() ? "" : "armour = \"" + armour + "\"\n") + "sizes = [" +
-         size + " }]\nsource = \"a cable of the test\"\n";
+  return "[cable.c]\nmaterial = \"" + material + "\"\ninsulation = \"" + insulation + "\"\ncores = 3\n" +
+         (armour.empty() ? "" : "armour = \"" + armour + "\"\n") + "sizes = [" + size +
+         " }]\nsource = \"a cable of the test\"\n";
 }
 
 // k [A sqrt(s)/mm2] of the conductor that burns first, from the current at which heating flips.
-double k_of(const std::string& cable_table,
-            const std::string& cable_text,
-            const std::string& cpc,
-            double area_mm2) {
+double k_of(const std::string& cable_table, const std::string& cable_text, const std::string& cpc, double area_mm2) {
   constexpr double kSeconds = 4;
-  const std::string text = head() + declared("100 A", "50 A", "50 A") +
-                           clock_fuse(digits(kSeconds)) + cable_table +
+  const std::string text = head() + declared("100 A", "50 A", "50 A") + clock_fuse(digits(kSeconds)) + cable_table +
                            "[board.main]\n[circuit.main]\nW = { use = \"distribution\", phases = "
                            "\"L1\", device = \"clock\", "
                            "cable = \"" +
                            cable_text + "\", cpc = \"" + cpc + "\", length = \"0.001 m\" }\n";
-  const double amps =
-      flip(vary(text, "grid.maximum.line_earth", "100 A", "20 kA"), "conductor heating", "main/W");
+  const double amps = flip(vary(text, "grid.maximum.line_earth", "100 A", "20 kA"), "conductor heating", "main/W");
   return amps * std::sqrt(kSeconds) / area_mm2;
 }
 
@@ -101,11 +89,8 @@ TEST_CASE("k of each conductor is that of the printed tables and of the constant
   for (const Row& row : rows) {
     CAPTURE(row.what);
     const bool armour = std::string(row.cpc) == "armour";
-    const std::string kind = !armour                             ? ""
-                             : row.constants.beta == kSteel.beta ? "steel"
-                                                                 : "aluminium";
-    const double k =
-        k_of(cable(row.material, row.insulation, kind), "c 100 mm2", row.cpc, row.area);
+    const std::string kind = !armour ? "" : row.constants.beta == kSteel.beta ? "steel" : "aluminium";
+    const double k = k_of(cable(row.material, row.insulation, kind), "c 100 mm2", row.cpc, row.area);
     CHECK_THAT(k, Printed(row.printed));
     // The tables are within one unit of the formula (aluminium 90/250: 94.6, printed 94).
     CHECK(std::abs(k - from_constants(row.constants, row.initial, row.final)) < 1.0);
@@ -123,16 +108,12 @@ TEST_CASE(
                            "[board.main]\n[circuit.main]\nW = { use = \"distribution\", phases = "
                            "\"L1\", device = \"clock\", "
                            "cable = \"multicore-xlpe-cu-3c 95 mm2\", length = \"0.001 m\" }\n";
-  const double amps =
-      flip(vary(text, "grid.maximum.line_earth", "100 A", "20 kA"), "conductor heating", "main/W");
+  const double amps = flip(vary(text, "grid.maximum.line_earth", "100 A", "20 kA"), "conductor heating", "main/W");
   CHECK_THAT(amps / 1e3, Printed("13.6"));
 }
 
 // The size that the heat found needs: S sqrt(value / limit).
-double size_needed(const std::string& amps,
-                   const std::string& seconds,
-                   const std::string& cable_text,
-                   double cpc_mm2) {
+double size_needed(const std::string& amps, const std::string& seconds, const std::string& cable_text, double cpc_mm2) {
   const auto all = check(head() + declared(amps, amps, amps) + clock_fuse(seconds) +
                          "[board.main]\n[circuit.main]\nW = { use = \"fixed\", phases = \"L1\", "
                          "device = \"clock\", cable = \"" +
@@ -165,8 +146,7 @@ TEST_CASE("The let-through of a B 32 A spares 1.5 mm2 and burns a cpc of 1.0 mm2
                  "phases = \"L1\", device = \"maker\", cable = \"" +
                  cable_text + "\", length = \"0.001 m\" }\n");
   };
-  const FindingAnswer reduced =
-      finding(answers("flat-pvc-cu 1.5/1 mm2"), "conductor heating", "main/W");
+  const FindingAnswer reduced = finding(answers("flat-pvc-cu 1.5/1 mm2"), "conductor heating", "main/W");
   CHECK(reduced.verdict == "fails");
   CHECK_THAT(reduced.value, Printed("29000"));
   CHECK_THAT(reduced.limit, Printed("13225"));
@@ -198,10 +178,9 @@ TEST_CASE("A 30 A semi-enclosed fuse protects 1 mm2 at no current") {
 // https://electriciansforums.net/threads/adiabatic-equation.20007/post-146036.
 TEST_CASE("Energy limiting classes let through what EN 60898-1 prints for 16 A and 10 kA") {
   const auto passes = [](const std::string& device) {
-    const auto all =
-        check(head() + declared("9.9 kA", "1 kA", "9.9 kA") +
-              "[board.main]\n[circuit.main]\nW = { use = \"fixed\", phases = \"L1\", device = \"" +
-              device + "\", cable = \"singles-pvc-cu 2.5 mm2\", length = \"0.001 m\" }\n");
+    const auto all = check(head() + declared("9.9 kA", "1 kA", "9.9 kA") +
+                           "[board.main]\n[circuit.main]\nW = { use = \"fixed\", phases = \"L1\", device = \"" +
+                           device + "\", cable = \"singles-pvc-cu 2.5 mm2\", length = \"0.001 m\" }\n");
     return finding(all, "conductor heating", "main/W").value;
   };
   CHECK_THAT(passes("B 16 A 10 kA class 3"), Printed("70000"));

@@ -16,11 +16,7 @@ using namespace sunder::published;
 // A cable whose line conductor has, at 70 degC, the hot resistivity of the guide [ohm mm2/m] over
 // `area` [mm2] and whose protective conductor has m times its resistance. The rule set takes 1.2 at
 // 70 degC.
-std::string cable(const std::string& name,
-                  double rho,
-                  double area,
-                  double m,
-                  const std::string& material = "copper") {
+std::string cable(const std::string& name, double rho, double area, double m, const std::string& material = "copper") {
   const double r20 = rho / area / 1.2 * 1e3;  // [mohm/m]
   return "[cable." + name + "]\nmaterial = \"" + material +
          "\"\ninsulation = \"pvc70\"\ncores = 2\nbuilt_in_cpc = true\nsizes = [{ size = \"10 "
@@ -29,16 +25,12 @@ std::string cable(const std::string& name,
          " mohm/m\" }]\nsource = \"resistivity of the guide\"\n";
 }
 
-double greatest_length(const std::string& device,
-                       const std::string& cable_table,
-                       const std::string& voltage,
+double greatest_length(const std::string& device, const std::string& cable_table, const std::string& voltage,
                        const std::string& devices = "") {
-  const std::string text =
-      head() + stiff_supply(voltage) + cable_table + devices +
-      "[board.main]\n[circuit.main]\nW = { use = \"fixed\", phases = \"L1\", device = \"" + device +
-      "\", cable = \"c 10 mm2\", length = \"10 m\" }\n";
-  return flip(vary(text, "main/W.length", "10 m", "2000 m"), "disconnection time", "main/W") * 0.8 /
-         kMinBritish;
+  const std::string text = head() + stiff_supply(voltage) + cable_table + devices +
+                           "[board.main]\n[circuit.main]\nW = { use = \"fixed\", phases = \"L1\", device = \"" +
+                           device + "\", cable = \"c 10 mm2\", length = \"10 m\" }\n";
+  return flip(vary(text, "main/W.length", "10 m", "2000 m"), "disconnection time", "main/W") * 0.8 / kMinBritish;
 }
 
 // Tag S: https://studylib.net/doc/18223823/maximum-cable-length (B curves, rho 0.0225, m = 1; 50
@@ -46,8 +38,7 @@ double greatest_length(const std::string& device,
 TEST_CASE("Circuits behind type B breakers may be as long as a published table says") {
   CHECK_THAT(greatest_length("B 2 A", cable("c", 0.0225, 1.5, 1), "230/400 V"), FlipPrints("613"));
   CHECK_THAT(greatest_length("B 2 A", cable("c", 0.0225, 2.5, 1), "230/400 V"), FlipPrints("1022"));
-  CHECK_THAT(greatest_length("B 125 A", cable("c", 0.0225, 47.5, 1), "230/400 V"),
-             FlipPrints("311"));
+  CHECK_THAT(greatest_length("B 125 A", cable("c", 0.0225, 47.5, 1), "230/400 V"), FlipPrints("311"));
 }
 
 // Tag S:
@@ -56,12 +47,9 @@ TEST_CASE("Circuits behind type B breakers may be as long as a published table s
 TEST_CASE(
     "A circuit behind a type D breaker that trips at 14 In may be as long as a published table "
     "says") {
-  CHECK_THAT(
-      greatest_length("d14",
-                      cable("c", 0.023, 1.5, 1),
-                      "230/400 V",
-                      "[device.d14]\nlike = \"D\"\nIn = \"1 A\"\ninstantaneous = \"10 14\"\n"),
-      FlipPrints("429"));
+  CHECK_THAT(greatest_length("d14", cable("c", 0.023, 1.5, 1), "230/400 V",
+                             "[device.d14]\nlike = \"D\"\nIn = \"1 A\"\ninstantaneous = \"10 14\"\n"),
+             FlipPrints("429"));
 }
 
 // Tag S:
@@ -73,8 +61,7 @@ TEST_CASE("A circuit behind a type C breaker at 220 V may be as long as a publis
 }
 
 // Tag S: https://studylib.net/doc/18223823/maximum-cable-length, factors for m = 1 2 3 4.
-TEST_CASE(
-    "Smaller protective conductors and aluminium shorten a circuit by the published factors") {
+TEST_CASE("Smaller protective conductors and aluminium shorten a circuit by the published factors") {
   const double whole = greatest_length("B 2 A", cable("c", 0.0225, 1.5, 1), "230/400 V");
   const auto share = [&](double rho, double m, const char* material) {
     return greatest_length("B 2 A", cable("c", rho, 1.5, m, material), "230/400 V") / whole;

@@ -15,8 +15,7 @@ using Catch::Matchers::WithinRel;
 using sunder::support::Printed;
 
 std::string resistive(const std::string& Ze) {
-  return supply("230/400 V",
-                "three_phase = \"50 kA\", power_factor = 1",
+  return supply("230/400 V", "three_phase = \"50 kA\", power_factor = 1",
                 "Ze = \"" + Ze + "\", Zn = \"" + Ze + "\", power_factor = 1");
 }
 
@@ -25,38 +24,32 @@ std::string resistive(const std::string& Ze) {
 // R and X summed separately: transformer 0.005/0.017 ohm; phase 0.008/0.004 and return 0.008/0.001;
 // phase 0.008/0.004 and armour 0.032; phase 0.023 and conduit 0.007/0.008. One temperature: the
 // maximum here.
-TEST_CASE(
-    "The loop from a 500 kVA transformer to a final circuit is that of a published calculation") {
-  const auto cable =
-      [](const std::string& name, double metres, double r, double x, double cpc_r, double cpc_x) {
-        const auto per_metre = [metres](double ohms) {
-          return digits(ohms / metres * 1e3) + " mohm/m\"";
-        };
-        return "[cable." + name +
-               "]\nmaterial = \"aluminium\"\ninsulation = \"pvc70\"\ncores = 4\narmour = "
-               "\"steel\"\nsizes = [{ size = "
-               "\"185 mm2\", r20 = \"" +
-               per_metre(r) + ", x = \"" + per_metre(x) +
-               ", armour_area = \"100 mm2\", armour_r20 = \"" + per_metre(cpc_r) +
-               ", armour_x = \"" + per_metre(cpc_x) + " }]\nsource = \"the published case\"\n";
-      };
-  const std::string text =
-      head() +
-      supply("230/400 V",
-             "three_phase = \"0.017 ohm\", line_earth = \"" + digits(std::hypot(0.005, 0.017)) +
-                 " ohm\", x_over_r = 3.4",
-             "Ze = \"1 ohm\"") +
-      "[board.main]\n[board.A]\n[board.B]\n" + cable("one", 100, 0.008, 0.004, 0.008, 0.001) +
-      cable("two", 50, 0.008, 0.004, 0.032, 0) + cable("three", 5, 0.023, 0, 0.007, 0.008) +
-      "[submain.S1]\nfrom = \"main\"\nto = \"A\"\ndevice = \"switch 630 A\"\ncable = \"one 185 "
-      "mm2\"\ncpc = \"armour\"\n"
-      "length = \"100 m\"\n"
-      "[submain.S2]\nfrom = \"A\"\nto = \"B\"\ndevice = \"switch 250 A\"\ncable = \"two 185 "
-      "mm2\"\ncpc = \"armour\"\n"
-      "length = \"50 m\"\n"
-      "[circuit.B]\nC = { use = \"fixed\", phases = \"L1\", device = \"gG 32 A\", cable = \"three "
-      "185 mm2\", cpc = "
-      "\"armour\", length = \"5 m\" }\n";
+TEST_CASE("The loop from a 500 kVA transformer to a final circuit is that of a published calculation") {
+  const auto cable = [](const std::string& name, double metres, double r, double x, double cpc_r, double cpc_x) {
+    const auto per_metre = [metres](double ohms) { return digits(ohms / metres * 1e3) + " mohm/m\""; };
+    return "[cable." + name +
+           "]\nmaterial = \"aluminium\"\ninsulation = \"pvc70\"\ncores = 4\narmour = "
+           "\"steel\"\nsizes = [{ size = "
+           "\"185 mm2\", r20 = \"" +
+           per_metre(r) + ", x = \"" + per_metre(x) + ", armour_area = \"100 mm2\", armour_r20 = \"" +
+           per_metre(cpc_r) + ", armour_x = \"" + per_metre(cpc_x) + " }]\nsource = \"the published case\"\n";
+  };
+  const std::string text = head() +
+                           supply("230/400 V",
+                                  "three_phase = \"0.017 ohm\", line_earth = \"" + digits(std::hypot(0.005, 0.017)) +
+                                      " ohm\", x_over_r = 3.4",
+                                  "Ze = \"1 ohm\"") +
+                           "[board.main]\n[board.A]\n[board.B]\n" + cable("one", 100, 0.008, 0.004, 0.008, 0.001) +
+                           cable("two", 50, 0.008, 0.004, 0.032, 0) + cable("three", 5, 0.023, 0, 0.007, 0.008) +
+                           "[submain.S1]\nfrom = \"main\"\nto = \"A\"\ndevice = \"switch 630 A\"\ncable = \"one 185 "
+                           "mm2\"\ncpc = \"armour\"\n"
+                           "length = \"100 m\"\n"
+                           "[submain.S2]\nfrom = \"A\"\nto = \"B\"\ndevice = \"switch 250 A\"\ncable = \"two 185 "
+                           "mm2\"\ncpc = \"armour\"\n"
+                           "length = \"50 m\"\n"
+                           "[circuit.B]\nC = { use = \"fixed\", phases = \"L1\", device = \"gG 32 A\", cable = \"three "
+                           "185 mm2\", cpc = "
+                           "\"armour\", length = \"5 m\" }\n";
   const auto all = faults(text);
   CHECK_THAT(at(all, "maximum", "A", "line-earth").ohms, Printed("0.030"));
   CHECK_THAT(at(all, "maximum", "B", "line-earth").ohms, Printed("0.066"));
@@ -96,8 +89,7 @@ TEST_CASE("The loop of a 20 A radial circuit is that of a textbook, cold and hot
 // Tag R: a manufacturer's installation guide, chapter on TN. 50 m of 35 mm2, rho 0.0225 ohm mm2/m,
 // the circuit alone. The guide divides 230 V by the rounded 64.3 mohm: 3,576 A; 64.29 mohm give
 // 3,578 A.
-TEST_CASE(
-    "The loop of a 35 mm2 circuit by the conventional method is that of an installation guide") {
+TEST_CASE("The loop of a 35 mm2 circuit by the conventional method is that of an installation guide") {
   const auto all = faults(head() + stiff_supply() +
                           "[cable.c]\nmaterial = \"copper\"\ninsulation = \"pvc70\"\ncores = "
                           "5\nsizes = [{ size = \"35 mm2\", r20 = \"" +
@@ -135,11 +127,8 @@ TEST_CASE("Earth-fault currents of TT installations are those of published exerc
   const auto current = [](const std::string& neutral_electrode, const std::string& electrode) {
     const auto all = faults(
         head() +
-        supply("230/400 V",
-               "three_phase = \"10 kA\", power_factor = 1",
-               "line_earth = \"" + neutral_electrode +
-                   "\", line_neutral = \"0.5 ohm\", power_factor = 1",
-               "TT") +
+        supply("230/400 V", "three_phase = \"10 kA\", power_factor = 1",
+               "line_earth = \"" + neutral_electrode + "\", line_neutral = \"0.5 ohm\", power_factor = 1", "TT") +
         bar() + "[board.main]\n[electrode.rod]\nboard = \"main\"\nresistance = \"" + electrode +
         "\"\n[circuit.main]\nW = { use = \"fixed\", phases = \"L1\", device = \"B 16 A 6 kA 30 "
         "mA\", cable = \"bar 1000 "

@@ -14,17 +14,14 @@ std::string digits(double value) {
 
 std::string head(const char* rules) { return std::string("rules = \"") + rules + "\"\n"; }
 
-std::string supply(const std::string& voltage,
-                   const std::string& maximum,
-                   const std::string& minimum,
+std::string supply(const std::string& voltage, const std::string& maximum, const std::string& minimum,
                    const std::string& earthing) {
-  return "[supply.grid]\nfeeds = \"main\"\nvoltage = \"" + voltage + "\"\nearthing = \"" +
-         earthing + "\"\nmaximum = { " + maximum + " }\nminimum = { " + minimum + " }\n";
+  return "[supply.grid]\nfeeds = \"main\"\nvoltage = \"" + voltage + "\"\nearthing = \"" + earthing +
+         "\"\nmaximum = { " + maximum + " }\nminimum = { " + minimum + " }\n";
 }
 
 std::string stiff_supply(const std::string& voltage) {
-  const std::string loops =
-      "line_neutral = \"0.0000001 ohm\", line_earth = \"0.0000001 ohm\", power_factor = 1";
+  const std::string loops = "line_neutral = \"0.0000001 ohm\", line_earth = \"0.0000001 ohm\", power_factor = 1";
   return supply(voltage, "three_phase = \"0.0000001 ohm\", " + loops, loops);
 }
 

@@ -21,9 +21,7 @@ inline constexpr double kMinBritish = 0.95;  ///< Cmin of BS 7671
 [[nodiscard]] std::string head(const char* rules = kBritish);
 
 /// [supply.grid] feeding board "main"; maximum and minimum are the tables as written.
-[[nodiscard]] std::string supply(const std::string& voltage,
-                                 const std::string& maximum,
-                                 const std::string& minimum,
+[[nodiscard]] std::string supply(const std::string& voltage, const std::string& maximum, const std::string& minimum,
                                  const std::string& earthing = "TN-S");
 
 /// A supply without impedance of its own (0.1 microhm).

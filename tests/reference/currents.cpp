@@ -11,12 +11,10 @@ namespace {
 using Complex = std::complex<double>;
 
 constexpr double kUnknown = std::numeric_limits<double>::quiet_NaN();
-constexpr double kFactorMaximum = 1.1;   // voltage factors of the condition [1]
+constexpr double kFactorMaximum = 1.1;  // voltage factors of the condition [1]
 constexpr double kFactorMinimum = 0.95;
 
-double factor(Condition condition) {
-  return condition == Condition::maximum ? kFactorMaximum : kFactorMinimum;
-}
+double factor(Condition condition) { return condition == Condition::maximum ? kFactorMaximum : kFactorMinimum; }
 
 // Voltage that drives one amount of current through the impedance that `ask` gives [V]: the declared
 // line-to-neutral voltage for loops through N or PE, the declared line-to-line voltage for loops between
@@ -78,8 +76,7 @@ SourcePart source_part(const Source& source, Fault fault, Condition condition) {
     return unknown;
   }
   // Minimum without a three-phase value: the line takes all of the smaller loop.
-  if (bound.line_neutral.given() &&
-      ohms_of(bound.line_neutral, condition) < ohms_of(bound.line_earth, condition)) {
+  if (bound.line_neutral.given() && ohms_of(bound.line_neutral, condition) < ohms_of(bound.line_earth, condition)) {
     return part(bound.line_neutral, bound, condition);
   }
   return part(bound.line_earth, bound, condition);
@@ -163,9 +160,8 @@ std::vector<Current> currents_of(const Network& network, Condition condition) {
     current.peak = condition == Condition::maximum
                        ? kappa(inductive[i].real(), inductive[i].imag()) * std::sqrt(2.0) * current.amps
                        : kUnknown;
-    current.x_over_r = source.known && source.least_angle == source.most_angle
-                           ? loop[i].imag() / loop[i].real()
-                           : kUnknown;
+    current.x_over_r =
+        source.known && source.least_angle == source.most_angle ? loop[i].imag() / loop[i].real() : kUnknown;
     currents.push_back(current);
   }
   return currents;
@@ -192,9 +188,9 @@ std::vector<Current> with_rings(std::vector<Current> currents, const Network& ne
       own.push_back(current);
       own.back().node = name;
     }
-    currents.erase(std::remove_if(currents.begin(), currents.end(),
-                                  [&](const Current& c) { return c.node == name + "/middle"; }),
-                   currents.end());
+    currents.erase(
+        std::remove_if(currents.begin(), currents.end(), [&](const Current& c) { return c.node == name + "/middle"; }),
+        currents.end());
     currents.insert(currents.end(), own.begin(), own.end());
   }
   return currents;
@@ -206,10 +202,14 @@ const char* word(Condition condition) { return condition == Condition::maximum ?
 
 const char* word(Fault fault) {
   switch (fault) {
-    case Fault::three_phase: return "three-phase";
-    case Fault::line_line: return "line-line";
-    case Fault::line_neutral: return "line-neutral";
-    case Fault::line_earth: return "line-earth";
+    case Fault::three_phase:
+      return "three-phase";
+    case Fault::line_line:
+      return "line-line";
+    case Fault::line_neutral:
+      return "line-neutral";
+    case Fault::line_earth:
+      return "line-earth";
   }
   return "";
 }

@@ -59,7 +59,9 @@ Strands strands_of(const Run& run, Condition condition, double ambient_degc) {
     case Cpc::built_in:
       strands.protective = {{size.cpc_r20 * 1e-3 * core, size.x * 1e-3}};
       break;
-    case Cpc::core: strands.protective = {strands.live}; break;
+    case Cpc::core:
+      strands.protective = {strands.live};
+      break;
     case Cpc::single: {
       Run protective = run;
       protective.mm2 = run.cpc_mm2;
@@ -67,10 +69,18 @@ Strands strands_of(const Run& run, Condition condition, double ambient_degc) {
       strands.protective = {{single.r20 * 1e-3 * core, single.x * 1e-3}};
       break;
     }
-    case Cpc::armour: strands.protective = {wires}; break;
-    case Cpc::armour_and_core: strands.protective = {wires, strands.live}; break;
-    case Cpc::armour_and_separate: strands.protective = {wires, separate}; break;
-    case Cpc::separate: strands.protective = {separate}; break;
+    case Cpc::armour:
+      strands.protective = {wires};
+      break;
+    case Cpc::armour_and_core:
+      strands.protective = {wires, strands.live};
+      break;
+    case Cpc::armour_and_separate:
+      strands.protective = {wires, separate};
+      break;
+    case Cpc::separate:
+      strands.protective = {separate};
+      break;
   }
   return strands;
 }
@@ -205,8 +215,7 @@ class Writer {
     for (const Submain& submain : network_.submains) {
       if (submain.from != board.name) continue;
       const std::string phases = phases_of_board(network_, submain.to);
-      at_board_[submain.to] =
-          lay(submain.run, submain.run.length, at, lines_of(phases), neutral_of(phases));
+      at_board_[submain.to] = lay(submain.run, submain.run.length, at, lines_of(phases), neutral_of(phases));
     }
     for (const Circuit& circuit : network_.circuits) {
       if (circuit.board != board.name) continue;
@@ -222,8 +231,8 @@ class Writer {
   }
 
   // Out from the board, past every place of interest, and back to the board.
-  void write_ring(const Circuit& circuit, const std::string& name, const Nodes& board,
-                  const std::vector<int>& lines, bool neutral) {
+  void write_ring(const Circuit& circuit, const std::string& name, const Nodes& board, const std::vector<int>& lines,
+                  bool neutral) {
     struct Stop {
       double at = 0;
       int spur = -1;  // -1: the middle
@@ -244,8 +253,8 @@ class Writer {
         continue;
       }
       const double length = circuit.spurs[static_cast<std::size_t>(stop.spur)].length;
-      places_.push_back({name + "/spur" + std::to_string(stop.spur + 1),
-                         lay(circuit.run, length, here, lines, neutral)});
+      places_.push_back(
+          {name + "/spur" + std::to_string(stop.spur + 1), lay(circuit.run, length, here, lines, neutral)});
     }
     // `connect` goes to the conductors that the second set has: only those of the ring.
     Nodes end = board;
@@ -271,21 +280,23 @@ struct Injection {
 };
 
 std::vector<Injection> injections(const Place& place, const Question& question) {
-  const auto line = [&](std::size_t i) {
-    return place.nodes[static_cast<std::size_t>(question.lines[i])];
-  };
+  const auto line = [&](std::size_t i) { return place.nodes[static_cast<std::size_t>(question.lines[i])]; };
   switch (question.fault) {
-    case Fault::three_phase: return {{line(0), 1, 0}, {line(1), 1, -120}, {line(2), 1, 120}};
-    case Fault::line_line: return {{line(0), 1, 0}, {line(1), -1, 0}};
-    case Fault::line_neutral: return {{line(0), 1, 0}, {place.nodes[kN], -1, 0}};
-    case Fault::line_earth: return {{line(0), 1, 0}, {place.nodes[kPE], -1, 0}};
+    case Fault::three_phase:
+      return {{line(0), 1, 0}, {line(1), 1, -120}, {line(2), 1, 120}};
+    case Fault::line_line:
+      return {{line(0), 1, 0}, {line(1), -1, 0}};
+    case Fault::line_neutral:
+      return {{line(0), 1, 0}, {place.nodes[kN], -1, 0}};
+    case Fault::line_earth:
+      return {{line(0), 1, 0}, {place.nodes[kPE], -1, 0}};
   }
   std::abort();
 }
 
 [[noreturn]] void ngspice_failed(const support::Outcome& outcome) {
-  std::fprintf(stderr, "ngspice did not answer (status %d)\n%s\n%s\n", outcome.status,
-               outcome.out.c_str(), outcome.err.c_str());
+  std::fprintf(stderr, "ngspice did not answer (status %d)\n%s\n%s\n", outcome.status, outcome.out.c_str(),
+               outcome.err.c_str());
   std::abort();
 }
 
@@ -333,10 +344,10 @@ std::vector<Complex> ask(const Deck& deck, const std::vector<Question>& question
   const support::Folder folder;
   folder.write("deck.cir", text.str() + control.str());
   // ngspice frees and asks for its memory anew in each analysis; told to keep it, it is twenty times faster.
-  const support::Outcome outcome = support::run_program(
-      {"env", "MALLOC_TRIM_THRESHOLD_=1000000000", "MALLOC_MMAP_THRESHOLD_=1000000000",
-       "MALLOC_TOP_PAD_=64000000", "ngspice", "-b", "deck.cir"},
-      folder);
+  const support::Outcome outcome =
+      support::run_program({"env", "MALLOC_TRIM_THRESHOLD_=1000000000", "MALLOC_MMAP_THRESHOLD_=1000000000",
+                            "MALLOC_TOP_PAD_=64000000", "ngspice", "-b", "deck.cir"},
+                           folder);
   std::vector<double> printed;
   std::istringstream lines(outcome.out);
   for (std::string line; std::getline(lines, line);) {

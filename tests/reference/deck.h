@@ -19,7 +19,7 @@ enum class Fault { three_phase, line_line, line_neutral, line_earth };
 /// Places of a network where a fault can be, with the circuit's nodes of L1 L2 L3 N PE there ("" where
 /// the conductor does not come).
 struct Place {
-  std::string name;      ///< "hall", "hall/H1", "hall/H1/spur1"; "hall/H1/middle" of a ring
+  std::string name;  ///< "hall", "hall/H1", "hall/H1/spur1"; "hall/H1/middle" of a ring
   std::array<std::string, 5> nodes;
 };
 
@@ -27,7 +27,7 @@ struct Place {
 /// rings as two legs, parallel cables as so many cables, a Dyn transformer as delta and star windings on
 /// ideal cores. All electromotive forces are zero; what drives a fault is put at the fault.
 struct Deck {
-  std::string circuit;        ///< element lines
+  std::string circuit;  ///< element lines
   std::vector<Place> places;
   bool declared_source = false;  ///< its lines hold an impedance that each question sets
 };
@@ -36,10 +36,10 @@ struct Deck {
 
 /// What is asked of a deck: the impedance of the loop that a fault closes.
 struct Question {
-  int place = 0;       ///< index into Deck::places
+  int place = 0;  ///< index into Deck::places
   Fault fault = Fault::line_earth;
-  std::vector<int> lines;            ///< of the fault
-  std::complex<double> source{0, 0}; ///< in each line of a declared source [ohm]
+  std::vector<int> lines;             ///< of the fault
+  std::complex<double> source{0, 0};  ///< in each line of a declared source [ohm]
 };
 
 /// Answers by ngspice's AC analysis at 50 Hz: one ampere round the loop, the voltage across it.

@@ -1,7 +1,6 @@
 // SPDX-License-Identifier: Apache-2.0
 // The decks themselves against calculations by hand, so that a wrong deck cannot vouch for the program.
 #include <catch2/catch.hpp>
-
 #include <cmath>
 #include <complex>
 
@@ -79,9 +78,8 @@ TEST_CASE("a ring is a quarter of its loop at the middle, and x(1-x) of it at a 
 
 TEST_CASE("hot conductors, armour beside a core, and parallel cables add up as by hand", "[hand]") {
   Network n = transformer_alone();
-  n.circuits = {
-      {"main", "W1", "L1 L2 L3", {"lab-swa-four", 35, Cpc::armour_and_core, 50, 2, 0}, false, {}},
-      {"main", "W2", "L1", {"lab-swa-two", 10, Cpc::armour, 10, 1, 0}, false, {}}};
+  n.circuits = {{"main", "W1", "L1 L2 L3", {"lab-swa-four", 35, Cpc::armour_and_core, 50, 2, 0}, false, {}},
+                {"main", "W2", "L1", {"lab-swa-two", 10, Cpc::armour, 10, 1, 0}, false, {}}};
   const Deck deck = build_deck(n, Condition::minimum);
   const auto z = ask(deck, {{place_of(deck, "main"), Fault::line_earth, {0}, {}},
                             {place_of(deck, "main/W1"), Fault::line_earth, {0}, {}},

@@ -29,12 +29,23 @@ std::string run_keys(const Run& run, const char* end) {
   text << " mm2\"" << end;
   switch (run.cpc) {
     case Cpc::built_in:
-    case Cpc::single: break;  // what such a cable has without being asked
-    case Cpc::core: text << "cpc = \"core\"" << end; break;
-    case Cpc::armour: text << "cpc = \"armour\"" << end; break;
-    case Cpc::armour_and_core: text << "cpc = \"armour + core\"" << end; break;
-    case Cpc::armour_and_separate: text << "cpc = \"armour + 16 mm2\"" << end; break;
-    case Cpc::separate: text << "cpc = \"16 mm2\"" << end; break;
+    case Cpc::single:
+      break;  // what such a cable has without being asked
+    case Cpc::core:
+      text << "cpc = \"core\"" << end;
+      break;
+    case Cpc::armour:
+      text << "cpc = \"armour\"" << end;
+      break;
+    case Cpc::armour_and_core:
+      text << "cpc = \"armour + core\"" << end;
+      break;
+    case Cpc::armour_and_separate:
+      text << "cpc = \"armour + 16 mm2\"" << end;
+      break;
+    case Cpc::separate:
+      text << "cpc = \"16 mm2\"" << end;
+      break;
   }
   text << "length = " << quoted(run.length, "m") << end;
   if (run.in_parallel != 1) text << "in_parallel = " << run.in_parallel << end;
@@ -65,12 +76,12 @@ void write_source(std::ostream& out, const Network& network) {
       << "feeds = " << quoted(network.boards.front().name) << "\nvoltage = \"230/400 V\"\n"
       << "earthing = "
       << (source.earthing == Earthing::TN_S ? "\"TN-S\""
-                                            : source.earthing == Earthing::TT ? "\"TT\"" : "\"TN-C-S\"")
+          : source.earthing == Earthing::TT ? "\"TT\""
+                                            : "\"TN-C-S\"")
       << "\n";
   if (source.transformer) {
     out << "rating = " << quoted(source.rating / 1e3, "kVA") << "\nuk = " << quoted(source.uk * 100, "%")
-        << "\nlosses = " << quoted(source.losses / 1e3, "kW")
-        << "\nsecondary = " << quoted(source.secondary, "V")
+        << "\nlosses = " << quoted(source.losses / 1e3, "kW") << "\nsecondary = " << quoted(source.secondary, "V")
         << "\nz0_over_z1 = " << number(source.z0_over_z1) << "\n";
     if (source.fault_level_max > 0) {
       out << "fault_level = { maximum = " << quoted(source.fault_level_max / 1e6, "MVA")
@@ -78,8 +89,8 @@ void write_source(std::ostream& out, const Network& network) {
     }
     if (source.link_at_board) out << "link = \"board\"\n";
   } else {
-    out << "maximum = " << bound_keys(source.maximum, false)
-        << "\nminimum = " << bound_keys(source.minimum, true) << "\n";
+    out << "maximum = " << bound_keys(source.maximum, false) << "\nminimum = " << bound_keys(source.minimum, true)
+        << "\n";
   }
   if (source.tails_present) {
     std::string tails = run_keys(source.tails, ", ");
@@ -101,8 +112,7 @@ void write_construction(std::ostream& out, const Construction& construction) {
     out << "  { size = " << quoted(size.mm2, "mm2") << ", r20 = " << quoted(size.r20, "mohm/m")
         << ", x = " << quoted(size.x, "mohm/m");
     if (size.cpc_mm2 > 0) {
-      out << ", cpc_size = " << quoted(size.cpc_mm2, "mm2")
-          << ", cpc_r20 = " << quoted(size.cpc_r20, "mohm/m");
+      out << ", cpc_size = " << quoted(size.cpc_mm2, "mm2") << ", cpc_r20 = " << quoted(size.cpc_r20, "mohm/m");
     }
     if (size.armour_mm2 > 0) {
       out << ", armour_area = " << quoted(size.armour_mm2, "mm2")
@@ -118,8 +128,8 @@ void write_construction(std::ostream& out, const Construction& construction) {
 
 std::string netlist_text(const Network& network) {
   std::ostringstream out;
-  out << "title = " << quoted(network.title) << "\nrules = \"BS 7671:2018+A2\"\nambient = "
-      << quoted(network.ambient_degc, "degC") << "\n\n";
+  out << "title = " << quoted(network.title)
+      << "\nrules = \"BS 7671:2018+A2\"\nambient = " << quoted(network.ambient_degc, "degC") << "\n\n";
   write_source(out, network);
   for (const Board& board : network.boards) out << "[board." << board.name << "]\n\n";
   if (network.electrode > 0) {
@@ -127,8 +137,8 @@ std::string netlist_text(const Network& network) {
         << "\nresistance = " << quoted(network.electrode, "ohm") << "\n\n";
   }
   for (const Submain& submain : network.submains) {
-    out << "[submain." << submain.name << "]\nfrom = " << quoted(submain.from)
-        << "\nto = " << quoted(submain.to) << "\ndevice = \"gG 80 A\"\n";
+    out << "[submain." << submain.name << "]\nfrom = " << quoted(submain.from) << "\nto = " << quoted(submain.to)
+        << "\ndevice = \"gG 80 A\"\n";
     if (!submain.phases.empty()) out << "phases = " << quoted(submain.phases) << "\n";
     out << run_keys(submain.run, "\n") << "\n";
   }
@@ -143,8 +153,7 @@ std::string netlist_text(const Network& network) {
         out << "spurs = [";
         const char* between = "";
         for (const Spur& spur : circuit.spurs) {
-          out << between << "{ at = " << quoted(spur.at, "m") << ", length = " << quoted(spur.length, "m")
-              << " }";
+          out << between << "{ at = " << quoted(spur.at, "m") << ", length = " << quoted(spur.length, "m") << " }";
           between = ", ";
         }
         out << "], ";

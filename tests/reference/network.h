@@ -39,13 +39,13 @@ struct Construction {
 [[nodiscard]] const std::vector<Construction>& constructions();
 
 enum class Cpc {
-  built_in,            ///< the reduced conductor of a flat cable
-  core,                ///< a core like the lines
-  single,              ///< a single of size `cpc_mm2`
-  armour,              ///< the armour alone
-  armour_and_core,     ///< both, side by side
-  armour_and_separate, ///< the armour and a 16 mm2 conductor beside the cable
-  separate,            ///< a 16 mm2 conductor beside the cable
+  built_in,             ///< the reduced conductor of a flat cable
+  core,                 ///< a core like the lines
+  single,               ///< a single of size `cpc_mm2`
+  armour,               ///< the armour alone
+  armour_and_core,      ///< both, side by side
+  armour_and_separate,  ///< the armour and a 16 mm2 conductor beside the cable
+  separate,             ///< a 16 mm2 conductor beside the cable
 };
 
 struct Run {
@@ -99,10 +99,10 @@ struct Source {
   bool transformer = false;
   Bound maximum, minimum;  ///< of a declared supply
   // of a transformer Dyn
-  double rating = 0;      ///< [VA]
-  double uk = 0;          ///< [1]
-  double losses = 0;      ///< [W]
-  double secondary = 0;   ///< [V] line to line, no load
+  double rating = 0;           ///< [VA]
+  double uk = 0;               ///< [1]
+  double losses = 0;           ///< [W]
+  double secondary = 0;        ///< [V] line to line, no load
   double fault_level_max = 0;  ///< [VA], 0: not declared
   double fault_level_min = 0;  ///< [VA], 0: not declared
   double z0_over_z1 = 1;

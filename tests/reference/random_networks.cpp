@@ -100,8 +100,7 @@ void draw_supply(Dice& dice, Source& source) {
   if (dice.chance(40)) maximum.line_earth = combined ? maximum.line_neutral : current(most * dice.between(0.6, 0.9));
   if (dice.chance(40)) maximum.power_factor = dice.between(0.25, 0.95);
   Bound& minimum = source.minimum;
-  minimum.line_earth.ohms =
-      source.earthing == Earthing::TT ? dice.between(2.0, 21.0) : dice.between(0.2, 0.8);
+  minimum.line_earth.ohms = source.earthing == Earthing::TT ? dice.between(2.0, 21.0) : dice.between(0.2, 0.8);
   if (source.earthing == Earthing::TN_S || (source.earthing == Earthing::TT && dice.chance(50))) {
     minimum.line_neutral.ohms = dice.between(0.2, 0.6);
   }
@@ -138,8 +137,8 @@ Network random_network(unsigned seed) {
   }
   if (n.source.link_at_board || dice.chance(50)) {
     n.source.tails_present = true;
-    n.source.tails = {"lab-singles", dice.one_of({25.0, 50.0, 120.0}), Cpc::single,
-                      dice.between(1.0, 12.0), dice.chance(30) ? 2 : 1, dice.one_of({16.0, 25.0})};
+    n.source.tails = {"lab-singles",           dice.one_of({25.0, 50.0, 120.0}), Cpc::single,
+                      dice.between(1.0, 12.0), dice.chance(30) ? 2 : 1,          dice.one_of({16.0, 25.0})};
   }
   if (n.source.earthing == Earthing::TT) n.electrode = dice.between(8.0, 120.0);
 
@@ -170,8 +169,8 @@ Network random_network(unsigned seed) {
       Circuit circuit;
       circuit.board = board.name;
       circuit.name = "W" + std::to_string(i + 1);
-      circuit.phases = "L" + std::to_string(1 + lines[static_cast<std::size_t>(dice.below(
-                                                   static_cast<int>(lines.size())))]);
+      circuit.phases =
+          "L" + std::to_string(1 + lines[static_cast<std::size_t>(dice.below(static_cast<int>(lines.size())))]);
       int n_live = 2;
       if (lines.size() == 3 && dice.chance(40)) {
         circuit.phases = dice.one_of({"L1 L2 L3", "L1 L2 L3 N", "L2 L3"});
@@ -185,8 +184,7 @@ Network random_network(unsigned seed) {
         circuit.ring = true;
         const int n_spurs = dice.below(3);
         for (int s = 0; s < n_spurs; ++s) {
-          circuit.spurs.push_back(
-              {dice.between(0.2, circuit.run.length - 0.2), dice.between(1.0, 14.0)});
+          circuit.spurs.push_back({dice.between(0.2, circuit.run.length - 0.2), dice.between(1.0, 14.0)});
         }
       }
       n.circuits.push_back(circuit);

@@ -1,7 +1,6 @@
 // SPDX-License-Identifier: Apache-2.0
 // The program's fault currents against ngspice's, for every node, fault and condition.
 #include <catch2/catch.hpp>
-
 #include <cmath>
 #include <map>
 #include <set>
@@ -22,8 +21,8 @@ constexpr double kTolerance = 1e-3;  // relative, of current, peak and X/R
 
 // "" if equal within the tolerance, else both values in words.
 std::string differs(const char* what, double printed, double expected) {
-  const bool same = std::isnan(expected) ? std::isnan(printed)
-                                         : std::fabs(printed - expected) <= kTolerance * std::fabs(expected);
+  const bool same =
+      std::isnan(expected) ? std::isnan(printed) : std::fabs(printed - expected) <= kTolerance * std::fabs(expected);
   if (same) return "";
   std::ostringstream text;
   text << ' ' << what << ' ' << printed << ", ngspice " << expected;
@@ -49,15 +48,13 @@ std::size_t compare(const Network& network) {
   const std::vector<Current> expected = reference_currents(network);
   std::size_t n_wrong = 0;
   for (const Current& current : expected) {
-    const auto key = std::tuple(std::string(word(current.condition)), current.node,
-                                std::string(word(current.fault)));
+    const auto key = std::tuple(std::string(word(current.condition)), current.node, std::string(word(current.fault)));
     const auto found = printed.find(key);
     std::string wrong;
     if (found == printed.end()) {
       wrong = " is missing";
     } else {
-      wrong = differs("current", found->second.amps, current.amps) +
-              differs("peak", found->second.peak, current.peak);
+      wrong = differs("current", found->second.amps, current.amps) + differs("peak", found->second.peak, current.peak);
       if (!std::isnan(current.x_over_r)) wrong += differs("X/R", found->second.x_over_r, current.x_over_r);
       printed.erase(found);
     }

@@ -17,7 +17,9 @@ using tests::supply;
 
 namespace {
 
-std::string circuit(const std::string& keys) { return supply() + "[circuit.main]\nC1 = { phases = \"L1\", " + keys + " }\n"; }
+std::string circuit(const std::string& keys) {
+  return supply() + "[circuit.main]\nC1 = { phases = \"L1\", " + keys + " }\n";
+}
 
 Finding judged(const std::string& check, const std::string& keys) {
   return find(solver::run_checks(read(circuit(keys)), {}), check, "main/C1");
@@ -42,9 +44,12 @@ TEST_CASE("Missing data is undecided and names what is missing", "[checks]") {
     const char* need;
   };
   const auto row = GENERATE(values<Row>({
-      {"breaking capacity", R"(device = "B 32 A", cable = "singles-pvc-cu 6 mm2", length = "10 m")", "Icn of the device of main/C1"},
-      {"overload", R"(device = "B 32 A 6 kA", cable = "singles-pvc-cu 6 mm2", length = "10 m", load = "20 A")", "Iz of main/C1"},
-      {"overload", R"(device = "B 32 A 6 kA", cable = "singles-pvc-cu 6 mm2", length = "10 m", Iz = "40 A")", "load of main/C1"},
+      {"breaking capacity", R"(device = "B 32 A", cable = "singles-pvc-cu 6 mm2", length = "10 m")",
+       "Icn of the device of main/C1"},
+      {"overload", R"(device = "B 32 A 6 kA", cable = "singles-pvc-cu 6 mm2", length = "10 m", load = "20 A")",
+       "Iz of main/C1"},
+      {"overload", R"(device = "B 32 A 6 kA", cable = "singles-pvc-cu 6 mm2", length = "10 m", Iz = "40 A")",
+       "load of main/C1"},
       {"voltage drop", R"(device = "B 32 A 6 kA", cable = "singles-pvc-cu 6 mm2", length = "10 m")", "load of main/C1"},
       {"conductor heating", R"(device = "B 32 A 6 kA", cable = "singles-pvc-cu 2.5 mm2", length = "10 m")",
        "let-through (energy class or points) of the device of main/C1"},
@@ -110,7 +115,8 @@ TEST_CASE("A remedy that holds meets every check of its subject", "[remedies]") 
     mended.circuits[0].length.value = remedy.value;
     bool all = true;
     for (const Finding& finding : solver::judge_network(mended))
-      if (finding.subject == "main/C1") all = all && (finding.verdict == Verdict::meets || finding.verdict == Verdict::noted);
+      if (finding.subject == "main/C1")
+        all = all && (finding.verdict == Verdict::meets || finding.verdict == Verdict::noted);
     CHECK(all == remedy.holds);
     CHECK(find(solver::judge_network(mended), "voltage drop", "main/C1").verdict == Verdict::meets);
   }
@@ -132,9 +138,8 @@ TEST_CASE("Motors above one per cent raise the breaking duty by five times their
 }
 
 TEST_CASE("A check added in one place is judged, listed and printed", "[checks][gate]") {
-  solver::checks().push_back({{"dummy", "nothing", "everything", "nothing"},
-                              [](const solver::Situation&) { return true; },
-                              judge_dummy});
+  solver::checks().push_back(
+      {{"dummy", "nothing", "everything", "nothing"}, [](const solver::Situation&) { return true; }, judge_dummy});
   const models::Network network = read(circuit(kRadial + R"(length = "10 m")"));
   const std::vector<Finding> findings = solver::run_checks(network, {});
   const std::vector<solver::CheckInfo> infos = solver::list_checks();

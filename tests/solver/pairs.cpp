@@ -16,12 +16,14 @@ models::Network pair(const std::string& up, const std::string& down, const std::
 [submain.S1]
 from = "main"
 to = "sub"
-device = ")" + up + R"("
+device = ")" + up +
+              R"("
 cable = "singles-pvc-cu 25 mm2"
 length = "10 m"
 [circuit.sub]
-C1 = { use = "fixed", phases = "L1", device = ")" + down + R"(", cable = "singles-pvc-cu 6 mm2", length = "15 m", load = "20 A", Iz = "40 A")" +
-              demanded + " }\n");
+C1 = { use = "fixed", phases = "L1", device = ")" +
+              down + R"(", cable = "singles-pvc-cu 6 mm2", length = "15 m", load = "20 A", Iz = "40 A")" + demanded +
+              " }\n");
 }
 
 solver::PairVerdict verdict(const models::Network& network, double available) {
@@ -57,8 +59,8 @@ length = "10 m"
 [circuit.sub]
 C1 = { use = "fixed", phases = "L1", device = "B 32 A 10 kA", cable = "singles-pvc-cu 6 mm2", length = "15 m", load = "20 A", Iz = "40 A" }
 )");
-  const solver::PairVerdict result = solver::overcurrent_selectivity(
-      network.circuits[0].device, network.submains[0].device, 6000, 1.4);
+  const solver::PairVerdict result =
+      solver::overcurrent_selectivity(network.circuits[0].device, network.submains[0].device, 6000, 1.4);
   CHECK(result.selectivity == Selectivity::partial);
   CHECK_THAT(result.limit, WithinRel(315.0, 1e-9));
 }
@@ -82,16 +84,18 @@ TEST_CASE("Selectivity is noted unless demanded, and demanded it fails or is und
 }
 
 TEST_CASE("A residual device above a circuit that has none is not selective for line-earth faults", "[selectivity]") {
-  const solver::Finding finding = tests::find(
-      solver::run_checks(pair("C 63 A 10 kA 100 mA S A", "B 32 A 10 kA"), {}), "selectivity", "sub/C1");
+  const solver::Finding finding =
+      tests::find(solver::run_checks(pair("C 63 A 10 kA 100 mA S A", "B 32 A 10 kA"), {}), "selectivity", "sub/C1");
   CHECK(finding.selectivity == "none");
   CHECK_THAT(finding.limit_A, WithinRel(0.05, 1e-12));
 }
 
 TEST_CASE("A delayed 100 mA device above a 30 mA one is selective for residual currents", "[selectivity]") {
   const models::Network network = pair("C 63 A 10 kA 100 mA S A", "B 32 A 10 kA 30 mA A");
-  const solver::PairVerdict residual = solver::residual_selectivity(network.circuits[0].device, network.submains[0].device, 500);
+  const solver::PairVerdict residual =
+      solver::residual_selectivity(network.circuits[0].device, network.submains[0].device, 500);
   CHECK(residual.selectivity == Selectivity::total);
-  const solver::PairVerdict reversed = solver::residual_selectivity(network.submains[0].device, network.circuits[0].device, 500);
+  const solver::PairVerdict reversed =
+      solver::residual_selectivity(network.submains[0].device, network.circuits[0].device, 500);
   CHECK(reversed.selectivity == Selectivity::none);
 }

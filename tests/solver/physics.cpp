@@ -80,7 +80,8 @@ C1 = { phases = "L1", device = "B 16 A 6 kA", cable = "wire 2.5 mm2", length = "
   // Greatest: the inductive end, 90 % of which is at right angles to the cable's resistance.
   const double zs = 1.1 * 230 / 16000.0;
   const std::complex<double> z = std::polar(zs, std::acos(0.3)) + 2 * 40 * 7.41e-3;
-  CHECK_THAT(current(network, "main/C1", Condition::maximum, Fault::line_earth), WithinRel(1.1 * 230 / std::abs(z), 1e-9));
+  CHECK_THAT(current(network, "main/C1", Condition::maximum, Fault::line_earth),
+             WithinRel(1.1 * 230 / std::abs(z), 1e-9));
 }
 
 TEST_CASE("The worst place of a ring is its mid-point unless a spur is worse", "[faults]") {

@@ -35,7 +35,8 @@ inline std::string supply(const std::string& earthing = "TN-C-S") {
 [supply.grid]
 feeds = "main"
 voltage = "230/400 V"
-earthing = ")" + earthing + R"("
+earthing = ")" +
+         earthing + R"("
 maximum = { three_phase = "16 kA", power_factor = 0.3 }
 minimum = { Ze = "0.35 ohm", Zn = "0.35 ohm", power_factor = 0.9 }
 device = "BS 88-3 100 A"

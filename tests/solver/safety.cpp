@@ -40,7 +40,8 @@ x_over_r = 5
 fault_level = "250 MVA"
 earthing = "TN-S"
 demand = "90 A"
-device = ")" + device + "\"\n" + tails + R"([board.main]
+device = ")" +
+         device + "\"\n" + tails + R"([board.main]
 [circuit.main]
 C1 = { use = "fixed", phases = "L1", device = "B 10 A 30 kA", cable = "singles-pvc-cu 2.5 mm2", length = "20 m", load = "8 A", Iz = "24 A" }
 )";
@@ -50,9 +51,9 @@ C1 = { use = "fixed", phases = "L1", device = "B 10 A 30 kA", cable = "singles-p
 
 TEST_CASE("A maker's let-through says nothing of a delayed trip", "[safety]") {
   // 300 A for 4 s is 360 kA2s; 1.5 mm2 stands (115 x 1.5)^2 = 29.8 kA2s (BS 7671 434.5.2).
-  const std::string text =
-      "rules = \"BS 7671:2018+A2\"\n" + kSlow + supply().substr(supply().find("[supply")) +
-      "[circuit.main]\nC1 = { use = \"fixed\", phases = \"L1\", device = \"slow\", cable = \"flat-pvc-cu 1.5/1 mm2\", length = \"18 m\" }\n";
+  const std::string text = "rules = \"BS 7671:2018+A2\"\n" + kSlow + supply().substr(supply().find("[supply")) +
+                           "[circuit.main]\nC1 = { use = \"fixed\", phases = \"L1\", device = \"slow\", cable = "
+                           "\"flat-pvc-cu 1.5/1 mm2\", length = \"18 m\" }\n";
   CHECK(judged(text, "conductor heating", "main/C1").verdict == Verdict::fails);
   CHECK(judged(text, "fault clearance", "main/C1").verdict == Verdict::fails);
 }
@@ -112,14 +113,16 @@ TEST_CASE("Single-phase loads on one line drop voltage along the neutral too", "
 from = "main"
 to = "sub"
 device = "gG 63 A 80 kA"
-phases = ")" + phases + R"("
+phases = ")" + phases +
+                      R"("
 cable = "singles-pvc-cu 16 mm2"
 length = "40 m"
 Iz = "76 A"
 [circuit.sub]
 C1 = { use = "fixed", phases = "L1", device = "B 63 A 16 kA", cable = "singles-pvc-cu 16 mm2", length = "1 m", load = "53 A", Iz = "76 A" }
 )",
-                  "voltage drop", "sub/C1").value;
+                  "voltage drop", "sub/C1")
+        .value;
   };
   CHECK_THAT(drop("L1 L2 L3 N"), Catch::Matchers::WithinRel(drop("L1 N"), 1e-9));
 }
@@ -172,14 +175,18 @@ C1 = { phases = "L1", device = "gG 16 A 80 kA", cable = "singles-pvc-cu 2.5 mm2"
 
 TEST_CASE("A residual device without overcurrent release is not trusted above its breaking capacity", "[safety]") {
   // IEC 61008-1: 10 In, no less than 500 A. 4 kA for 40 ms is 640 kA2s, which would suit 6 mm2 of k 143.
-  const Finding finding = judged(circuit(R"(use = "fixed", device = "RCD 40 A 30 mA A", cable = "singles-pvc-cu 2.5 mm2", length = "1 m", load = "8 A", Iz = "24 A")"),
-                                 "disconnection time", "main/C1");
+  const Finding finding = judged(
+      circuit(
+          R"(use = "fixed", device = "RCD 40 A 30 mA A", cable = "singles-pvc-cu 2.5 mm2", length = "1 m", load = "8 A", Iz = "24 A")"),
+      "disconnection time", "main/C1");
   CHECK(finding.value > 0.04);  // the fuse before it decides
 }
 
 TEST_CASE("A motor of unknown current leaves the breaking duty undecided", "[safety]") {
-  const Finding finding = judged(circuit(R"(use = "fixed", motor = true, device = "D 20 A 20 kA", cable = "singles-pvc-cu 4 mm2", length = "10 m")"),
-                                 "breaking capacity", "main/C1");
+  const Finding finding = judged(
+      circuit(
+          R"(use = "fixed", motor = true, device = "D 20 A 20 kA", cable = "singles-pvc-cu 4 mm2", length = "10 m")"),
+      "breaking capacity", "main/C1");
   CHECK(finding.verdict == Verdict::undecided);
 }
 
@@ -203,9 +210,12 @@ C1 = { phases = "L1", device = "B 16 A 3 kA", cable = "singles-pvc-cu 2.5 mm2", 
 TEST_CASE("The ring rule holds for its devices and conductors only", "[safety]") {
   // BS 7671 433.1.204: 30 or 32 A devices, Iz of 20 A and more.
   const auto overload = [](const std::string& device, const std::string& Iz) {
-    return judged(circuit("use = \"sockets\", ring = true, device = \"" + device +
-                          " 30 mA A\", cable = \"flat-pvc-cu 2.5/1.5 mm2\", length = \"40 m\", load = \"20 A\", Iz = \"" + Iz + "\""),
-                  "overload", "main/C1").verdict;
+    return judged(
+               circuit("use = \"sockets\", ring = true, device = \"" + device +
+                       " 30 mA A\", cable = \"flat-pvc-cu 2.5/1.5 mm2\", length = \"40 m\", load = \"20 A\", Iz = \"" +
+                       Iz + "\""),
+               "overload", "main/C1")
+        .verdict;
   };
   CHECK(overload("B 32 A 16 kA", "20 A") == Verdict::meets);
   CHECK(overload("B 32 A 16 kA", "18 A") == Verdict::fails);

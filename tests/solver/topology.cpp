@@ -1,7 +1,7 @@
 // SPDX-License-Identifier: Apache-2.0
-#include "tests/solver/reading.h"
-
 #include "solver/topology.h"
+
+#include "tests/solver/reading.h"
 
 using namespace sunder;
 using tests::read;
@@ -31,8 +31,9 @@ to = "a"
 from = "main"
 to = "a"
 )" + kCable);
-  REQUIRE(messages(network) == std::vector<std::string>{
-      "board 'a' is fed by submains 'S1' and 'S2': a loop between boards is solved in a later edition"});
+  REQUIRE(messages(network) ==
+          std::vector<std::string>{
+              "board 'a' is fed by submains 'S1' and 'S2': a loop between boards is solved in a later edition"});
 }
 
 TEST_CASE("Two sources on one part of the network are refused", "[topology]") {
@@ -49,9 +50,10 @@ minimum = { Ze = "0.8 ohm" }
 [state.both]
 sources = ["grid", "other"]
 )");
-  REQUIRE(messages(network) == std::vector<std::string>{
-      "state 'both' has source 'other' feed a board that source 'grid' feeds already: sources in parallel are "
-      "solved in a later edition"});
+  REQUIRE(messages(network) ==
+          std::vector<std::string>{
+              "state 'both' has source 'other' feed a board that source 'grid' feeds already: sources in parallel are "
+              "solved in a later edition"});
 }
 
 TEST_CASE("A source below another serves in a state of its own", "[topology]") {
@@ -122,11 +124,10 @@ resistance = "60 ohm"
 }
 
 TEST_CASE("A circuit cannot do without a protective conductor", "[topology]") {
-  const netlists::Reading reading = netlists::read_network_text(
-      supply() + R"([circuit.main]
+  const netlists::Reading reading = netlists::read_network_text(supply() + R"([circuit.main]
 C1 = { phases = "L1", device = "B 6 A 6 kA", cable = "singles-pvc-cu 1.5 mm2", cpc = "none", length = "5 m" }
 )",
-      "test.toml");
+                                                                "test.toml");
   CHECK_FALSE(reading.network.has_value());
   REQUIRE(reading.diagnostics.size() >= 1);
   CHECK(reading.diagnostics[0].message == "circuit 'main/C1' cannot do without a cpc");

@@ -52,13 +52,20 @@ const Json& Json::operator[](int item) const {
 
 std::ostream& operator<<(std::ostream& out, const Json& json) {
   switch (json.kind_) {
-    case Json::Kind::invalid: return out << "(nothing)";
-    case Json::Kind::null: return out << "null";
-    case Json::Kind::flag: return out << (json.flag_ ? "true" : "false");
-    case Json::Kind::number: return out << json.number_;
-    case Json::Kind::text: return out << '"' << json.text_ << '"';
-    case Json::Kind::list: return out << "[" << json.items_.size() << " items]";
-    case Json::Kind::object: break;
+    case Json::Kind::invalid:
+      return out << "(nothing)";
+    case Json::Kind::null:
+      return out << "null";
+    case Json::Kind::flag:
+      return out << (json.flag_ ? "true" : "false");
+    case Json::Kind::number:
+      return out << json.number_;
+    case Json::Kind::text:
+      return out << '"' << json.text_ << '"';
+    case Json::Kind::list:
+      return out << "[" << json.items_.size() << " items]";
+    case Json::Kind::object:
+      break;
   }
   return out << "{" << json.members_.size() << " members}";
 }

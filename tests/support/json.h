@@ -42,8 +42,12 @@ class Json {
   [[nodiscard]] auto end() const noexcept { return items_.end(); }
 
   friend bool operator==(const Json& json, const char* text) { return json.kind_ == Kind::text && json.text_ == text; }
-  friend bool operator==(const Json& json, const std::string& text) { return json.kind_ == Kind::text && json.text_ == text; }
-  friend bool operator==(const Json& json, double number) { return json.kind_ == Kind::number && json.number_ == number; }
+  friend bool operator==(const Json& json, const std::string& text) {
+    return json.kind_ == Kind::text && json.text_ == text;
+  }
+  friend bool operator==(const Json& json, double number) {
+    return json.kind_ == Kind::number && json.number_ == number;
+  }
   friend std::ostream& operator<<(std::ostream& out, const Json& json);
 
  private:

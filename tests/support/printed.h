@@ -4,7 +4,6 @@
 #pragma once
 
 #include <catch2/catch.hpp>
-
 #include <cmath>
 #include <cstdlib>
 #include <sstream>
@@ -25,11 +24,9 @@ namespace sunder::support {
 [[nodiscard]] inline double half_last_digit(const std::string& digits) {
   const auto exponent_at = digits.find_first_of("eE");
   const std::string mantissa = digits.substr(0, exponent_at);
-  const int exponent =
-      exponent_at == std::string::npos ? 0 : std::atoi(digits.c_str() + exponent_at + 1);
+  const int exponent = exponent_at == std::string::npos ? 0 : std::atoi(digits.c_str() + exponent_at + 1);
   const auto point = mantissa.find('.');
-  const int decimals =
-      point == std::string::npos ? 0 : static_cast<int>(mantissa.size() - point) - 1;
+  const int decimals = point == std::string::npos ? 0 : static_cast<int>(mantissa.size() - point) - 1;
   return 0.5 * std::pow(10.0, exponent - decimals);
 }
 

@@ -11,7 +11,7 @@ namespace sunder::support {
 /// A folder of its own under the system's folder for temporary files; removed with everything in it.
 class Folder {
  public:
-  Folder();   ///< aborts the test with the system's reason if none can be made
+  Folder();  ///< aborts the test with the system's reason if none can be made
   ~Folder();
   Folder(const Folder&) = delete;
   Folder& operator=(const Folder&) = delete;
