@@ -205,8 +205,18 @@ std::variant<Sweep, std::string> vary_catalogue(const Network& network, const Pa
             {finding.check, finding.subject, earlier->second.verdict, finding.verdict, point.value, finding.state});
       }
     }
-    for (const Finding& finding : point.findings)
-      if (finding.verdict == Verdict::undecided) add_stretch(sweep, finding, point.value, point.value);
+    for (const Finding& finding : point.findings) {
+      if (finding.verdict != Verdict::undecided) continue;
+      // Neighbouring values make one stretch.
+      const auto open = std::find_if(sweep.undecided.begin(), sweep.undecided.end(), [&](const Stretch& stretch) {
+        return stretch.check == finding.check && stretch.subject == finding.subject && stretch.to == point.value - 1;
+      });
+      if (open != sweep.undecided.end()) {
+        open->to = point.value;
+      } else {
+        add_stretch(sweep, finding, point.value, point.value);
+      }
+    }
     sweep.points.push_back(std::move(point));
     if (progress) progress(i + 1, values.size());
   }
