@@ -74,8 +74,9 @@ PathChart chart_of(const Network& network, const StateSolution& solution, const 
   chart.title = network.title;
   chart.address = end.address;
   chart.state = end.state;
-  chart.voltage = fmt::format("{}/{}", models::format_number(end.source->U0, 3),
-                              models::format_quantity(end.source->U, models::Quantity::voltage, 3));
+  const std::string lines = models::format_quantity(end.source->U, models::Quantity::voltage, 3);
+  const std::string neutral = models::format_number(end.source->U0, 3);
+  chart.voltage = end.source->lines.lines() == 1 ? neutral + " V" : neutral + "/" + lines;
   bool own_drawn = false;
   for (const Protector& protector : end.path) {
     if (protector.device->overcurrent.empty() && protector.device->residual.empty()) continue;

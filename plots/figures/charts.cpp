@@ -306,7 +306,8 @@ std::optional<std::string> draw_coordination(const PathChart& chart, const std::
     for (const Spot& spot : along(latest, s.damage ? 20 : 24)) {
       if (!s.damage || spot.y >= y.at(kDamageNameFrom)) wish.anchors.push_back(spot);
     }
-    if (!s.damage) {
+    // The earliest edge of a residual element lies on the axis: a name there would be read as nothing's.
+    if (s.filled) {
       for (const Spot& spot : along(earliest, 24)) wish.anchors.push_back(spot);
     }
     own.push_back({latest, earliest});
