@@ -2,6 +2,7 @@
 #include <algorithm>
 #include <cmath>
 
+#include "plots/text/help.h"
 #include "plots/text/report.h"
 #include "solver/checks/check.h"
 #include "solver/judge.h"
@@ -146,6 +147,7 @@ TEST_CASE("A check added in one place is judged, listed and printed", "[checks][
   solver::checks().pop_back();
   CHECK(find(findings, "dummy", "main/C1").verdict == Verdict::noted);
   CHECK(std::any_of(infos.begin(), infos.end(), [](const solver::CheckInfo& info) { return info.name == "dummy"; }));
+  CHECK(plots::help_text(plots::help_checks(infos), {}).find("dummy") != std::string::npos);
   CHECK(plots::check_json(network, findings).find("\"dummy\"") != std::string::npos);
   CHECK(plots::check_report(network, findings, {}).find("dummy") != std::string::npos);
 }
