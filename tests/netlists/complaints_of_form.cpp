@@ -61,7 +61,9 @@ W3 = {}
       {1, R"~(über = 1)~",
        R"~(1:1+1 error: expected keys, tables, whitespace or comments, got 'ü' | a name with such a character stands in quotes
 )~"},
-      {0, R"~([.shop]
+      {0,
+       "["
+       R"~(.shop]
 )~",
        R"~(28:2+1 error: expected bare key starting character or string delimiter, got '.'
 )~"},
