@@ -22,6 +22,8 @@
 #include "plots/text/json.h"
 #include "plots/text/report.h"
 #include "plots/text/terminal.h"
+#include "solver/fault_query.h"
+#include "solver/fault_study.h"
 #include "solver/study.h"
 
 namespace {
@@ -40,6 +42,7 @@ struct Options {
   bool every_state = false;
   bool csv = false;
   std::string net, path, output, topic;
+  solver::FaultOptions fault;
   solver::VaryRequest vary;
   std::string value_list;
 };
@@ -214,7 +217,24 @@ int run_check(const Options& options) {
   return deliver(options, text, met ? kAllMet : kNotMet);
 }
 
+int run_fault_study(const Options& options) {
+  const auto read = solver::read_fault_query(options.fault);
+  if (const auto* refusal = std::get_if<solver::Refusal>(&read))
+    return complain(options, refusal->message, refusal->hint);
+  const auto& query = std::get<solver::FaultQuery>(read);
+  const auto network = load(options);
+  if (!network) return kCouldNotRun;
+  const auto result = solver::study_faults(*network, query);
+  if (const std::string* why = std::get_if<std::string>(&result)) return complain(options, *why);
+  const auto& faults = std::get<std::vector<solver::FaultDetail>>(result);
+  return deliver(options,
+                 options.json ? plots::fault_study_json(*network, query, faults)
+                              : plots::fault_study_report(*network, query, faults, style_of(options)),
+                 kAllMet);
+}
+
 int run_faults(const Options& options) {
+  if (options.fault.any()) return run_fault_study(options);
   const auto network = load(options);
   if (!network) return kCouldNotRun;
   const auto rows = solver::solve_faults(*network);
@@ -398,7 +418,9 @@ int unexpected(const Options& options, const std::string& extra, const CLI::App&
 std::string plain_complaint(const std::string& sentence) {
   const std::string option = sentence.substr(0, sentence.find(':'));
   if (sentence == "NET is required") return "the name of a netlist file is needed";
+  if (option == "--pair") return "--pair takes two places";
   if (sentence.find("required TEXT missing") != std::string::npos) return option + " needs a value";
+  if (sentence.find("At Most 1 required") != std::string::npos) return option + " is given more than once";
   const std::size_t range = sentence.find(" not in range ");
   return range == std::string::npos
              ? sentence
@@ -432,7 +454,16 @@ int run(int argc, char** argv) {
   check->add_flag("--working", options.working, "Show every step of every finding");
   check->add_flag("--every-state", options.every_state, "One finding a state, not the governing one alone");
   output(check, "Write the report to this file");
-  CLI::App* faults = on_netlist("faults", "Prospective currents at every node");
+  CLI::App* faults = on_netlist("faults", "Prospective currents at every node, or one fault in detail");
+  faults->add_option("--at", options.fault.at, "One place: an address, S1@40% or S1@32m along its run");
+  faults->add_option("--fault", options.fault.fault, "One fault: " + solver::fault_names());
+  faults->add_option("--through", options.fault.through, "Resistance of the fault itself, such as 0.1ohm");
+  faults->add_option("--pair", options.fault.pair, "Two places, a line to earth at each")
+      ->expected(2)
+      ->allow_extra_args(false);
+  faults->add_flag("--currents", options.fault.currents, "What each run, source and device carries");
+  faults->add_flag("--touch", options.fault.touch, "Voltages of protective conductors");
+  faults->add_option("--state", options.fault.state, "One supply state");
   output(faults, "Write the table to this file");
   CLI::App* schedule = on_netlist("schedule", "One row a circuit: device, cable, currents, impedance, time, verdict");
   schedule->add_flag("--csv", options.csv, "Comma separated values with unit headings");

@@ -4,6 +4,8 @@
 /// Handles are indices into the tables; -1 means none.
 #pragma once
 
+#include <complex>
+#include <limits>
 #include <string>
 #include <vector>
 
@@ -14,6 +16,32 @@
 #include "models/sourced.h"
 
 namespace sunder::models {
+
+inline constexpr double kNotGiven = std::numeric_limits<double>::quiet_NaN();
+
+/// How fault currents are computed: conductor by conductor, or with the corrections of IEC 60909.
+enum class Method { conductor, iec60909 };
+
+/// What carries the difference (Z0 - Z1)/3 of a run or supply declared by sequence impedances.
+enum class Return { neutral, protective, both, earth };
+
+/// Impedances by sequence: of a run per metre [ohm/m], of a supply [ohm].
+struct Sequence {
+  std::complex<double> z1;
+  std::complex<double> z0;
+  bool given = false;     ///< z1 is
+  bool z0_given = false;  ///< without it no line-neutral or line-earth current is known
+  Return through = Return::both;
+  Origin at{};
+};
+
+/// How a star point is earthed.
+struct StarPoint {
+  enum class Kind { solid, open, impedance, absent };  ///< absent: of a machine, not brought out
+  Kind kind = Kind::solid;
+  double ohms = 0;       ///< Kind::impedance: resistance [ohm]
+  double reactance = 0;  ///< and reactance [ohm]
+};
 
 /// One declared bound of a supply: the most or the least it may deliver. Each value is either a
 /// current (at that condition's voltage factor) or a loop impedance (in ohms as it stands).
@@ -29,6 +57,7 @@ struct Bound {
   Loop line_neutral;         ///< loop through N
   Loop line_earth;           ///< loop through PE (Ze)
   double power_factor = -1;  ///< of the loop, 0..1; -1: not declared (an angle range is taken)
+  Sequence sequence;         ///< in place of loops: z1 and z0 of the supply [ohm]
   Origin at{};
 };
 
@@ -41,15 +70,48 @@ struct Tails {
   Origin at{};
 };
 
-/// A supply or a transformer as a source.
+/// A synchronous generator.
+struct Generator {
+  bool present = false;
+  double rating = 0;           ///< [VA]
+  double xd_subtransient = 0;  ///< saturated [1]
+  double xd_transient = kNotGiven;
+  double xd = kNotGiven;
+  double x2 = kNotGiven;              ///< not given: as xd_subtransient
+  double x0 = kNotGiven;              ///< not given: no zero-sequence current is known
+  double r = kNotGiven;               ///< armature resistance [1]; not given: by IEC 60909-0 from rating and voltage
+  double T_subtransient = kNotGiven;  ///< [s]
+  double T_transient = kNotGiven;     ///< [s]
+  double sustained = kNotGiven;       ///< maker's sustained short-circuit current over rated current
+  double pf = 0.8;                    ///< rated
+};
+
+/// One stage of a current-limited source: so much for so long.
+struct Stage {
+  double amps = 0;     ///< [A]
+  double seconds = 0;  ///< from inception; the last: infinite
+};
+
+/// An inverter or UPS: a voltage source until its limit binds.
+struct Inverter {
+  bool present = false;
+  std::vector<Stage> stages;  ///< descending in current; at least one
+  bool follows = false;       ///< only feeds into a live network (photovoltaic), never alone
+};
+
+/// A supply, transformer, generator or inverter as a source.
 struct Source {
   std::string name;
   Origin at{};
   bool transformer = false;
+  Generator generator;
+  Inverter inverter;
   int board = -1;
   ConductorSet lines{Conductor::L1, Conductor::L2, Conductor::L3};  ///< lines it delivers
-  double U0 = 230;                                                  ///< line to neutral [V]
-  double U = 400;                                                   ///< line to line [V]
+  bool split_phase = false;   ///< two lines in opposition with the neutral between them (120/240 V)
+  bool high_voltage = false;  ///< above 1 kV: three lines, neither N nor PE
+  double U0 = 230;            ///< line to neutral [V]
+  double U = 400;             ///< line to line [V]
   Earthing earthing = Earthing::TN_S;
   bool own_transformer = false;  ///< decides voltage-drop limits
   Bound maximum, minimum;        ///< supply
@@ -62,7 +124,12 @@ struct Source {
   double fault_level_max = kNever;  ///< before it, greatest [VA]; infinite: stiff
   double fault_level_min = 0;       ///< before it, least [VA]; 0: not declared, so the least currents are unknown
   double z0_over_z1 = 1;            ///< zero-sequence impedance of the transformer
-  bool link_at_board = false;       ///< N-PE link at its board (PEN until there) instead of at the star point
+  double r0_over_r1 = kNotGiven;    ///< the same in two parts; not given: z0_over_z1 holds for both
+  double x0_over_x1 = kNotGiven;
+  bool link_at_board = false;  ///< N-PE link at its board (PEN until there) instead of at the star point
+  StarPoint star;              ///< IT: towards earth; otherwise towards N and PE
+  double capacitance = 0;      ///< of the whole IT network to earth, all lines together [F]; 0: not declared
+  bool z0_known = true;        ///< false: a winding whose zero sequence is not declared (Yyn)
   Device device;
   Tails tails;
   Sourced<double> demand;  ///< of the whole installation, in its most loaded line [A]
@@ -84,6 +151,39 @@ struct Board {
   Device incomer;  ///< kind none: no incomer
   std::vector<Group> groups;
   int electrode = -1;
+  bool n_pe_link = false;  ///< its neutral and protective bars are joined
+};
+
+enum class Winding { star, star_earthed, delta, zigzag, zigzag_earthed };
+
+/// A transformer between two boards.
+struct Transformer {
+  std::string name;
+  Origin at{};
+  int from = -1, to = -1;  ///< boards of the primary and the secondary side
+  Winding primary_winding = Winding::delta;
+  Winding secondary_winding = Winding::star_earthed;
+  int clock = 11;
+  double rating = 0;          ///< [VA]
+  double uk = 0;              ///< [1]
+  double losses = 0;          ///< load losses [W]; 0: from x_over_r
+  double x_over_r = 0;        ///< 0: from losses
+  double primary = 0;         ///< rated voltage between lines [V]
+  double secondary = 0;       ///< rated no-load voltage between lines [V]
+  bool on_load_taps = false;  ///< of a generator's unit transformer (IEC 60909)
+  double tap = 0;             ///< of the primary, relative to `primary`: 0.05 is +5 %
+  double r0_over_r1 = kNotGiven;
+  double x0_over_x1 = kNotGiven;  ///< both or neither; not given: 1 with a delta or zigzag, else unknown
+  double U0 = 230;                ///< nominal of the secondary side, line to neutral [V]
+  double U = 400;                 ///< line to line [V]
+  StarPoint primary_star, star;
+  bool link_at_board = false;          ///< N-PE link at its board (PEN until there) instead of at the star point
+  double capacitance = 0;              ///< of an IT network to earth, all lines together [F]; 0: not declared
+  Earthing earthing = Earthing::TN_S;  ///< of the secondary side
+  bool own_transformer = true;
+  Device primary_device, device;
+  Tails tails;  ///< from the secondary terminals to its board
+  Sourced<double> demand, pf;
 };
 
 /// Cable between two boards.
@@ -103,6 +203,8 @@ struct Submain {
   std::string installed;
   std::string selective;  ///< "", "total", or a current as typed
   bool cpc_given = false;
+  bool pen = false;   ///< its neutral is the protective conductor too (cpc = "PEN")
+  Sequence sequence;  ///< in place of a cable [ohm/m]
 };
 
 struct Spur {
@@ -129,6 +231,7 @@ struct Circuit {
   Sourced<double> pf;
   Sourced<double> Iz;  ///< [A]
   bool motor = false;  ///< its load is a motor's rated current
+  bool pen = false;    ///< its neutral is the protective conductor too (cpc = "PEN")
   std::string installed;
   std::string selective;
 };
@@ -140,10 +243,52 @@ struct Electrode {
   double resistance = 0;  ///< RA [ohm]
 };
 
+/// An asynchronous motor, or a group of equal ones.
+struct Motor {
+  std::string name;
+  Origin at{};
+  int board = -1;    ///< where it stands,
+  int circuit = -1;  ///< or the circuit at whose end it stands
+  ConductorSet lines{Conductor::L1, Conductor::L2, Conductor::L3};
+  double amps = 0;          ///< rated current of one [A]
+  double volts = 0;         ///< rated, between its lines [V]; 0: nominal of the place
+  double watts = 0;         ///< rated mechanical power of one [W]; 0: from the current
+  double pf = 0.85;         ///< rated
+  double efficiency = 0.9;  ///< rated
+  double start = 5;         ///< locked-rotor current over rated current
+  double r_over_x = 0.42;
+  int pole_pairs = 1;
+  int count = 1;           ///< equal motors
+  bool converter = false;  ///< behind a static converter that cannot feed back
+};
+
+/// A conducting path that is no circuit: bonding conductor, pipe, cable sheath.
+struct Bond {
+  std::string name;
+  Origin at{};
+  int from = -1;
+  int to = -1;           ///< -1: reference earth
+  double ohms = 0;       ///< [ohm]
+  double reactance = 0;  ///< [ohm]
+};
+
+/// Coupler, changeover or bypass: joins two boards without impedance.
+struct Link {
+  std::string name;
+  Origin at{};
+  int from = -1, to = -1;
+  ConductorSet conductors;  ///< that it joins; PE where both boards have one
+  bool closed = true;       ///< where a state does not say
+  Device device;
+};
+
 struct SupplyState {
   std::string name;
   Origin at{};
   std::vector<int> sources;
+  std::vector<bool> link_closed;       ///< of each link; filled by the reader
+  std::vector<bool> submain_open;      ///< of each submain
+  std::vector<bool> transformer_open;  ///< of each transformer
 };
 
 /// Something taken that the user did not say; listed with every report.
@@ -160,12 +305,18 @@ struct Network {
   RuleSet rules;
   double ambient_degc = 30;
   double frequency = 50;  ///< [Hz]
+  Method method = Method::conductor;
+  double tolerance = 0.06;  ///< IEC 60909: of the low voltage, 0.06 or 0.10
   bool dwelling = false;
   std::vector<Source> sources;
   std::vector<Board> boards;
   std::vector<Submain> submains;
   std::vector<Circuit> circuits;
   std::vector<Electrode> electrodes;
+  std::vector<Transformer> transformers;
+  std::vector<Motor> motors;
+  std::vector<Bond> bonds;
+  std::vector<Link> links;
   std::vector<SupplyState> states;  ///< at least one once read
   std::vector<Assumption> assumptions;
   // what remedies and catalogue sweeps may choose from

@@ -52,11 +52,6 @@ const Key* find_key(const Kind& kind, std::string_view name) noexcept {
   return nullptr;
 }
 
-const std::vector<std::string_view>& later_kinds() {
-  static const std::vector<std::string_view> kinds = {"generator", "inverter", "motor", "link", "bond"};
-  return kinds;
-}
-
 std::string_view nearest_name(std::string_view wrong, const std::vector<std::string_view>& names) {
   constexpr std::size_t kLongest = 200;  // a longer text is no misspelt name
   if (wrong.size() < 2 || wrong.size() > kLongest) return {};

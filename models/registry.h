@@ -39,6 +39,7 @@ struct Key {
   std::string_view by_default;                     ///< as text, "" where there is none
   std::string_view help;                           ///< one sentence
   bool above = false;                              ///< `least` itself is not possible: "must be above 0 m"
+  std::string_view unless = {};                    ///< of an obligatory key: not where this other one stands
 };
 
 struct Kind {
@@ -54,9 +55,6 @@ struct Kind {
 /// nullptr where there is none.
 [[nodiscard]] const Kind* find_kind(std::string_view name) noexcept;
 [[nodiscard]] const Key* find_key(const Kind& kind, std::string_view name) noexcept;
-
-/// Kinds that design and trade know but this edition refuses by name: "generator", "motor", ...
-[[nodiscard]] const std::vector<std::string_view>& later_kinds();
 
 /// The nearest of `names` by edit distance, "" when none is within max(1, length / 3); ties by spelling. Names of
 /// one letter are near to nothing.

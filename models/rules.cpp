@@ -6,7 +6,7 @@
 namespace sunder::models {
 
 const char* word(Earthing earthing) noexcept {
-  constexpr std::array kWords = {"TN-S", "TN-C-S", "TT"};
+  constexpr std::array kWords = {"TN-S", "TN-C-S", "TT", "TN-C", "IT"};
   return kWords[static_cast<std::size_t>(earthing)];
 }
 

@@ -12,7 +12,7 @@
 
 namespace sunder::models {
 
-enum class Earthing { TN_S, TN_C_S, TT };
+enum class Earthing { TN_S, TN_C_S, TT, TN_C, IT };
 enum class Use { unknown, sockets, fixed, lighting, distribution };
 
 [[nodiscard]] const char* word(Earthing earthing) noexcept;

@@ -66,6 +66,12 @@ constexpr std::array kUnits = {
     Unit{"mV/Am", 1e-3, Quantity::voltage_drop_per},
     Unit{"V/A/km", 1e-3, Quantity::voltage_drop_per},
     Unit{"V/A/m", 1, Quantity::voltage_drop_per},
+    Unit{"Hz", 1, Quantity::frequency},
+    Unit{"kHz", 1e3, Quantity::frequency},
+    Unit{"F", 1, Quantity::capacitance},
+    Unit{"mF", 1e-3, Quantity::capacitance},
+    Unit{"uF", 1e-6, Quantity::capacitance},
+    Unit{"nF", 1e-9, Quantity::capacitance},
 };
 
 struct Description {
@@ -94,6 +100,8 @@ const Description& description(Quantity quantity) noexcept {
       Description{"an adiabatic constant k", "115", "", "A*sqrt(s)/m2", 1e6},
       Description{"a voltage drop", "18 mV/A/m", "mV/A/m, V/A/km, V/A/m", "V/(A*m)", 0},
       Description{"a number", "2", "", "1", 1},
+      Description{"a frequency", "50 Hz", "Hz, kHz", "Hz", 0},
+      Description{"a capacitance", "2 uF", "uF, nF, mF, F", "F", 0},
   };
   return kDescriptions.at(static_cast<std::size_t>(quantity));
 }
@@ -229,6 +237,49 @@ std::variant<double, UnitError> parse_quantity(std::string_view typed, Quantity 
   return unknown_unit(unit, quantity);
 }
 
+std::variant<std::complex<double>, UnitError> parse_complex(std::string_view typed, Quantity quantity) {
+  const std::string text = plain_spelling(typed);
+  const std::size_t mark = text.find('j');
+  if (mark == std::string::npos) {
+    const auto real = parse_quantity(typed, quantity);
+    if (const auto* error = std::get_if<UnitError>(&real)) return *error;
+    return std::complex<double>(std::get<double>(real), 0);
+  }
+  const std::string example = quantity == Quantity::impedance_per_length ? "0.077+j0.079 ohm/km" : "0.05+j0.02 ohm";
+  const auto refuse = [&] {
+    return UnitError{fmt::format("'{}' is no impedance with a reactance; expected one such as '{}'", typed, example)};
+  };
+  if (text.find('j', mark + 1) != std::string::npos) return refuse();
+  std::string real_text = without_blanks(std::string_view(text).substr(0, mark));
+  std::string imaginary = without_blanks(std::string_view(text).substr(mark + 1));
+  if (imaginary.empty()) return refuse();
+  // the sign between the parts; a sign behind 'e' belongs to an exponent
+  std::size_t sign = real_text.find_last_of("+-");
+  while (sign != std::string::npos && sign > 0 && (real_text[sign - 1] == 'e' || real_text[sign - 1] == 'E')) {
+    sign = real_text.find_last_of("+-", sign - 1);
+  }
+  const bool behind = !is_digit(imaginary.front()) && imaginary.front() != '.';  // "0.2j ohm"
+  if (behind) {
+    const std::size_t start = sign == std::string::npos ? 0 : sign;
+    imaginary = real_text.substr(start) + imaginary;
+    real_text.resize(start);
+  } else if (!real_text.empty()) {
+    if (sign != real_text.size() - 1) return refuse();
+    imaginary = real_text.substr(sign) + imaginary;
+    real_text.resize(sign);
+  }
+  const auto reactance = parse_quantity(imaginary, quantity);
+  if (const auto* error = std::get_if<UnitError>(&reactance)) return *error;
+  if (real_text.empty()) return std::complex<double>(0, std::get<double>(reactance));
+  if (is_digit(real_text.back()) || real_text.back() == '.') {
+    const std::size_t unit = imaginary.find_first_not_of("+-0123456789.eE");
+    real_text += imaginary.substr(std::min(unit, imaginary.size()));
+  }
+  const auto resistance = parse_quantity(real_text, quantity);
+  if (const auto* error = std::get_if<UnitError>(&resistance)) return *error;
+  return std::complex<double>(std::get<double>(resistance), std::get<double>(reactance));
+}
+
 std::string format_number(double value, int digits) {
   if (std::isnan(value)) return "none";
   if (std::isinf(value)) return value > 0 ? "unbounded" : "-unbounded";
@@ -307,6 +358,10 @@ std::string format_quantity(double si_value, Quantity quantity, int digits) {
       return format_number(si_value / 1e6, digits);
     case Quantity::voltage_drop_per:
       return scaled(si_value, 1e-3, "mV/A/m", digits);
+    case Quantity::frequency:
+      return scaled(si_value, 1, "Hz", digits);
+    case Quantity::capacitance:
+      return size >= 1e-6 ? scaled(si_value, 1e-6, "uF", digits) : scaled(si_value, 1e-9, "nF", digits);
     case Quantity::ratio:
     case Quantity::count:
       break;

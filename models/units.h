@@ -4,6 +4,7 @@
 /// every value is a double in SI, temperatures in degC.
 #pragma once
 
+#include <complex>
 #include <string>
 #include <string_view>
 #include <variant>
@@ -29,6 +30,8 @@ enum class Quantity {
   adiabatic_k,           ///< [A*sqrt(s)/m2]; typed as a bare number in A*sqrt(s)/mm2
   voltage_drop_per,      ///< [V/(A*m)]; typed in mV/A/m
   count,                 ///< [1]; a bare number
+  frequency,             ///< [Hz]
+  capacitance,           ///< [F]
 };
 
 /// Why a text is not a quantity. `message` is one sentence: what was found and which units fit.
@@ -43,6 +46,14 @@ struct UnitError {
 /// @return value in the SI unit of `quantity`
 /// Errors: no number, unknown unit, unit of another quantity, a bare number where a unit decides.
 [[nodiscard]] std::variant<double, UnitError> parse_quantity(std::string_view text, Quantity quantity);
+
+/// Reads an impedance with its reactance: "0.0531+j0.5311 mohm", "5+j20 ohm", "0.1 ohm", "j0.2 ohm",
+/// "0.077+j0.079 ohm/km". The unit stands once, behind both parts or behind each; "0.5+0.2j ohm" is the same as
+/// "0.5+j0.2 ohm". A part that is not written is 0.
+/// @param quantity  of both parts: an impedance, an impedance per length
+/// @return resistance and reactance in the SI unit of `quantity`
+/// Errors: as of parse_quantity, for each part.
+[[nodiscard]] std::variant<std::complex<double>, UnitError> parse_complex(std::string_view text, Quantity quantity);
 
 /// The value in the unit an engineer would write, with `digits` significant digits: "25 mm²" is
 /// printed as "25 mm2", 0.0113 s as "11.3 ms", 16000 A as "16 kA".

@@ -8,6 +8,7 @@
 #include <string>
 #include <string_view>
 #include <unordered_map>
+#include <unordered_set>
 #include <vector>
 
 #include "models/network.h"
@@ -23,6 +24,7 @@ struct Named {
   std::string_view kind;  ///< "board", "supply", ...
   int handle = -1;
   models::Origin at{};
+  bool between = false;  ///< a transformer between two boards; its handle is into `network.transformers`
 };
 
 using Names = std::unordered_map<std::string, Named>;
@@ -32,6 +34,7 @@ struct PendingRun {
   const Value* cable = nullptr;
   const Value* cpc = nullptr;
   const Value* phases = nullptr;
+  const Value* through = nullptr;  ///< `return` of a run by sequence impedances
 };
 
 /// Ways of a group as written, until circuits and submains are known.
@@ -47,8 +50,9 @@ struct Context {
   std::string folder;            ///< of the netlist, for schedules
   std::string lost;              ///< text that was left out after errors of form
   bool states_declared = false;  ///< some state stands in the netlist, be it faulty
+  bool voltages_known = true;    ///< every voltage text was understood
   bool refused = false;          ///< an element's name was refused, so that others may miss it
-  Names elements;                ///< supplies, transformers, boards, submains, electrodes
+  Names elements;                ///< all but circuits, states, devices and cables
   Names states;
   Names devices;   ///< [device.x]; handle into `named_devices`
   Names circuits;  ///< by "board/way"
@@ -58,9 +62,11 @@ struct Context {
   std::unordered_map<std::string, models::Device> device_texts;  ///< resolved before
   std::vector<PendingRun> submain_runs;                          ///< parallel to network.submains
   std::vector<PendingRun> circuit_runs;                          ///< parallel to network.circuits
+  std::vector<PendingRun> link_runs;                             ///< parallel to network.links; phases alone
   std::vector<PendingGroup> groups;
-  std::deque<Value> rows;         ///< of schedules
-  std::deque<std::string> texts;  ///< of files, so that diagnostics can show their lines
+  std::unordered_set<int> without_neutral;  ///< sources up to 1 kV whose star point is not brought out
+  std::deque<Value> rows;                   ///< of schedules
+  std::deque<std::string> texts;            ///< of files, so that diagnostics can show their lines
 
   void assume(std::string subject, std::string sentence, models::Origin at) {
     network.assumptions.push_back({std::move(subject), std::move(sentence), at});

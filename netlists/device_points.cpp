@@ -19,24 +19,6 @@ using models::Device;
 using models::DeviceKind;
 using models::Quantity;
 
-std::optional<double> point_value(Context& context, const Value& value, Quantity quantity, const std::string& what) {
-  if (value.form != Value::Form::text) {
-    context.complaints.error(value.at, value.width,
-                             fmt::format("{} is {}; a text with a unit is expected", what, word(value.form)));
-    return std::nullopt;
-  }
-  const auto parsed = models::parse_quantity(value.text, quantity);
-  if (const auto* error = std::get_if<models::UnitError>(&parsed)) {
-    context.complaints.error(value.at, value.width, fmt::format("{}: {}", what, error->message));
-    return std::nullopt;
-  }
-  const double si = std::get<double>(parsed);
-  if (std::isfinite(si) && si > 0) return si;
-  context.complaints.error(value.at, value.width,
-                           fmt::format("{} is {}; it must be above 0", what, models::format_quantity(si, quantity)));
-  return std::nullopt;
-}
-
 // A list of pairs; nothing where the key is absent or wrong, which `sound` tells apart.
 std::vector<CurvePoint> read_points(Context& context, ElementKeys& fields, std::string_view key, Quantity second,
                                     bool falling, bool& sound) {
@@ -119,6 +101,24 @@ models::ResidualType type_named(std::string_view text) noexcept {
 }
 
 }  // namespace
+
+std::optional<double> point_value(Context& context, const Value& value, Quantity quantity, const std::string& what) {
+  if (value.form != Value::Form::text) {
+    context.complaints.error(value.at, value.width,
+                             fmt::format("{} is {}; a text with a unit is expected", what, word(value.form)));
+    return std::nullopt;
+  }
+  const auto parsed = models::parse_quantity(value.text, quantity);
+  if (const auto* error = std::get_if<models::UnitError>(&parsed)) {
+    context.complaints.error(value.at, value.width, fmt::format("{}: {}", what, error->message));
+    return std::nullopt;
+  }
+  const double si = std::get<double>(parsed);
+  if (std::isfinite(si) && si > 0) return si;
+  context.complaints.error(value.at, value.width,
+                           fmt::format("{} is {}; it must be above 0", what, models::format_quantity(si, quantity)));
+  return std::nullopt;
+}
 
 std::optional<Device> device_by_points(Context& context, ElementKeys& fields, const models::DeviceFamily* residual) {
   bool sound = true;

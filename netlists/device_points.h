@@ -9,6 +9,11 @@
 
 namespace sunder::netlists {
 
+/// A value of one point, above 0; nothing after a complaint.
+/// @param what  what it is of, for the sentence
+[[nodiscard]] std::optional<double> point_value(Context& context, const Value& value, models::Quantity quantity,
+                                                const std::string& what);
+
 /// The device of a table with `kind`, `latest`, `earliest`, ...; nothing after a complaint.
 /// @param residual  family that gives the residual release where only IdN is told
 [[nodiscard]] std::optional<models::Device> device_by_points(Context& context, ElementKeys& fields,

@@ -54,14 +54,6 @@ std::string comma_hint(std::string_view text) {
   return point.find(',') == std::string::npos ? fmt::format("decimals take a point: {}", point) : std::string{};
 }
 
-// What a later edition will solve is refused with that reason, not as a misspelling.
-std::string_view later_choice(std::string_view key, std::string_view text) noexcept {
-  if (key == "earthing" && text == "TN-C") return "TN-C";
-  if (key == "earthing" && text == "IT") return "IT";
-  if (key == "currents" && text == "IEC 60909") return "IEC 60909";
-  return {};
-}
-
 }  // namespace
 
 models::Origin inside(const Value& value, std::size_t offset) noexcept {
@@ -74,11 +66,10 @@ models::Origin inside(const Value& value, std::size_t offset) noexcept {
 ElementKeys::ElementKeys(Context& context, const Value& table, const models::Kind& kind, std::string what,
                          models::Origin at)
     : context_(context), table_(table), kind_(kind), what_(std::move(what)), at_(at) {
-  std::vector<std::string_view> meant;  // by unknown keys, and so not missed as well
   for (const Member& member : table.members) {
     if (models::find_key(kind, member.key) != nullptr) continue;
     std::string hint;
-    meant.push_back(meant_key(kind, member.key));
+    meant_.push_back(meant_key(kind, member.key));
     if (!context.complaints.full()) {
       hint = unknown_key_hint(kind, member.key, member.value.form == Value::Form::table);
     }
@@ -86,10 +77,27 @@ ElementKeys::ElementKeys(Context& context, const Value& table, const models::Kin
                              std::move(hint));
   }
   for (const Key& key : kind.keys) {
-    if (!key.required || table.find(key.name) != nullptr || context.maybe_lost(key.name)) continue;
-    if (std::find(meant.begin(), meant.end(), key.name) != meant.end()) continue;
-    context.complaints.error(at, 1, fmt::format("{} has no '{}', which is obligatory", what_, key.name),
-                             fmt::format("{}: {}", key.name, key.help));
+    const bool replaced = !key.unless.empty() && table.find(key.unless) != nullptr;
+    if (key.required && !replaced) require(key.name);
+  }
+}
+
+bool ElementKeys::require(std::string_view name) {
+  if (table_.find(name) != nullptr) return true;
+  const Key* key = models::find_key(kind_, name);
+  if (key == nullptr || context_.maybe_lost(name)) return false;
+  if (std::find(meant_.begin(), meant_.end(), name) != meant_.end()) return false;
+  context_.complaints.error(at_, 1, fmt::format("{} has no '{}', which is obligatory", what_, name),
+                            fmt::format("{}: {}", name, key->help));
+  return false;
+}
+
+void ElementKeys::refuse(const std::vector<std::string_view>& keys, std::string_view reason, std::string_view hint) {
+  for (const std::string_view key : keys) {
+    const Value* value = find(key);
+    if (value == nullptr) continue;
+    context_.complaints.error(value->at, value->width, fmt::format("{} of {} {}", key, what_, reason),
+                              std::string(hint));
   }
 }
 
@@ -100,9 +108,14 @@ void ElementKeys::wrong_form(const Value& value, std::string_view key, std::stri
 
 std::optional<double> ElementKeys::in_range(const Key& key, const Value& value, double si) {
   auto refuse = [&](std::string rule) {
+    // 12 where 12 % was meant
+    constexpr double kPercent = 100;
+    const bool percent = key.form == ValueForm::quantity && key.quantity == Quantity::ratio && si > key.most &&
+                         si / kPercent <= key.most;
     context_.complaints.error(
         value.at, value.width,
-        fmt::format("{} of {} is {}; it must be {}", key.name, what_, shown(key, si), std::move(rule)));
+        fmt::format("{} of {} is {}; it must be {}", key.name, what_, shown(key, si), std::move(rule)),
+        percent ? fmt::format("did you mean \"{} %\"?", shown(key, si)) : std::string{});
   };
   if (!std::isfinite(si)) {
     context_.complaints.error(value.at, value.width, fmt::format("{} of {} is not a finite number", key.name, what_));
@@ -123,7 +136,7 @@ std::optional<double> ElementKeys::in_range(const Key& key, const Value& value, 
   }
   // a band that ends in a rounded decimal must hold its own end
   constexpr double kSlack = 1e-9;
-  const bool banded = key.plausible_least != 0 || key.plausible_most != 0;
+  const bool banded = (key.plausible_least != 0 || key.plausible_most != 0) && key.name != unbanded_;
   if (banded && (si < key.plausible_least - kSlack * std::abs(key.plausible_least) ||
                  si > key.plausible_most + kSlack * std::abs(key.plausible_most))) {
     context_.complaints.warn(value.at, value.width,
@@ -138,6 +151,9 @@ std::optional<double> ElementKeys::quantity(std::string_view name) {
   const Key* key = models::find_key(kind_, name);
   if (value == nullptr || key == nullptr) return std::nullopt;
   const std::string expected = fmt::format("a text with a unit ({})", models::accepted_units(key->quantity));
+  if (value->form == Value::Form::number && key->quantity == Quantity::ratio) {
+    return in_range(*key, *value, value->number);
+  }
   if (value->form == Value::Form::number) {
     context_.complaints.error(value->at, value->width,
                               fmt::format("{} of {} is {} without a unit", name, what_, value->text),
@@ -205,12 +221,6 @@ std::optional<std::string> ElementKeys::choice(std::string_view name) {
   const std::string chosen(trimmed(*read));
   const std::vector<std::string_view> valid = split_choices(key->choices);
   if (std::find(valid.begin(), valid.end(), chosen) != valid.end()) return chosen;
-  if (const std::string_view later = later_choice(name, chosen); !later.empty()) {
-    context_.complaints.error(value->at, value->width,
-                              fmt::format("{} '{}' of {} is not solved by this edition", name, later, what_),
-                              fmt::format("solved are: {}", joined(valid)));
-    return std::nullopt;
-  }
   const std::string_view meant = meant_choice(name, chosen, valid);
   std::string hint = meant.empty() ? did_you_mean(context_, chosen, valid) : fmt::format("did you mean '{}'?", meant);
   if (hint.empty()) hint = fmt::format("valid are: {}", joined(valid));
@@ -249,6 +259,33 @@ models::Sourced<double> ElementKeys::sourced(std::string_view name) {
   made.at = find(name)->at;
   made.given = true;
   return made;
+}
+
+std::optional<std::complex<double>> ElementKeys::impedance(std::string_view name, Quantity quantity, double least,
+                                                           double most) {
+  const std::optional<std::string> typed = text(name);
+  if (!typed) return std::nullopt;
+  const Value& value = *find(name);
+  const auto parsed = models::parse_complex(*typed, quantity);
+  if (const auto* error = std::get_if<models::UnitError>(&parsed)) {
+    context_.complaints.error(value.at, value.width, fmt::format("{} of {}: {}", name, what_, error->message));
+    return std::nullopt;
+  }
+  const std::complex<double> z = std::get<std::complex<double>>(parsed);
+  const double size = std::abs(z);
+  if (!(z.real() >= 0) || !(size > 0) || !std::isfinite(size)) {
+    context_.complaints.error(value.at, value.width,
+                              fmt::format("{} of {} is '{}'; {}", name, what_, *typed,
+                                          z.real() < 0 ? "its resistance must not be negative" : "it must be above 0"));
+    return std::nullopt;
+  }
+  if (size < least || size > most) {
+    context_.complaints.warn(
+        value.at, value.width,
+        fmt::format("{} of {} is '{}'; usual are {} to {}", name, what_, *typed,
+                    models::format_quantity(least, quantity), models::format_quantity(most, quantity)));
+  }
+  return z;
 }
 
 // How the table would be written; a single value of a supply's bound is put into it.

@@ -4,9 +4,11 @@
 /// impossible and unusual values are complained of here and nowhere else.
 #pragma once
 
+#include <complex>
 #include <optional>
 #include <string>
 #include <string_view>
+#include <vector>
 
 #include "netlists/context.h"
 
@@ -32,9 +34,24 @@ class ElementKeys {
   [[nodiscard]] std::optional<int> whole(std::string_view key);
   [[nodiscard]] models::Sourced<double> sourced(std::string_view key);
 
+  /// An impedance with its reactance, or that per length: resistance not negative, not nothing at all.
+  /// @param least, most  magnitudes that are usual [ohm or ohm/m]; others are warned about
+  [[nodiscard]] std::optional<std::complex<double>> impedance(std::string_view key, models::Quantity quantity,
+                                                              double least, double most);
+
   /// A table, or after a complaint nullptr.
   [[nodiscard]] const Value* table(std::string_view key);
   [[nodiscard]] const Value* list(std::string_view key);
+
+  /// Complains where `key` is absent, as of an obligatory key that the vocabulary does not call so.
+  /// @return whether it is there
+  bool require(std::string_view key);
+
+  /// Complains of the keys among `keys` that stand there, with `reason` behind "KEY of WHAT ".
+  void refuse(const std::vector<std::string_view>& keys, std::string_view reason, std::string_view hint = {});
+
+  /// From here on no value of `key` is unusual.
+  void ignore_band(std::string_view key) { unbanded_ = key; }
 
   void wrong_form(const Value& value, std::string_view key, std::string_view expected);
 
@@ -47,6 +64,8 @@ class ElementKeys {
   const models::Kind& kind_;
   std::string what_;
   models::Origin at_;
+  std::string_view unbanded_;
+  std::vector<std::string_view> meant_;  // by unknown keys, and so not missed as well
 };
 
 /// Place of the character `offset` bytes into a text value.

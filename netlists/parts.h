@@ -29,9 +29,16 @@ void read_constructions(Context& context, const Value& table);
                               const std::string& what, const std::string& subject, bool tails, models::Origin at,
                               models::Cable& out);
 
-// reader_sources.cpp; boards must be known
-void read_supplies(Context& context, const Value& table);
-void read_transformers(Context& context, const Value& table);
+/// The cpc text of a run that has no protective conductor.
+[[nodiscard]] const Value& no_cpc();
+/// Whether a cpc says that the neutral is the protective conductor too.
+[[nodiscard]] bool is_pen(const Value* cpc) noexcept;
+
+// boards must be known
+void read_supplies(Context& context, const Value& table);      // reader_sources.cpp
+void read_transformers(Context& context, const Value& table);  // reader_transformers.cpp
+void read_generators(Context& context, const Value& table);    // reader_machines.cpp
+void read_inverters(Context& context, const Value& table);
 
 // reader_elements.cpp
 /// Boards without their schedules; before anything that names a board.
@@ -41,11 +48,25 @@ void read_circuits(Context& context, const Value& table);
 /// One circuit of a table or a row of a schedule; `table` must outlive the reading.
 void read_circuit(Context& context, int board, const Member& name, const Value& table);
 void read_electrodes(Context& context, const Value& table);
+
+// reader_machines.cpp; circuits must be known
+void read_motors(Context& context, const Value& table);
+
+// reader_states.cpp; states come last of all elements
+void read_bonds(Context& context, const Value& table);
+void read_links(Context& context, const Value& table);
 void read_states(Context& context, const Value* table);
+/// A state in which every link is as it says itself, and nothing else is open; without sources.
+[[nodiscard]] models::SupplyState usual_state(const models::Network& network);
 
 // schedule.cpp
 /// The circuits of a schedule file; `value` is its path as the board names it.
 void read_schedule(Context& context, int board, const Value& value);
+
+// phase_walk.cpp
+/// Conductors and voltages worked out from the sources to every board, and what they decide: cables of submains,
+/// conductors of links, combined conductors, currents of motors.
+void walk_phases(Context& context);
 
 // wiring.cpp
 /// What needs the whole network: groups, phases worked down from the sources, cables, demands, states.

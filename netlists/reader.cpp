@@ -60,12 +60,6 @@ void check_top(Context& context, const Value& root) {
                                fmt::format("such as [{}.NAME]", member.key));
       continue;
     }
-    const auto& later = models::later_kinds();
-    if (std::find(later.begin(), later.end(), member.key) != later.end()) {
-      context.complaints.error(member.at, member.width,
-                               fmt::format("elements of kind '{}' are not solved by this edition", member.key));
-      continue;
-    }
     const bool table = member.value.form == Value::Form::table;
     std::vector<std::string_view> names;
     if (!table) {
@@ -100,6 +94,24 @@ Value head_of(const Value& root) {
   return head;
 }
 
+// A voltage tolerance, which only IEC 60909 asks for.
+void read_tolerance(Context& context, ElementKeys& fields) {
+  models::Network& network = context.network;
+  const auto chosen = fields.choice("tolerance");
+  constexpr double kWide = 0.10;
+  if (chosen == "+10 %") network.tolerance = kWide;
+  const Value* value = fields.find("tolerance");
+  if (network.method == models::Method::iec60909) {
+    if (value == nullptr) context.assume("", "tolerance of the low voltage taken as +6 %", {});
+  } else if (value != nullptr && fields.find("currents") == nullptr) {
+    context.complaints.error(value->at, value->width, "tolerance is asked for by IEC 60909 alone",
+                             "currents = \"IEC 60909\"");
+  } else if (value != nullptr) {
+    context.complaints.error(value->at, value->width, "tolerance is asked for by IEC 60909 alone");
+    context.complaints.note(fields.find("currents")->at, "currents is given here");
+  }
+}
+
 void read_head(Context& context, const Value& root) {
   const Value head = head_of(root);
   models::Network& network = context.network;
@@ -117,7 +129,9 @@ void read_head(Context& context, const Value& root) {
       context.complaints.error(value.at, value.width, fmt::format("the library has no rule set '{}'", *rules));
     }
   }
-  [[maybe_unused]] const auto currents = fields.choice("currents");  // one way only; complains of others
+  if (fields.choice("currents").value_or("") == "IEC 60909") network.method = models::Method::iec60909;
+  read_tolerance(context, fields);
+  network.frequency = fields.quantity("frequency").value_or(network.frequency);
   const auto ambient = fields.quantity("ambient");
   network.ambient_degc = ambient.value_or(network.ambient_degc);
   if (fields.find("ambient") == nullptr) context.assume("", "ambient temperature taken as 30 degC", {});
@@ -176,10 +190,15 @@ void read_elements(Context& context, const Value& root) {
   read_kind(context, root, "board", read_boards);
   read_kind(context, root, "supply", read_supplies);
   read_kind(context, root, "transformer", read_transformers);
+  read_kind(context, root, "generator", read_generators);
+  read_kind(context, root, "inverter", read_inverters);
   read_kind(context, root, "submain", read_submains);
   read_kind(context, root, "circuit", read_circuits);
   read_schedules(context, root);
   read_kind(context, root, "electrode", read_electrodes);
+  read_kind(context, root, "motor", read_motors);
+  read_kind(context, root, "bond", read_bonds);
+  read_kind(context, root, "link", read_links);
   const Value* states = root.find("state");
   context.states_declared = states != nullptr;
   const bool named = std::none_of(root.members.begin(), root.members.end(),

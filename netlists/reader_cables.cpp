@@ -25,7 +25,7 @@ using models::Quantity;
 
 constexpr std::string_view kForm = "form: <construction> <size> mm2, or <construction> <size>/<cpc size> mm2";
 constexpr std::string_view kCpcForm =
-    "a cpc is: \"core\", \"armour\", \"armour + core\", \"armour + 16 mm2\" or \"16 mm2\"";
+    "a cpc is: \"core\", \"armour\", \"armour + core\", \"armour + 16 mm2\", \"16 mm2\" or \"PEN\"";
 
 const CableConstruction* construction_named(const Context& context, std::string_view name) {
   const auto found = context.constructions.find(std::string(name));
@@ -114,6 +114,7 @@ bool read_cpc(Context& context, const Value& value, const std::string& what, con
                              "\"none\" is for a submain to a board that an electrode of its own earths");
     return false;
   }
+  if (is_pen(&value)) return true;  // the neutral is it
   std::size_t start = 0;
   while (start <= text.size()) {
     const std::size_t end = std::min(text.find('+', start), text.size());
@@ -298,6 +299,20 @@ void read_constructions(Context& context, const Value& table) {
   }
 }
 
+const Value& no_cpc() {
+  static const Value none = [] {
+    Value made;
+    made.form = Value::Form::text;
+    made.text = "none";
+    return made;
+  }();
+  return none;
+}
+
+bool is_pen(const Value* cpc) noexcept {
+  return cpc != nullptr && cpc->form == Value::Form::text && trimmed(cpc->text) == "PEN";
+}
+
 bool read_cable(Context& context, const PendingRun& run, models::ConductorSet conductors, const std::string& what,
                 const std::string& subject, bool tails, models::Origin at, models::Cable& out) {
   if (run.cable == nullptr) return false;  // complained of as a missing key
@@ -345,6 +360,12 @@ bool read_cable(Context& context, const PendingRun& run, models::ConductorSet co
       return false;
     }
     if (!construction->built_in_cpc) choice.core_area = text.cpc_area;
+  }
+  if (is_pen(run.cpc) && construction->cores > 0 && n_loaded > construction->cores) {
+    context.complaints.error(run.cpc->at, run.cpc->width,
+                             fmt::format("cpc of {} is PEN, but the {} cores of '{}' leave none for the neutral", what,
+                                         construction->cores, construction->name));
+    return false;
   }
   if (const auto error =
           models::resolve_cable(*construction, text.area, choice, n_loaded, neutral, copper_singles(context), out)) {

@@ -1,6 +1,6 @@
 // SPDX-License-Identifier: Apache-2.0
 /// @file
-/// Boards, submains, circuits, electrodes and supply states.
+/// Boards, submains, circuits and electrodes.
 #include <fmt/format.h>
 
 #include <algorithm>
@@ -160,6 +160,38 @@ void check_ring(Context& context, ElementKeys& fields, const Circuit& circuit) {
   }
 }
 
+// z1 and z0 of a run, which stand in place of a cable.
+void read_sequence(Context& context, ElementKeys& fields, models::Sequence& sequence) {
+  constexpr double kLeast = 2e-6, kMost = 2e-2;  // [ohm/m]
+  const Value* z1 = fields.find("z1");
+  if (z1 == nullptr) {
+    if (fields.find("z0") != nullptr) fields.refuse({"z0"}, "needs z1 beside it");
+    if (fields.find("cable") != nullptr) fields.refuse({"return"}, "is for a run by z1; a cable has its own return");
+    return;
+  }
+  if (const Value* cable = fields.find("cable")) {
+    context.complaints.error(z1->at, z1->width,
+                             fmt::format("{} has both a cable and z1; one is enough", fields.what()));
+    context.complaints.note(cable->at, "cable is given here");
+  } else {
+    fields.refuse({"cpc"}, "belongs to a cable; of a run by z1, return says what carries the rest");
+  }
+  sequence.at = z1->at;
+  if (const auto z = fields.impedance("z1", Quantity::impedance_per_length, kLeast, kMost)) {
+    sequence.z1 = *z;
+    sequence.given = true;
+  }
+  if (const auto z = fields.impedance("z0", Quantity::impedance_per_length, kLeast, kMost)) {
+    sequence.z0 = *z;
+    sequence.z0_given = sequence.given;
+  }
+  const std::string through = fields.choice("return").value_or("");
+  using models::Return;
+  if (through == "N") sequence.through = Return::neutral;
+  if (through == "PE") sequence.through = Return::protective;
+  if (through == "earth") sequence.through = Return::earth;
+}
+
 models::Use use_named(std::string_view text) noexcept {
   if (text == "sockets") return models::Use::sockets;
   if (text == "fixed") return models::Use::fixed;
@@ -183,6 +215,7 @@ void read_boards(Context& context, const Value& table) {
       board.incomer = read_device(context, *incomer, fmt::format("incomer of {}", what)).value_or(models::Device{});
     }
     read_groups(context, fields, handle, board);
+    board.n_pe_link = fields.flag("n_pe_link").value_or(false);
     context.network.boards.push_back(std::move(board));
   }
 }
@@ -207,6 +240,8 @@ void read_submains(Context& context, const Value& table) {
     if (const Value* device = fields.find("device")) {
       submain.device = read_device(context, *device, fmt::format("device of {}", what)).value_or(models::Device{});
     }
+    // lines written by their impedances are as long as a network is wide
+    if (fields.find("z1") != nullptr) fields.ignore_band("length");
     submain.length = fields.sourced("length");
     submain.in_parallel = fields.whole("in_parallel").value_or(1);
     submain.installed = fields.text("installed").value_or("");
@@ -219,7 +254,10 @@ void read_submains(Context& context, const Value& table) {
     }
     submain.selective = read_selective(context, fields);
     submain.cpc_given = fields.find("cpc") != nullptr;
-    context.submain_runs.push_back({fields.find("cable"), fields.find("cpc"), fields.find("phases")});
+    submain.pen = is_pen(fields.find("cpc"));
+    read_sequence(context, fields, submain.sequence);
+    context.submain_runs.push_back(
+        {fields.find("cable"), fields.find("cpc"), fields.find("phases"), fields.find("return")});
     context.network.submains.push_back(std::move(submain));
   }
 }
@@ -295,8 +333,13 @@ void read_circuit(Context& context, int board, const Member& member, const Value
   circuit.selective = read_selective(context, fields);
   check_ring(context, fields, circuit);
   const PendingRun run{fields.find("cable"), fields.find("cpc"), fields.find("phases")};
-  if (!circuit.conductors.empty() &&
-      read_cable(context, run, circuit.conductors, what, address, false, member.at, circuit.cable)) {
+  circuit.pen = is_pen(run.cpc);
+  if (circuit.pen && !circuit.conductors.empty() && !circuit.conductors.has(Conductor::N)) {
+    context.complaints.error(run.cpc->at, run.cpc->width,
+                             fmt::format("cpc of {} is PEN, but its phases have no N", what));
+    circuit.pen = false;
+  } else if (!circuit.conductors.empty() &&
+             read_cable(context, run, circuit.conductors, what, address, false, member.at, circuit.cable)) {
     for (const models::Strand& strand : circuit.cable.protective) {
       if (strand.place != models::Place::separate) continue;
       context.assume(
@@ -337,45 +380,6 @@ void read_electrodes(Context& context, const Value& table) {
       }
     }
     context.network.electrodes.push_back(std::move(electrode));
-  }
-}
-
-void read_states(Context& context, const Value* table) {
-  if (table == nullptr) return;
-  context.states_declared = !table->members.empty();
-  for (const Member& member : table->members) {
-    const std::string what = fmt::format("state '{}'", member.key);
-    if (!is_table(context, member.value, what)) continue;
-    const int handle = static_cast<int>(context.network.states.size());
-    if (!enter_name(context, context.states, member, "state", handle)) continue;
-    ElementKeys fields(context, member.value, *models::find_kind("state"), what, member.at);
-    models::SupplyState state;
-    state.name = member.key;
-    state.at = member.at;
-    const Value* sources = fields.list("sources");
-    if (sources != nullptr && sources->items.empty()) {
-      context.complaints.error(sources->at, sources->width, fmt::format("{} has no source", what));
-    }
-    if (sources == nullptr) continue;
-    for (const Value& item : sources->items) {
-      const auto found = item.form == Value::Form::text ? context.elements.find(item.text) : context.elements.end();
-      const bool is_source =
-          found != context.elements.end() && (found->second.kind == "supply" || found->second.kind == "transformer");
-      if (!is_source) {
-        if (context.maybe_lost(item.text)) continue;
-        std::vector<std::string_view> names;
-        for (const models::Source& source : context.network.sources) names.push_back(source.name);
-        context.complaints.error(item.at, item.width, fmt::format("unknown source '{}' of {}", item.text, what),
-                                 did_you_mean(context, item.text, names));
-        continue;
-      }
-      if (std::find(state.sources.begin(), state.sources.end(), found->second.handle) != state.sources.end()) {
-        context.complaints.error(item.at, item.width, fmt::format("{} names source '{}' twice", what, item.text));
-        continue;
-      }
-      state.sources.push_back(found->second.handle);
-    }
-    context.network.states.push_back(std::move(state));
   }
 }
 

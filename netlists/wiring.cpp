@@ -1,16 +1,14 @@
 // SPDX-License-Identifier: Apache-2.0
 /// @file
-/// What can be told only once all elements are known: states, groups, phases from the sources down,
-/// the cables of submains, demands against loads.
+/// What can be told only once all elements are known: states, groups, demands against loads, electrodes.
 #include <fmt/format.h>
 
 #include <algorithm>
 #include <array>
-#include <optional>
 #include <utility>
 
-#include "netlists/element_keys.h"
 #include "netlists/parts.h"
+#include "netlists/source_keys.h"
 
 namespace sunder::netlists {
 
@@ -29,14 +27,20 @@ std::size_t at(int handle) noexcept { return static_cast<std::size_t>(handle); }
 void complete_states(Context& context) {
   Network& network = context.network;
   if (network.sources.empty()) {
-    if (!context.refused && !context.maybe_lost("supply") && !context.maybe_lost("transformer")) {
+    const std::array kinds = {"supply", "transformer", "generator", "inverter"};
+    const bool lost =
+        std::any_of(kinds.begin(), kinds.end(), [&](const char* kind) { return context.maybe_lost(kind); });
+    if (!context.refused && !lost) {
       context.complaints.error({1, 0, 0}, 1, "the netlist has no supply and no transformer");
     }
     return;
   }
   if (network.states.empty()) {
     if (network.sources.size() == 1) {
-      network.states.push_back({"normal", {}, {0}});
+      models::SupplyState normal = usual_state(network);
+      normal.name = "normal";
+      normal.sources = {0};
+      network.states.push_back(std::move(normal));
     } else if (!context.states_declared && !context.maybe_lost("state")) {
       context.complaints.error(
           network.sources[1].at, 1,
@@ -114,163 +118,6 @@ void check_ways(Context& context) {
   }
 }
 
-std::string lacking(ConductorSet wanted, ConductorSet has) {
-  std::string text;
-  for (const Conductor c : kLive) {
-    if (!wanted.has(c) || has.has(c)) continue;
-    if (!text.empty()) text += ' ';
-    text += models::name(c);
-  }
-  return text;
-}
-
-void refuse_phases(Context& context, const PendingRun& run, models::Origin element, const std::string& what,
-                   ConductorSet wanted, ConductorSet has, const std::string& board) {
-  const models::Origin place = run.phases != nullptr ? run.phases->at : element;
-  context.complaints.error(
-      place, run.phases != nullptr ? run.phases->width : 1,
-      fmt::format("{} needs {}, but board '{}' has {}", what, lacking(wanted, has), board, models::phases_text(has)));
-}
-
-// Works the phases down from the sources and resolves the submains' cables on the way.
-class PhaseWalk {
- public:
-  explicit PhaseWalk(Context& context)
-      : context_(context),
-        network_(context.network),
-        has_(network_.boards.size()),
-        reached_(network_.boards.size(), false),
-        leaving_(network_.boards.size()),
-        done_(network_.submains.size(), false) {
-    for (std::size_t k = 0; k < network_.submains.size(); ++k) {
-      if (network_.submains[k].from >= 0) leaving_[at(network_.submains[k].from)].push_back(k);
-    }
-  }
-
-  void run() {
-    for (const models::Source& source : network_.sources) {
-      if (source.board < 0) continue;
-      ConductorSet set = source.lines;
-      set.add(Conductor::N);
-      set.add(Conductor::PE);
-      reach(source.board, set);
-    }
-    for (std::size_t k = 0; k < queue_.size(); ++k) {
-      for (const std::size_t submain : leaving_[at(queue_[k])]) walk(submain);
-    }
-    // boards that nothing feeds still get their cables read, so that all errors come out in one run
-    const bool any_source = std::any_of(network_.sources.begin(), network_.sources.end(),
-                                        [](const models::Source& source) { return source.board >= 0; });
-    for (std::size_t k = 0; k < network_.boards.size(); ++k) {
-      if (reached_[k]) continue;
-      // a feed that could not be read has been complained of already
-      if (any_source && !feed_unread(static_cast<int>(k))) {
-        context_.complaints.error(network_.boards[k].at, 1,
-                                  fmt::format("nothing feeds board '{}'", network_.boards[k].name),
-                                  "a supply, a transformer or a submain leads to a board");
-      }
-    }
-    for (std::size_t k = 0; k < network_.submains.size(); ++k) {
-      if (!done_[k]) walk(k);
-    }
-    for (std::size_t k = 0; k < network_.circuits.size(); ++k) check_circuit(k);
-  }
-
- private:
-  void reach(int board, ConductorSet set) {
-    for (const Conductor c : {Conductor::L1, Conductor::L2, Conductor::L3, Conductor::N, Conductor::PE}) {
-      if (set.has(c)) has_[at(board)].add(c);
-    }
-    if (reached_[at(board)]) return;
-    reached_[at(board)] = true;
-    queue_.push_back(board);
-  }
-
-  // Whether some submain or source names no board or might have been lost.
-  [[nodiscard]] bool feed_unread(int board) const {
-    if (!context_.lost.empty() || context_.refused) return true;
-    const bool submain = std::any_of(network_.submains.begin(), network_.submains.end(),
-                                     [&](const models::Submain& s) { return s.to == board && s.from < 0; });
-    const bool source = std::any_of(network_.sources.begin(), network_.sources.end(),
-                                    [](const models::Source& s) { return s.board < 0; });
-    const bool lost_end = std::any_of(network_.submains.begin(), network_.submains.end(),
-                                      [](const models::Submain& s) { return s.to < 0; });
-    return submain || source || lost_end;
-  }
-
-  void walk(std::size_t k) {
-    done_[k] = true;
-    models::Submain& submain = network_.submains[k];
-    const PendingRun& run = context_.submain_runs[k];
-    const std::string what = fmt::format("submain '{}'", submain.name);
-    ConductorSet has;
-    if (submain.from >= 0) has = has_[at(submain.from)];
-    bool sound = true;
-    if (run.phases != nullptr) {
-      const auto set = read_phases(context_, *run.phases, what);
-      sound = set.has_value();
-      submain.conductors = set.value_or(ConductorSet{});
-      if (sound && submain.from >= 0 && reached_[at(submain.from)] && !has.contains(submain.conductors)) {
-        refuse_phases(context_, run, submain.at, what, submain.conductors, has, network_.boards[at(submain.from)].name);
-        submain.conductors = {};
-        sound = false;
-      }
-    } else {
-      submain.conductors = has;
-      submain.conductors.add(Conductor::PE);
-    }
-    if (run.cpc != nullptr && trimmed(run.cpc->text) == "none") {
-      submain.conductors.remove(Conductor::PE);
-      context_.assume(submain.name, "no protective conductor: nothing along it is taken to need one (Class II)",
-                      run.cpc->at);
-    }
-    // where the conductors are not known, at least the name, size and cpc are read
-    const ConductorSet carried = submain.conductors.lines() > 0 ? submain.conductors : ConductorSet{Conductor::L1};
-    if (read_cable(context_, run, carried, what, submain.name, false, submain.at, submain.cable)) assume_close(submain);
-    if (submain.to >= 0 && submain.from >= 0 && reached_[at(submain.from)]) {
-      // after an error pass on all that could be meant, so that one slip is one complaint
-      // (the phases; where PE begins and ends is the topology's business)
-      ConductorSet phases = sound ? submain.conductors : has;
-      phases.add(Conductor::PE);
-      reach(submain.to, phases);
-    }
-  }
-
-  void assume_close(const models::Submain& submain) {
-    for (const models::Strand& strand : submain.cable.protective) {
-      if (strand.place == models::Place::armour && strand.x <= 0) {
-        context_.assume(submain.name, fmt::format("no reactance of the armour of {} is known", submain.name),
-                        submain.cable.at);
-      }
-      if (strand.place != models::Place::separate) continue;
-      context_.assume(
-          submain.name,
-          fmt::format("the protective conductor beside the cable of {} is taken to run close to it, not bunched "
-                      "with it: at ambient temperature, k as such",
-                      submain.name),
-          submain.at);
-    }
-  }
-
-  void check_circuit(std::size_t k) {
-    const models::Circuit& circuit = network_.circuits[k];
-    if (circuit.conductors.empty() || !reached_[at(circuit.board)]) return;
-    const ConductorSet has = has_[at(circuit.board)];
-    if (has.contains(circuit.conductors)) return;
-    const std::string& board = network_.boards[at(circuit.board)].name;
-    refuse_phases(context_, context_.circuit_runs[k], circuit.at, fmt::format("circuit '{}/{}'", board, circuit.name),
-                  circuit.conductors, has, board);
-  }
-
-  Context& context_;
-  Network& network_;
-  std::vector<ConductorSet> has_;
-  std::vector<bool> reached_;
-  std::vector<std::vector<std::size_t>> leaving_;
-  std::vector<bool> done_;
-  std::vector<int> queue_;
-};
-
 // What a board's ways take, line by line.
 struct BoardLoad {
   double largest = 0;           // [A]
@@ -321,19 +168,49 @@ void check_demands(Context& context) {
                       models::format_quantity(sum, Quantity::current)));
     }
   };
-  for (const models::Submain& submain : network.submains)
-    compare(submain.demand, submain.to, fmt::format("submain '{}'", submain.name));
+  // of a board with several feeds, each has a share that is not known here
+  std::vector<int> feeds(network.boards.size(), 0);
+  const auto count = [&](int board) {
+    if (board >= 0) ++feeds[at(board)];
+  };
+  for (const models::Submain& submain : network.submains) count(submain.to);
+  for (const models::Transformer& transformer : network.transformers) count(transformer.to);
+  for (const models::Link& link : network.links) {
+    count(link.from);
+    count(link.to);
+  }
+  const auto alone = [&](int board) { return board >= 0 && feeds[at(board)] == 1; };
+  for (const models::Submain& submain : network.submains) {
+    if (alone(submain.to)) compare(submain.demand, submain.to, fmt::format("submain '{}'", submain.name));
+  }
+  for (const models::Transformer& transformer : network.transformers) {
+    if (alone(transformer.to))
+      compare(transformer.demand, transformer.to, fmt::format("transformer '{}'", transformer.name));
+  }
   for (const models::Source& source : network.sources)
     compare(source.demand, source.board, fmt::format("source '{}'", source.name));
 }
 
-// A TT installation is nothing without its electrode.
+// A TT or IT installation is nothing without its electrode, or another way to earth.
 void check_electrodes(Context& context) {
   const Network& network = context.network;
-  if (!network.electrodes.empty() || context.maybe_lost("electrode")) return;
+  const bool bonded =
+      std::any_of(network.bonds.begin(), network.bonds.end(), [](const models::Bond& bond) { return bond.to < 0; });
+  if (!network.electrodes.empty() || bonded || context.maybe_lost("electrode")) return;
+  const auto own_earth = [](models::Earthing earthing) {
+    return earthing == models::Earthing::TT || earthing == models::Earthing::IT;
+  };
   for (const models::Source& source : network.sources) {
-    if (source.earthing != models::Earthing::TT) continue;
-    context.complaints.warn(source.at, 1, fmt::format("source '{}' is TT, but no board has an electrode", source.name));
+    if (!own_earth(source.earthing) || source.high_voltage) continue;
+    context.complaints.warn(
+        source.at, 1,
+        fmt::format("source '{}' is {}, but no board has an electrode", source.name, models::word(source.earthing)));
+  }
+  for (const models::Transformer& transformer : network.transformers) {
+    if (!own_earth(transformer.earthing) || transformer.U > kLowVoltage) continue;
+    context.complaints.warn(transformer.at, 1,
+                            fmt::format("transformer '{}' is {}, but no board has an electrode", transformer.name,
+                                        models::word(transformer.earthing)));
   }
 }
 
@@ -343,7 +220,7 @@ void join_up(Context& context) {
   complete_states(context);
   check_ways(context);
   join_groups(context);
-  PhaseWalk(context).run();
+  walk_phases(context);
   check_demands(context);
   check_electrodes(context);
 }

@@ -48,6 +48,20 @@ void add_damage(PathChart& chart, const Network& network, const models::Cable& c
   chart.damage.insert(chart.damage.end(), lines.begin(), lines.end());
 }
 
+// Greatest current of a fault on the load side of a device.
+FaultCurrent greatest_through(const Network& network, const StateSolution& solution, const Situation& end,
+                              const Protector& protector, Fault fault) {
+  if (solution.tree.grid) {
+    const StateGrid& grid = solution.grid(Condition::maximum);
+    GridPlace place = grid.at_board(protector.board >= 0 ? protector.board : end.source->board);
+    place.have = end.conductors;
+    return grid.current(place, fault);
+  }
+  const ConductorMatrix net = protector.board < 0 ? ConductorMatrix(ConductorMatrix::Zero())
+                                                  : solution.maximum.boards[static_cast<std::size_t>(protector.board)];
+  return fault_current(network, *end.source, net, end.conductors, Condition::maximum, fault);
+}
+
 // One device of the path with the currents it may see on the conductors that lead to the address.
 PathDevice describe(const Network& network, const StateSolution& solution, const Situation& end,
                     const Protector& protector, const std::optional<Situation>& element) {
@@ -60,10 +74,8 @@ PathDevice describe(const Network& network, const StateSolution& solution, const
         least(element->far_min, {Fault::line_earth, Fault::line_neutral, Fault::line_line}, nullptr);
     if (low != nullptr && low->known) device.least = low->amps;
   }
-  const ConductorMatrix net = protector.board < 0 ? ConductorMatrix(ConductorMatrix::Zero())
-                                                  : solution.maximum.boards[static_cast<std::size_t>(protector.board)];
   for (const Fault fault : kAllFaults) {
-    const FaultCurrent current = fault_current(network, *end.source, net, end.conductors, Condition::maximum, fault);
+    const FaultCurrent current = greatest_through(network, solution, end, protector, fault);
     if (current.usable() && !(device.greatest >= current.amps)) device.greatest = current.amps;
   }
   return device;

@@ -44,19 +44,31 @@ double points_heat(const std::vector<models::CurvePoint>& points, double current
 
 std::vector<Protector> path_to_board(const Network& network, const StateTree& tree, int board) {
   std::vector<int> boards;
+  // Up to what feeds this voltage level: a current beyond a transformer is another current.
   for (int b = board; b >= 0;) {
     boards.push_back(b);
     const int f = tree.feeder[at(b)];
-    b = f < 0 ? -1 : network.submains[at(f)].from;
+    if (tree.grid) {
+      b = tree.transformer[at(b)] >= 0 ? -1 : tree.above[at(b)];
+    } else {
+      b = f < 0 ? -1 : network.submains[at(f)].from;
+    }
   }
   std::vector<Protector> path;
-  const models::Source& source = network.sources[at(tree.source_of[at(board)])];
-  push(path, source.device, source.name, source.at, -1);
+  const int top = boards.back();
+  if (!tree.grid || tree.sole[at(top)] || tree.transformer[at(top)] >= 0) {
+    const models::Source& source = system_of(network, tree, top);
+    push(path, source.device, source.name, source.at, -1);
+  }
   for (auto b = boards.rbegin(); b != boards.rend(); ++b) {
     if (const int f = tree.feeder[at(*b)]; f >= 0) {
       const models::Submain& submain = network.submains[at(f)];
       push_group(path, network, submain.from, submain.group);
       push(path, submain.device, submain.name, submain.at, submain.from);
+    }
+    if (tree.grid && tree.link[at(*b)] >= 0) {
+      const models::Link& link = network.links[at(tree.link[at(*b)])];
+      push(path, link.device, link.name, link.at, tree.above[at(*b)]);
     }
     const models::Board& here = network.boards[at(*b)];
     push(path, here.incomer, here.name, here.at, *b);

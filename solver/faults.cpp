@@ -9,6 +9,8 @@
 #include <cmath>
 #include <numbers>
 
+#include "solver/fault_loops.h"
+#include "solver/state_grid.h"
 #include "solver/study.h"
 
 namespace sunder::solver {
@@ -20,73 +22,6 @@ using models::ConductorSet;
 using models::Network;
 using models::Source;
 
-// One choice of conductors for a fault: the loops it closes, as columns of F.
-struct Loops {
-  Eigen::Matrix<double, 5, 2> f = Eigen::Matrix<double, 5, 2>::Zero();
-  int n = 0;
-  ConductorSet needs;
-  const char* phases = "";
-};
-
-Loops loop(Conductor from, Conductor to, const char* phases) {
-  Loops result;
-  result.f(static_cast<int>(index(from)), 0) = 1;
-  result.f(static_cast<int>(index(to)), 0) = -1;
-  result.n = 1;
-  result.needs = {from, to};
-  result.phases = phases;
-  return result;
-}
-
-const std::vector<Loops>& choices(Fault fault) {
-  using enum Conductor;
-  static const std::vector<Loops> earth{loop(L1, PE, "L1-PE"), loop(L2, PE, "L2-PE"), loop(L3, PE, "L3-PE")};
-  static const std::vector<Loops> neutral{loop(L1, N, "L1-N"), loop(L2, N, "L2-N"), loop(L3, N, "L3-N")};
-  static const std::vector<Loops> lines{loop(L1, L2, "L1-L2"), loop(L2, L3, "L2-L3"), loop(L3, L1, "L3-L1")};
-  static const std::vector<Loops> three = [] {
-    Loops all = loop(L1, L2, "L1-L2-L3");
-    all.f(1, 1) = 1;
-    all.f(2, 1) = -1;
-    all.n = 2;
-    all.needs.add(L3);
-    return std::vector<Loops>{all};
-  }();
-  switch (fault) {
-    case Fault::line_earth:
-      return earth;
-    case Fault::line_neutral:
-      return neutral;
-    case Fault::line_line:
-      return lines;
-    case Fault::three_phase:
-      break;
-  }
-  return three;
-}
-
-struct Solved {
-  double amps = 0;
-  Complex loop;  // the impedance that the driving voltage meets
-};
-
-// e: open-circuit voltages of the lines, scaled so that the loop is driven by `volts`.
-Solved solve(const Loops& loops, const ConductorMatrix& z, double volts, bool most) {
-  if (loops.n == 1) {
-    const Eigen::Matrix<double, 5, 1> f = loops.f.col(0);
-    const Complex loop = (f.transpose() * z * f)(0, 0);
-    return {volts / std::abs(loop), loop};
-  }
-  const Eigen::Matrix2cd loop = loops.f.transpose() * z * loops.f;
-  Eigen::Matrix<Complex, 5, 1> e = Eigen::Matrix<Complex, 5, 1>::Zero();
-  const double third = 2.0 * std::numbers::pi / 3.0;
-  for (int line = 0; line < 3; ++line) e(line) = std::polar(volts, -third * line);
-  const Eigen::Vector2cd j = loop.inverse() * (loops.f.transpose() * e);
-  const Eigen::Matrix<Complex, 5, 1> i = loops.f * j;
-  const std::array<double, 3> amps{std::abs(i(0)), std::abs(i(1)), std::abs(i(2))};
-  return {most ? *std::max_element(amps.begin(), amps.end()) : *std::min_element(amps.begin(), amps.end()),
-          loop(0, 0) / 2.0};
-}
-
 ConductorMatrix with_source(ConductorMatrix z, Complex source) {
   z(0, 0) += source;
   z(1, 1) += source;
@@ -94,7 +29,7 @@ ConductorMatrix with_source(ConductorMatrix z, Complex source) {
   return z;
 }
 
-double ratio(Complex z) { return z.real() > 0 ? z.imag() / z.real() : std::numeric_limits<double>::infinity(); }
+double ratio(Complex z) { return z.real() > 0 ? z.imag() / z.real() + 0.0 : std::numeric_limits<double>::infinity(); }
 
 // Angle of the source at which |Z_source + rest| is greatest: that of the rest, inside the range.
 double blinding_angle(const SourceTerm& term, Complex rest) {
@@ -112,8 +47,11 @@ FaultCurrent fault_current(const Network& network, const Source& source, const C
                            Condition condition, Fault fault) {
   FaultCurrent result;
   const bool most = condition == Condition::maximum;
-  const std::vector<Loops>& all = choices(fault);
-  result.possible = std::any_of(all.begin(), all.end(), [&](const Loops& l) { return have.contains(l.needs); });
+  const std::vector<FaultLoops>& all = fault_choices(fault);
+  auto solve = [&](const FaultLoops& loops, const ConductorMatrix& z, double volts, bool greatest) {
+    return solve_loops(loops, z, volts, 0.0, false, greatest);
+  };
+  result.possible = std::any_of(all.begin(), all.end(), [&](const FaultLoops& l) { return have.contains(l.needs); });
   if (!result.possible) return result;
   const SourceTerm term = source_term(network, source, condition, fault);
   result.known = term.known;
@@ -122,12 +60,12 @@ FaultCurrent fault_current(const Network& network, const Source& source, const C
   result.volts = driving_voltage(network.rules, source, condition, fault);
   const ConductorMatrix rest = net + term.fixed;
   bool first = true;
-  for (const Loops& loops : all) {
+  for (const FaultLoops& loops : all) {
     if (!have.contains(loops.needs)) continue;
     std::array<double, 2> angles{term.angle_low, term.angle_high};
     if (!most) angles[0] = angles[1] = blinding_angle(term, solve(loops, rest, result.volts, most).loop);
     for (const double angle : angles) {
-      const Solved solved = solve(loops, with_source(rest, std::polar(term.ohms, angle)), result.volts, most);
+      const LoopCurrents solved = solve(loops, with_source(rest, std::polar(term.ohms, angle)), result.volts, most);
       // Equal choices: the first in the order of lines, and of its two angles the inductive one, whose
       // X/R belongs to the peak.
       constexpr double kEqual = 1e-9;
@@ -180,7 +118,7 @@ Walk walk(const Network& network, const StateTree& tree, Condition condition) {
 ConductorMatrix circuit_matrix(const Network& network, const Circuit& circuit, CircuitEnd end,
                                Condition condition) noexcept {
   const ConductorMatrix whole = run_matrix(network, circuit.cable, circuit.length.value,
-                                           circuit.ring ? 1 : circuit.in_parallel, false, condition);
+                                           circuit.ring ? 1 : circuit.in_parallel, circuit.pen, condition);
   if (!circuit.ring) return whole * end.fraction;
   ConductorMatrix z = whole * (end.fraction * (1.0 - end.fraction));
   if (end.spur >= 0) {
@@ -210,21 +148,53 @@ CircuitEnd worst_end(const Network& network, const Circuit& circuit) noexcept {
 
 namespace {
 
+void put(const FaultCurrent& current, FaultRow& row) {
+  row.phases = current.phases;
+  row.known = current.known;
+  row.needs = current.needs;
+  row.current = current.known ? current.amps : kNone;
+  row.peak = current.known ? current.peak : kNone;
+  row.x_over_r = current.known ? current.x_over_r : kNone;
+  row.loop_ohms = current.known ? current.ohms : kNone;
+  row.driving_volts = current.volts;
+}
+
 void add_rows(const Network& network, const Source& source, const ConductorMatrix& net, ConductorSet have,
               Condition condition, FaultRow row, std::vector<FaultRow>& rows) {
   for (const Fault fault : kAllFaults) {
     const FaultCurrent current = fault_current(network, source, net, have, condition, fault);
     if (!current.possible) continue;
     row.fault = fault;
-    row.phases = current.phases;
-    row.known = current.known;
-    row.needs = current.needs;
-    row.current = current.known ? current.amps : kNone;
-    row.peak = current.known ? current.peak : kNone;
-    row.x_over_r = current.known ? current.x_over_r : kNone;
-    row.loop_ohms = current.known ? current.ohms : kNone;
-    row.driving_volts = current.volts;
+    put(current, row);
     rows.push_back(row);
+  }
+}
+
+// Every board and circuit end of a state that is solved as a grid.
+void add_grid_rows(const Network& network, const StateGrid& grid, const StateTree& tree, Condition condition,
+                   std::vector<FaultRow>& rows) {
+  FaultRow row;
+  row.state = network.states[static_cast<std::size_t>(tree.state)].name;
+  row.condition = condition;
+  auto add = [&](const std::string& node, const GridPlace& place) {
+    row.node = node;
+    for (const Fault fault : kAllFaults) {
+      const FaultCurrent current = grid.current(place, fault);
+      if (!current.possible) continue;
+      row.fault = fault;
+      put(current, row);
+      rows.push_back(row);
+    }
+  };
+  for (std::size_t b = 0; b < network.boards.size(); ++b)
+    if (tree.live(static_cast<int>(b))) add(network.boards[b].name, grid.at_board(static_cast<int>(b)));
+  for (std::size_t c = 0; c < network.circuits.size(); ++c) {
+    const Circuit& circuit = network.circuits[c];
+    if (!tree.live(circuit.board)) continue;
+    const std::string node = models::address(network, circuit);
+    add(node, grid.at_circuit(static_cast<int>(c), worst_end(network, circuit)));
+    for (int spur = 0; spur < static_cast<int>(circuit.spurs.size()); ++spur)
+      add(fmt::format("{}/spur{}", node, spur + 1), grid.at_circuit(static_cast<int>(c), spur_end(circuit, spur)));
   }
 }
 
@@ -234,6 +204,11 @@ std::vector<FaultRow> solve_faults(const Network& network) {
   std::vector<FaultRow> rows;
   for (std::size_t s = 0; s < network.states.size(); ++s) {
     const StateTree tree = state_tree(network, static_cast<int>(s));
+    if (tree.grid) {
+      for (const Condition condition : {Condition::maximum, Condition::minimum})
+        add_grid_rows(network, StateGrid(network, tree, condition), tree, condition, rows);
+      continue;
+    }
     for (const Condition condition : {Condition::maximum, Condition::minimum}) {
       const Walk reached = walk(network, tree, condition);
       FaultRow row;

@@ -12,6 +12,10 @@ using models::Strand;
 
 double strand_degc(const Network& network, const Cable& cable, const Strand& strand, Condition condition) noexcept {
   if (condition == Condition::maximum) return 20.0;
+  // IEC 60909 takes the least currents at the temperature at the end of the fault.
+  if (network.method == models::Method::iec60909)
+    if (const models::AdiabaticRow* k = models::adiabatic(network.rules, strand, cable.insulation); k != nullptr)
+      return k->final_degc;
   const bool hot_insulation = cable.max_degc > 80.0;
   switch (strand.place) {
     case Place::core:
@@ -33,7 +37,8 @@ Complex strand_impedance(const Network& network, const Cable& cable, const Stran
   const double alpha = models::alpha20(network.rules, strand.material);
   const bool magnetic = strand.place == Place::armour && condition == Condition::minimum;
   const double factor = magnetic ? network.rules.armour_factor : 1.0;
-  return {strand.r20 * (1.0 + alpha * (theta - 20.0)) * factor, strand.x};
+  constexpr double kCableHz = 50;  // at which reactances of cables are stated
+  return {strand.r20 * (1.0 + alpha * (theta - 20.0)) * factor, strand.x * (network.frequency / kCableHz)};
 }
 
 Complex protective_impedance(const Network& network, const Cable& cable, Condition condition) noexcept {

@@ -20,7 +20,7 @@ using ConductorMatrix = Eigen::Matrix<Complex, 5, 5>;
 
 /// Temperature a strand is taken at [degC]: 20 in the maximum; in the minimum by its place: the
 /// insulation limit inside a cable, the rule set's armour or conduit temperature, ambient for a
-/// conductor run separately.
+/// conductor run separately; by IEC 60909 the final temperature of its k.
 /// Source: design rule of the conditions; armour temperatures with the rule set's data.
 [[nodiscard]] double strand_degc(const models::Network& network, const models::Cable& cable,
                                  const models::Strand& strand, Condition condition) noexcept;

@@ -146,19 +146,44 @@ Loading load_network(const Network& network, const StateTree& tree) {
           f < 0 ? "demand of board " + network.boards[at(*b)].name : "demand of " + network.submains[at(f)].name;
     }
     loading.demand[at(*b)] = here.demand();
+    if (f < 0 && tree.grid && tree.above[at(*b)] >= 0) {
+      const int above = tree.above[at(*b)];
+      Demand passed = loading.demand[at(*b)];
+      if (tree.transformer[at(*b)] >= 0) {
+        const models::Transformer& t = network.transformers[at(tree.transformer[at(*b)])];
+        passed = declared_or(t.demand, t.pf, passed);
+        const double ratio = t.secondary / t.primary;
+        passed.amps *= ratio;
+        for (double& amps : passed.lines) amps *= ratio;
+      }
+      lines[at(above)].add({models::Conductor::L1, models::Conductor::L2, models::Conductor::L3}, passed);
+      ++ways[at(above)];
+    }
     if (f < 0) continue;
     const models::Submain& submain = network.submains[at(f)];
     Demand& demand = loading.submain[at(f)];
     demand = declared_or(submain.demand, submain.pf, loading.demand[at(*b)]);
-    lines[at(submain.from)].add(submain.conductors, demand);
-    ++ways[at(submain.from)];
+    const int feeding = submain.to == *b ? submain.from : submain.to;
+    lines[at(feeding)].add(submain.conductors, demand);
+    ++ways[at(feeding)];
   }
   for (const int b : tree.order) {
     Drop& drop = loading.drop[at(b)];
-    const Source& source = network.sources[at(tree.source_of[at(b)])];
+    const Source& source = system_of(network, tree, b);
     const int f = tree.feeder[at(b)];
+    if (f < 0 && tree.grid && tree.transformer[at(b)] < 0 && !tree.sole[at(b)]) {
+      if (tree.link[at(b)] >= 0) {
+        drop = loading.drop[at(tree.above[at(b)])];
+      } else {
+        // Loops and sources side by side share a load as no sum along a path can tell.
+        drop = {0, false, "load flow to board " + network.boards[at(b)].name + ", which several ways feed", 0};
+      }
+      continue;
+    }
     if (f < 0) {
-      Demand& demand = loading.source[at(tree.source_of[at(b)])];
+      Demand of_transformer;
+      const bool inside = tree.grid && tree.transformer[at(b)] >= 0;
+      Demand& demand = inside ? of_transformer : loading.source[at(tree.source_of[at(b)])];
       demand = declared_or(source.demand, source.pf, loading.demand[at(b)]);
       if (!source.tails.present && !source.transformer) continue;
       if (!demand.known) {
@@ -181,7 +206,11 @@ Loading load_network(const Network& network, const StateTree& tree) {
       continue;
     }
     const models::Submain& submain = network.submains[at(f)];
-    drop = loading.drop[at(submain.from)];
+    drop = loading.drop[at(submain.to == b ? submain.from : submain.to)];
+    if (submain.sequence.given) {
+      drop = {0, false, "voltage drop of " + submain.name + ", which is given by sequence impedances", 0};
+      continue;
+    }
     const Demand& demand = loading.submain[at(f)];
     if (!demand.known && drop.known) {
       drop.known = false;

@@ -13,6 +13,8 @@ const char* word(Fault fault) noexcept {
       return "line-line";
     case Fault::line_neutral:
       return "line-neutral";
+    case Fault::two_lines_earth:
+      return "two lines and earth";
     case Fault::line_earth:
       break;
   }

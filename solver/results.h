@@ -18,7 +18,8 @@ namespace sunder::solver {
 inline constexpr double kNone = std::numeric_limits<double>::quiet_NaN();  ///< "no such value"
 
 enum class Condition { maximum, minimum };
-enum class Fault { three_phase, line_line, line_neutral, line_earth };
+/// Two lines and earth is computed where it is asked for, not judged.
+enum class Fault { three_phase, line_line, line_neutral, line_earth, two_lines_earth };
 enum class Verdict { meets, fails, undecided, noted };
 
 inline constexpr std::initializer_list<Fault> kAllFaults{Fault::three_phase, Fault::line_line, Fault::line_neutral,

@@ -2,6 +2,7 @@
 #include "solver/situation.h"
 
 #include <algorithm>
+#include <cmath>
 
 namespace sunder::solver {
 namespace {
@@ -17,6 +18,65 @@ Currents currents(const Network& network, const models::Source& source, const Co
   for (const Fault fault : kAllFaults)
     all[static_cast<std::size_t>(fault)] = fault_current(network, source, net, have, condition, fault);
   return all;
+}
+
+// The second fault of an IT system by the rule's own form: I = c U / (2 Zs), and c U0 / (2 Z's) where the
+// neutral is distributed; the lesser of them in the minimum.
+FaultCurrent second_fault(const StateSolution& solution, const models::Source& source, const GridPlace& place,
+                          Condition condition) {
+  const StateGrid& joined = condition == Condition::maximum ? *solution.joined_maximum : *solution.joined_minimum;
+  FaultCurrent current = joined.current(place, Fault::line_earth);
+  if (!current.usable()) return current;
+  const double c = current.volts / source.U0;
+  auto set = [&](double volts, double ohms) {
+    current.volts = volts;
+    current.ohms = 2 * ohms;
+    current.loop *= current.ohms / std::abs(current.loop);
+    current.amps = volts / current.ohms;
+  };
+  const double kappa = current.peak / (std::sqrt(2.0) * current.amps);
+  set(c * source.U, current.ohms);
+  if (place.have.has(Conductor::N) && condition == Condition::minimum) {
+    const double neutral = joined.loop_ohms(place, Conductor::N, Conductor::PE);
+    if (c * source.U0 / (2 * neutral) < current.amps) set(c * source.U0, neutral);
+  }
+  current.peak = kappa * std::sqrt(2.0) * current.amps;
+  return current;
+}
+
+// Currents at a board and on a run beyond it.
+Currents currents_from(const Network& network, const StateSolution& solution, const models::Source& source, int board,
+                       const ConductorMatrix& beyond, models::ConductorSet have, Condition condition) {
+  if (!solution.tree.grid) {
+    const Walk& walk = condition == Condition::maximum ? solution.maximum : solution.minimum;
+    return currents(network, source, walk.boards[at(board)] + beyond, have, condition);
+  }
+  const StateGrid& grid = solution.grid(condition);
+  GridPlace place = grid.at_board(board);
+  place.beyond = beyond;
+  place.have = have;
+  Currents all;
+  for (const Fault fault : kAllFaults) all[static_cast<std::size_t>(fault)] = grid.current(place, fault);
+  if (source.earthing == models::Earthing::IT && solution.joined != nullptr)
+    all[static_cast<std::size_t>(Fault::line_earth)] = second_fault(solution, source, place, condition);
+  return all;
+}
+
+// Inside one of several parallel cables a fault is fed from both of its ends: from the feeding end on, x of
+// the way, Z = n x (1 - x/m) of what all together have.
+void fill_inner(Situation& s, const StateSolution& solution, int board, const ConductorMatrix& together) {
+  const double n = s.in_parallel;
+  const double m = n / (n - 1);
+  constexpr int kPlaces = 12;
+  for (int i = 0; i <= kPlaces; ++i) {
+    InnerFault inner;
+    inner.fraction = std::min(1.0, m / 2 * i / kPlaces);
+    inner.share = 1 - inner.fraction / m;
+    inner.least = currents_from(*s.network, solution, *s.source, board, together * (n * inner.fraction * inner.share),
+                                s.conductors, Condition::minimum);
+    s.inner.push_back(std::move(inner));
+  }
+  s.far_min = s.inner.back().least;
 }
 
 // Conductors that both the board and the run have.
@@ -43,11 +103,13 @@ void fill_circuit(Situation& s, const StateSolution& solution, int index) {
   s.path = path_to_circuit(network, solution.tree, index);
   const std::size_t board = at(circuit.board);
   s.conductors = carried(solution.tree.conductors[board], circuit.conductors);
-  s.far_min = currents(network, *s.source,
-                       solution.minimum.boards[board] +
-                           circuit_matrix(network, circuit, worst_end(network, circuit), Condition::minimum),
-                       s.conductors, Condition::minimum);
-  s.origin_max = currents(network, *s.source, solution.maximum.boards[board], s.conductors, Condition::maximum);
+  s.far_min = currents_from(network, solution, *s.source, circuit.board,
+                            circuit_matrix(network, circuit, worst_end(network, circuit), Condition::minimum),
+                            s.conductors, Condition::minimum);
+  s.origin_max = currents_from(network, solution, *s.source, circuit.board, ConductorMatrix::Zero(), s.conductors,
+                               Condition::maximum);
+  if (circuit.in_parallel > 1 && !circuit.ring)
+    fill_inner(s, solution, circuit.board, circuit_matrix(network, circuit, {}, Condition::minimum));
   const Drop own = circuit_drop(network, circuit, *s.source);
   s.drop = solution.loading.drop[board];
   s.drop.share += own.share;
@@ -65,18 +127,25 @@ void fill_submain(Situation& s, const StateSolution& solution, int index) {
   s.address = submain.name;
   s.at = submain.at;
   s.device = &submain.device;
-  s.cable = &submain.cable;
+  if (!submain.sequence.given) s.cable = &submain.cable;
   s.length = submain.length.value;
   s.in_parallel = submain.in_parallel;
   s.use = models::Use::distribution;
   s.board_index = submain.from;
+  s.looped = solution.tree.grid && solution.tree.looped[at(index)];
   s.path = path_to_submain(network, solution.tree, index);
-  s.conductors = carried(solution.tree.conductors[at(submain.from)], submain.conductors);
-  s.far_min = currents(network, *s.source, solution.minimum.boards[at(submain.to)],
-                       solution.tree.conductors[at(submain.to)], Condition::minimum);
+  models::ConductorSet own = submain.conductors;
+  if (submain.pen) own.add(Conductor::PE);
+  s.conductors = carried(solution.tree.conductors[at(submain.from)], own);
+  const ConductorMatrix none = ConductorMatrix::Zero();
+  s.far_min = currents_from(network, solution, *s.source, submain.to, none, solution.tree.conductors[at(submain.to)],
+                            Condition::minimum);
   if (!s.conductors.has(Conductor::PE)) s.far_min[static_cast<std::size_t>(Fault::line_earth)] = {};
-  s.origin_max =
-      currents(network, *s.source, solution.maximum.boards[at(submain.from)], s.conductors, Condition::maximum);
+  s.origin_max = currents_from(network, solution, *s.source, submain.from, none, s.conductors, Condition::maximum);
+  if (submain.in_parallel > 1 && !submain.sequence.given && !s.looped)
+    fill_inner(
+        s, solution, submain.from,
+        run_matrix(network, submain.cable, submain.length.value, submain.in_parallel, submain.pen, Condition::minimum));
   s.drop = solution.loading.drop[at(submain.to)];
 }
 
@@ -94,8 +163,13 @@ void fill_tails(Situation& s, const StateSolution& solution, int index) {
   // A TT installation's protective conductor starts at its electrode, beyond the tails.
   if (source.earthing == models::Earthing::TT) s.conductors.remove(Conductor::PE);
   if (source.device.present()) s.path.push_back({&source.device, source.name, source.at, -1});
-  s.far_min = currents(network, source, solution.minimum.boards[at(source.board)], s.conductors, Condition::minimum);
-  s.origin_max = currents(network, source, ConductorMatrix::Zero(), s.conductors, Condition::maximum);
+  s.looped = solution.tree.grid && !solution.tree.sole[at(source.board)];
+  const ConductorMatrix none = ConductorMatrix::Zero();
+  s.far_min = currents_from(network, solution, source, source.board, none, s.conductors, Condition::minimum);
+  // In a grid the current at the board stands for the one before the tails.
+  s.origin_max = solution.tree.grid
+                     ? currents_from(network, solution, source, source.board, none, s.conductors, Condition::maximum)
+                     : currents(network, source, none, s.conductors, Condition::maximum);
   s.drop = solution.loading.drop[at(source.board)];
 }
 
@@ -108,9 +182,29 @@ void fill_board(Situation& s, const StateSolution& solution, int index) {
   s.device = &board.incomer;
   s.conductors = solution.tree.conductors[at(index)];
   s.path = path_to_board(network, solution.tree, index);
-  s.origin_max = currents(network, *s.source, solution.maximum.boards[at(index)], s.conductors, Condition::maximum);
-  s.far_min = currents(network, *s.source, solution.minimum.boards[at(index)], s.conductors, Condition::minimum);
+  const ConductorMatrix none = ConductorMatrix::Zero();
+  s.origin_max = currents_from(network, solution, *s.source, index, none, s.conductors, Condition::maximum);
+  s.far_min = currents_from(network, solution, *s.source, index, none, s.conductors, Condition::minimum);
   s.drop = solution.loading.drop[at(index)];
+}
+
+// For the second fault of an IT system: its star points joined to the protective conductors.
+void join_isolated(const Network& network, int state, StateSolution& solution) {
+  auto isolated = [](const auto& of) { return of.earthing == models::Earthing::IT; };
+  const bool any = std::any_of(network.sources.begin(), network.sources.end(), isolated) ||
+                   std::any_of(network.transformers.begin(), network.transformers.end(), isolated);
+  if (!any) return;
+  solution.joined = std::make_unique<Network>(network);
+  auto join = [&](auto& of) {
+    if (!isolated(of)) return;
+    of.earthing = models::Earthing::TN_C_S;
+    of.star = {};
+  };
+  for (models::Source& source : solution.joined->sources) join(source);
+  for (models::Transformer& transformer : solution.joined->transformers) join(transformer);
+  const StateTree tree = state_tree(*solution.joined, state, true);
+  solution.joined_maximum = std::make_unique<StateGrid>(*solution.joined, tree, Condition::maximum);
+  solution.joined_minimum = std::make_unique<StateGrid>(*solution.joined, tree, Condition::minimum);
 }
 
 template <class Better>
@@ -134,8 +228,14 @@ bool has_origin(const models::Source& source) { return source.tails.present || s
 StateSolution solve_state(const Network& network, int state) {
   StateSolution solution;
   solution.tree = state_tree(network, state);
-  solution.maximum = walk(network, solution.tree, Condition::maximum);
-  solution.minimum = walk(network, solution.tree, Condition::minimum);
+  if (solution.tree.grid) {
+    solution.grid_maximum = std::make_unique<StateGrid>(network, solution.tree, Condition::maximum);
+    solution.grid_minimum = std::make_unique<StateGrid>(network, solution.tree, Condition::minimum);
+    join_isolated(network, state, solution);
+  } else {
+    solution.maximum = walk(network, solution.tree, Condition::maximum);
+    solution.minimum = walk(network, solution.tree, Condition::minimum);
+  }
   solution.loading = load_network(network, solution.tree);
   return solution;
 }
@@ -146,8 +246,13 @@ bool is_live(const Network& network, const StateSolution& solution, Subject subj
     case SubjectKind::circuit:
       return solution.tree.live(network.circuits[index].board);
     // Live and feeding: a submain whose far board has a source of its own in this state is open.
-    case SubjectKind::submain:
-      return solution.tree.feeder[at(network.submains[index].to)] == subject.index;
+    case SubjectKind::submain: {
+      const models::Submain& submain = network.submains[index];
+      if (!solution.tree.grid) return solution.tree.feeder[at(submain.to)] == subject.index;
+      const std::vector<bool>& open = network.states[at(solution.tree.state)].submain_open;
+      const bool closed = index >= open.size() || !open[index];
+      return closed && solution.tree.live(submain.from) && solution.tree.live(submain.to);
+    }
     case SubjectKind::board:
       return solution.tree.live(subject.index);
     case SubjectKind::tails:
@@ -186,6 +291,11 @@ Situation situation(const Network& network, const StateSolution& solution, Subje
     source = solution.tree.source_of[at(subject.index)];
   }
   s.source = &network.sources[at(source)];
+  const int seen_from = subject.kind == SubjectKind::circuit   ? network.circuits[at(subject.index)].board
+                        : subject.kind == SubjectKind::submain ? network.submains[at(subject.index)].from
+                        : subject.kind == SubjectKind::board   ? subject.index
+                                                               : -1;
+  if (seen_from >= 0) s.source = &system_of(network, solution.tree, seen_from);
   s.motors = solution.loading.motors[at(source)];
   s.motors_unknown = solution.loading.motors_unknown[at(source)];
   switch (subject.kind) {
@@ -222,6 +332,9 @@ constexpr double kSameNominal = 1.045;
 TimeLimit time_limit(const Situation& s) {
   const models::RuleSet& rules = s.network->rules;
   const bool tt = s.source->earthing == models::Earthing::TT;
+  // The second fault of an IT system is cleared in the times of a TN one (411.6.4).
+  const bool as_tn = s.source->earthing == models::Earthing::IT || s.source->earthing == models::Earthing::TN_C;
+  const models::Earthing as_listed = as_tn ? models::Earthing::TN_S : s.source->earthing;
   TimeLimit limit;
   limit.assumed_use = s.kind == SubjectKind::circuit && s.use == models::Use::unknown;
   // A switch or residual device without overcurrent release does not rate a circuit.
@@ -234,7 +347,7 @@ TimeLimit time_limit(const Situation& s) {
   limit.seconds = tt ? rules.distribution_tt : rules.distribution_tn;
   if (!final_circuit) return limit;
   for (const models::TimeRow& row : rules.times)
-    if (row.earthing == s.source->earthing && s.source->U0 <= row.U0_to * kSameNominal) {
+    if (row.earthing == as_listed && s.source->U0 <= row.U0_to * kSameNominal) {
       limit.seconds = row.final_circuit;
       break;
     }

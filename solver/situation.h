@@ -4,6 +4,7 @@
 #pragma once
 
 #include <array>
+#include <memory>
 #include <string>
 #include <vector>
 
@@ -12,6 +13,7 @@
 #include "solver/faults.h"
 #include "solver/loading.h"
 #include "solver/results.h"
+#include "solver/state_grid.h"
 
 namespace sunder::solver {
 
@@ -29,6 +31,13 @@ using Currents = std::array<FaultCurrent, 4>;
 [[nodiscard]] inline const FaultCurrent& of(const Currents& currents, Fault fault) {
   return currents[static_cast<std::size_t>(fault)];
 }
+
+/// A fault inside one of n parallel cables, x of the way along it, 0..m/2 with m = n/(n-1).
+struct InnerFault {
+  double fraction = 0;
+  double share = 1;  ///< of the current that the near part of that cable carries: 1 - x/m
+  Currents least;    ///< minimum condition
+};
 
 /// The solved surroundings of a subject. Pointers are null where the subject has no such part.
 struct Situation {
@@ -50,21 +59,33 @@ struct Situation {
   double length = 0;
   int in_parallel = 1;
   bool ring = false;
+  bool looped = false;              ///< in a loop or between sources: its device carries a part of the current
   models::ConductorSet conductors;  ///< that reach its far end
   models::Use use = models::Use::unknown;
-  std::vector<Protector> path;  ///< source first
-  Currents origin_max;          ///< at the line side of its device, maximum
-  Currents far_min;             ///< at its far end (ring: worst place), minimum
-  Drop drop;                    ///< at its far end, from the supply terminals
-  double motors = 0;            ///< rated current of all motors in this part of the network [A]
-  std::string motors_unknown;   ///< a motor there whose current is not given, "" if none
+  std::vector<Protector> path;    ///< source first
+  Currents origin_max;            ///< at the line side of its device, maximum
+  Currents far_min;               ///< at its far end (ring: worst place), minimum
+  std::vector<InnerFault> inner;  ///< of parallel cables, from the device on; far_min is then the worst place
+  Drop drop;                      ///< at its far end, from the supply terminals
+  double motors = 0;              ///< rated current of all motors in this part of the network [A]
+  std::string motors_unknown;     ///< a motor there whose current is not given, "" if none
 };
 
 /// What is solved once per state and shared by every subject in it.
 struct StateSolution {
   StateTree tree;
-  Walk maximum, minimum;
+  Walk maximum, minimum;                                  ///< where the state is a forest of cables on declared sources
+  std::unique_ptr<StateGrid> grid_maximum, grid_minimum;  ///< otherwise
+  /// IT: the same network with the star points joined to the protective conductors, whose loops the rule for the
+  /// second fault asks for.
+  std::unique_ptr<models::Network> joined;
+  std::unique_ptr<StateGrid> joined_maximum, joined_minimum;
   Loading loading;
+
+  /// Precondition: tree.grid.
+  [[nodiscard]] const StateGrid& grid(Condition condition) const {
+    return condition == Condition::maximum ? *grid_maximum : *grid_minimum;
+  }
 };
 
 [[nodiscard]] StateSolution solve_state(const models::Network& network, int state);

@@ -3,9 +3,11 @@
 
 #include <fmt/format.h>
 
+#include <algorithm>
 #include <boost/graph/adjacency_list.hpp>
-#include <boost/graph/breadth_first_search.hpp>
-#include <boost/graph/connected_components.hpp>
+#include <boost/graph/biconnected_components.hpp>
+#include <cmath>
+#include <map>
 
 #include "solver/study.h"
 
@@ -18,114 +20,14 @@ using models::Network;
 using models::Source;
 using models::Submain;
 
-using Undirected = boost::adjacency_list<boost::vecS, boost::vecS, boost::undirectedS>;
-using Directed = boost::adjacency_list<boost::vecS, boost::vecS, boost::directedS>;
+using Graph = boost::adjacency_list<boost::vecS, boost::vecS, boost::undirectedS, boost::no_property,
+                                    boost::property<boost::edge_index_t, std::size_t>>;
 
 std::size_t at(int handle) { return static_cast<std::size_t>(handle); }
 
-// Boards that a source reaches by following submains from their feeding end.
-std::vector<bool> reached(const Network& network) {
-  const std::size_t n = network.boards.size();
-  Directed graph(n + 1);  // vertex n stands for "a source"
-  for (const Source& source : network.sources) boost::add_edge(n, at(source.board), graph);
-  for (const Submain& submain : network.submains) boost::add_edge(at(submain.from), at(submain.to), graph);
-  std::vector<boost::default_color_type> colours(n + 1, boost::white_color);
-  boost::breadth_first_search(
-      graph, n,
-      boost::color_map(boost::make_iterator_property_map(colours.begin(), boost::get(boost::vertex_index, graph))));
-  std::vector<bool> result(n);
-  for (std::size_t i = 0; i < n; ++i) result[i] = colours[i] != boost::white_color;
-  return result;
-}
-
-// A second feed of one board, or a submain that closes a ring among boards: both need the meshed
-// solver. Submains form a forest exactly if no board has two feeders and none is its own ancestor.
-void find_loops(const Network& network, std::vector<Trouble>& troubles) {
-  std::vector<int> first(network.boards.size(), -1);
-  for (std::size_t s = 0; s < network.submains.size(); ++s) {
-    const Submain& submain = network.submains[s];
-    int& feeder = first[at(submain.to)];
-    if (feeder >= 0) {
-      troubles.push_back(
-          {fmt::format("board '{}' is fed by submains '{}' and '{}': a loop between boards is "
-                       "solved in a later edition",
-                       network.boards[at(submain.to)].name, network.submains[at(feeder)].name, submain.name),
-           submain.at, "the first feed", network.submains[at(feeder)].at});
-    } else {
-      feeder = static_cast<int>(s);
-    }
-  }
-  if (!troubles.empty()) return;
-  Undirected graph(network.boards.size());
-  for (const Submain& submain : network.submains) boost::add_edge(at(submain.from), at(submain.to), graph);
-  std::vector<int> component(network.boards.size());
-  const int n_components = network.boards.empty() ? 0 : boost::connected_components(graph, component.data());
-  // In a forest, boards - submains = components.
-  if (static_cast<int>(network.boards.size()) - static_cast<int>(network.submains.size()) == n_components) return;
-  for (const Submain& submain : network.submains) {
-    int board = submain.from;
-    for (std::size_t hops = 0; board >= 0 && hops <= network.boards.size(); ++hops) {
-      if (board == submain.to) {
-        troubles.push_back({fmt::format("submain '{}' closes a loop of boards: a loop between boards is solved in "
-                                        "a later edition",
-                                        submain.name),
-                            submain.at,
-                            "",
-                            {}});
-        return;
-      }
-      const int feeder = first[at(board)];
-      board = feeder < 0 ? -1 : network.submains[at(feeder)].from;
-    }
-  }
-}
-
-std::vector<int> feeders(const Network& network) {
-  std::vector<int> result(network.boards.size(), -1);
-  for (std::size_t s = 0; s < network.submains.size(); ++s) result[at(network.submains[s].to)] = static_cast<int>(s);
-  return result;
-}
-
-// Two sources that meet in one state: at one board, or above one another.
-void find_parallel_sources(const Network& network, std::vector<Trouble>& troubles) {
-  const std::vector<int> feeder = feeders(network);
-  for (const models::SupplyState& state : network.states) {
-    std::vector<int> source_on(network.boards.size(), -1);
-    for (const int s : state.sources) {
-      const Source& source = network.sources[at(s)];
-      int& other = source_on[at(source.board)];
-      if (other >= 0) {
-        troubles.push_back({fmt::format("state '{}' puts sources '{}' and '{}' on board '{}' together: sources in "
-                                        "parallel are solved in a later edition",
-                                        state.name, network.sources[at(other)].name, source.name,
-                                        network.boards[at(source.board)].name),
-                            state.at,
-                            "",
-                            {}});
-        return;
-      }
-      other = s;
-    }
-    for (const int s : state.sources) {
-      int board = network.sources[at(s)].board;
-      for (int f = feeder[at(board)]; f >= 0; f = feeder[at(board)]) {
-        board = network.submains[at(f)].from;
-        if (source_on[at(board)] < 0) continue;
-        troubles.push_back(
-            {fmt::format("state '{}' has source '{}' feed a board that source '{}' feeds already: "
-                         "sources in parallel are solved in a later edition",
-                         state.name, network.sources[at(s)].name, network.sources[at(source_on[at(board)])].name),
-             state.at,
-             "",
-             {}});
-        return;
-      }
-    }
-  }
-}
-
 ConductorSet supplied(const Source& source) {
   ConductorSet set = source.lines;
+  if (source.high_voltage) return set;
   set.add(Conductor::N);
   // In a TT supply the protective conductor starts at the installation's own electrode.
   if (source.earthing != models::Earthing::TT) set.add(Conductor::PE);
@@ -139,51 +41,129 @@ ConductorSet both(ConductorSet a, ConductorSet b) {
   return result;
 }
 
+// What joins two boards.
+struct Edge {
+  enum class Kind { submain, transformer, link };
+  Kind kind = Kind::submain;
+  int index = 0;
+  int from = -1, to = -1;
+};
+
+bool open_in(const std::vector<bool>& open, std::size_t i) { return i < open.size() && open[i]; }
+
+// Everything that is closed in a state.
+std::vector<Edge> closed_edges(const Network& network, const models::SupplyState& state) {
+  std::vector<Edge> edges;
+  for (std::size_t i = 0; i < network.submains.size(); ++i)
+    if (!open_in(state.submain_open, i))
+      edges.push_back({Edge::Kind::submain, static_cast<int>(i), network.submains[i].from, network.submains[i].to});
+  for (std::size_t i = 0; i < network.transformers.size(); ++i)
+    if (!open_in(state.transformer_open, i))
+      edges.push_back(
+          {Edge::Kind::transformer, static_cast<int>(i), network.transformers[i].from, network.transformers[i].to});
+  for (std::size_t i = 0; i < network.links.size(); ++i) {
+    const bool closed = i < state.link_closed.size() ? state.link_closed[i] : network.links[i].closed;
+    if (closed) edges.push_back({Edge::Kind::link, static_cast<int>(i), network.links[i].from, network.links[i].to});
+  }
+  return edges;
+}
+
+// Boards that nothing else can feed are fed through whatever leaves them, against its direction.
+std::vector<bool> fed_from_below(const Network& network) {
+  std::vector<bool> orphan(network.boards.size(), true);
+  for (const Source& source : network.sources) orphan[at(source.board)] = false;
+  for (const Submain& submain : network.submains) orphan[at(submain.to)] = false;
+  for (const models::Transformer& transformer : network.transformers) orphan[at(transformer.to)] = false;
+  for (const models::Link& link : network.links) orphan[at(link.from)] = orphan[at(link.to)] = false;
+  return orphan;
+}
+
+// Live boards of a state, in the order in which they are reached: a submain or transformer feeds from
+// its `from` end, a link from either; one that leaves a dead board is open (an interlocked changeover).
+std::vector<int> reach(const Network& network, const std::vector<int>& sources, std::vector<Edge>& edges) {
+  const std::vector<bool> orphan = fed_from_below(network);
+  std::vector<std::vector<int>> at_board(network.boards.size());
+  for (std::size_t e = 0; e < edges.size(); ++e) {
+    at_board[at(edges[e].from)].push_back(static_cast<int>(e));
+    at_board[at(edges[e].to)].push_back(static_cast<int>(e));
+  }
+  std::vector<int> order;
+  std::vector<bool> live(network.boards.size());
+  auto enter = [&](int board) {
+    if (live[at(board)]) return;
+    live[at(board)] = true;
+    order.push_back(board);
+  };
+  for (const int s : sources) {
+    std::size_t next = order.size();
+    enter(network.sources[at(s)].board);
+    for (; next < order.size(); ++next)
+      for (const int e : at_board[at(order[next])]) {
+        const Edge& edge = edges[at(e)];
+        if (edge.from == order[next]) {
+          enter(edge.to);
+        } else if (edge.kind == Edge::Kind::link || (edge.kind == Edge::Kind::submain && orphan[at(edge.from)])) {
+          enter(edge.from);
+        }
+      }
+  }
+  edges.erase(
+      std::remove_if(edges.begin(), edges.end(), [&](const Edge& e) { return !live[at(e.from)] || !live[at(e.to)]; }),
+      edges.end());
+  return order;
+}
+
 void find_dead_boards(const Network& network, std::vector<Trouble>& troubles) {
-  const std::vector<bool> reach = reached(network);
+  std::vector<bool> fed(network.boards.size());
+  std::vector<bool> active(network.sources.size());
+  for (const models::SupplyState& state : network.states) {
+    std::vector<Edge> edges = closed_edges(network, state);
+    for (const int b : reach(network, state.sources, edges)) fed[at(b)] = true;
+    for (const int s : state.sources) active[at(s)] = true;
+  }
   for (std::size_t b = 0; b < network.boards.size(); ++b)
-    if (!reach[b])
+    if (!fed[b])
       troubles.push_back(
           {fmt::format("nobody feeds board '{}'", network.boards[b].name), network.boards[b].at, "", {}});
-  std::vector<bool> active(network.sources.size());
-  for (const models::SupplyState& state : network.states)
-    for (const int s : state.sources) active[at(s)] = true;
   for (std::size_t s = 0; s < network.sources.size(); ++s)
     if (!active[s])
       troubles.push_back(
           {fmt::format("source '{}' is in no state", network.sources[s].name), network.sources[s].at, "", {}});
 }
 
-// An electrode must be the only earth of the conductors it holds: two on one protective conductor,
-// or one below a TN supply whose protective conductor does not reach it, need the meshed solver.
-void find_electrode_conflicts(const Network& network, std::vector<Trouble>& troubles) {
+// Boards that cables or links join must be of one nominal voltage.
+void find_voltage_conflicts(const Network& network, std::vector<Trouble>& troubles) {
   for (std::size_t i = 0; i < network.states.size(); ++i) {
     const StateTree tree = state_tree(network, static_cast<int>(i));
-    for (const int b : tree.order) {
-      const int own = network.boards[at(b)].electrode;
-      if (own < 0) continue;
-      const models::Electrode& electrode = network.electrodes[at(own)];
-      const int f = tree.feeder[at(b)];
-      const bool fed_by_source = f < 0 || network.sources[at(tree.source_of[at(b)])].board == b;
-      const bool carried = !fed_by_source && network.submains[at(f)].conductors.has(Conductor::PE);
-      const models::Earthing earthing = network.sources[at(tree.source_of[at(b)])].earthing;
-      if (earthing == models::Earthing::TT) {
-        const int above = carried ? tree.electrode[at(network.submains[at(f)].from)] : -1;
-        if (above >= 0)
-          troubles.push_back(
-              {fmt::format("electrodes '{}' and '{}' hold one protective conductor (submain '{}' joins "
-                           "them): several earths in parallel are solved in a later edition",
-                           network.electrodes[at(above)].name, electrode.name, network.submains[at(f)].name),
-               electrode.at, "the other electrode", network.electrodes[at(above)].at});
-      } else if (!fed_by_source && !carried) {
-        troubles.push_back({fmt::format("board '{}' is earthed by electrode '{}' alone below a {} supply: a TT part of "
-                                        "a TN installation is solved in a later edition",
-                                        network.boards[at(b)].name, electrode.name, models::word(earthing)),
-                            electrode.at,
-                            "",
-                            {}});
+    if (!tree.grid) continue;
+    constexpr double kSame = 0.15;  // rated voltages of machines and no-load voltages lie within it
+    auto compare = [&](double U, double other, const std::string& what, const std::string& board,
+                       models::Origin where) {
+      if (std::abs(U / other - 1) <= kSame) return;
+      troubles.push_back(
+          {fmt::format("{} has {} but board '{}' has {} in state '{}'", what,
+                       models::format_quantity(U, models::Quantity::voltage), board,
+                       models::format_quantity(other, models::Quantity::voltage), network.states[i].name),
+           where,
+           "",
+           {}});
+    };
+    for (const Submain& submain : network.submains)
+      if (tree.live(submain.from) && tree.live(submain.to))
+        compare(system_of(network, tree, submain.from).U, system_of(network, tree, submain.to).U,
+                "submain '" + submain.name + "' at board '" + network.boards[at(submain.from)].name + "'",
+                network.boards[at(submain.to)].name, submain.at);
+    for (const int s : network.states[i].sources)
+      compare(network.sources[at(s)].U, system_of(network, tree, network.sources[at(s)].board).U,
+              "source '" + network.sources[at(s)].name + "'", network.boards[at(network.sources[at(s)].board)].name,
+              network.sources[at(s)].at);
+    for (const models::Transformer& t : network.transformers)
+      if (tree.live(t.from) && tree.live(t.to)) {
+        compare(t.primary, system_of(network, tree, t.from).U, "the primary of transformer '" + t.name + "'",
+                network.boards[at(t.from)].name, t.at);
+        compare(t.U, system_of(network, tree, t.to).U, "the secondary of transformer '" + t.name + "'",
+                network.boards[at(t.to)].name, t.at);
       }
-    }
     if (!troubles.empty()) return;
   }
 }
@@ -230,19 +210,82 @@ std::vector<std::vector<int>> circuits_on(const Network& network) {
   return result;
 }
 
-StateTree state_tree(const Network& network, int state) {
-  StateTree tree;
-  tree.state = state;
-  const std::size_t n = network.boards.size();
-  tree.source_of.assign(n, -1);
-  tree.feeder.assign(n, -1);
-  tree.electrode.assign(n, -1);
-  tree.conductors.assign(n, {});
-  tree.order.reserve(n);
-  const std::vector<std::vector<int>> leaving = submains_from(network);
-  for (const int s : network.states[at(state)].sources) {
+namespace {
+
+// The boards that a transformer feeds see it as their source.
+Source stand_in(const models::Transformer& t) {
+  Source source;
+  source.name = t.name;
+  source.at = t.at;
+  source.transformer = true;
+  source.board = t.to;
+  source.U0 = t.U0;
+  source.U = t.U;
+  source.high_voltage = t.U > 1000;
+  source.earthing = t.earthing;
+  source.own_transformer = t.own_transformer;
+  source.rating = t.rating;
+  source.uk = t.uk;
+  source.losses = t.losses;
+  source.x_over_r = t.x_over_r;
+  source.secondary = t.secondary;
+  source.star = t.star;
+  source.device = t.device;
+  source.tails = t.tails;
+  return source;
+}
+
+// Whether cables hung on declared sources are all there is: then paths add up and nothing need be solved.
+bool needs_grid(const Network& network, const StateTree& tree, const std::vector<Edge>& edges) {
+  using models::Earthing;
+  if (network.method == models::Method::iec60909) return true;
+  const std::vector<int>& sources = network.states[at(tree.state)].sources;
+  std::vector<int> feeds(network.boards.size(), 0);
+  for (const int s : sources) {
+    const Source& source = network.sources[at(s)];
+    const bool plain = !source.generator.present && !source.inverter.present && !source.high_voltage &&
+                       !source.split_phase && source.z0_known && !source.maximum.sequence.given &&
+                       !source.minimum.sequence.given && source.earthing != Earthing::IT &&
+                       source.earthing != Earthing::TN_C &&
+                       (!source.transformer || source.star.kind == models::StarPoint::Kind::solid);
+    if (!plain || ++feeds[at(source.board)] > 1) return true;
+  }
+  for (const Edge& edge : edges) {
+    if (edge.kind != Edge::Kind::submain || ++feeds[at(edge.to)] > 1) return true;
+    const Submain& submain = network.submains[at(edge.index)];
+    if (submain.pen || submain.sequence.given) return true;
+  }
+  auto live = [&](int board) { return board >= 0 && tree.live(board); };
+  for (const models::Motor& motor : network.motors)
+    if (live(motor.board >= 0 ? motor.board : network.circuits[at(motor.circuit)].board)) return true;
+  for (const models::Bond& bond : network.bonds)
+    if (live(bond.from) || live(bond.to)) return true;
+  for (const models::Circuit& circuit : network.circuits)
+    if (circuit.pen) return true;
+  for (std::size_t b = 0; b < network.boards.size(); ++b) {
+    if (!tree.live(static_cast<int>(b))) continue;
+    if (network.boards[b].n_pe_link) return true;
+    if (network.boards[b].electrode < 0) continue;
+    const Source& source = network.sources[at(tree.source_of[b])];
+    const int f = tree.feeder[b];
+    const bool carried = f >= 0 && network.submains[at(f)].conductors.has(Conductor::PE);
+    if (source.earthing != Earthing::TT) return true;
+    if (carried && tree.electrode[at(network.submains[at(f)].from)] >= 0) return true;  // two earths on one PE
+  }
+  return false;
+}
+
+// Boards of the forest, outward from each source.
+void hang(const Network& network, const std::vector<int>& sources, const std::vector<Edge>& edges, StateTree& tree) {
+  std::vector<std::vector<int>> leaving(network.boards.size());
+  for (const Edge& edge : edges)
+    if (edge.kind == Edge::Kind::submain) leaving[at(edge.from)].push_back(edge.index);
+  std::vector<bool> fed(network.boards.size());
+  for (const int s : sources) {
     const Source& source = network.sources[at(s)];
     const int root = source.board;
+    if (fed[at(root)]) continue;
+    fed[at(root)] = true;
     tree.source_of[at(root)] = s;
     tree.conductors[at(root)] = supplied(source);
     std::size_t next = tree.order.size();
@@ -255,6 +298,8 @@ StateTree state_tree(const Network& network, int state) {
       }
       for (const int f : leaving[at(board)]) {
         const Submain& submain = network.submains[at(f)];
+        if (fed[at(submain.to)]) continue;
+        fed[at(submain.to)] = true;
         tree.source_of[at(submain.to)] = s;
         tree.feeder[at(submain.to)] = f;
         tree.conductors[at(submain.to)] = both(tree.conductors[at(board)], submain.conductors);
@@ -263,17 +308,203 @@ StateTree state_tree(const Network& network, int state) {
       }
     }
   }
+}
+
+// What each board has and who feeds it, where edges form any graph: voltage and earthing from the
+// nearest source or transformer, conductors from all sides.
+void spread(const Network& network, const std::vector<int>& sources, const std::vector<int>& order,
+            const std::vector<Edge>& edges, StateTree& tree) {
+  tree.order = order;
+  for (const models::Transformer& t : network.transformers) tree.stand_ins.push_back(stand_in(t));
+  std::vector<std::vector<int>> around(network.boards.size());
+  for (std::size_t e = 0; e < edges.size(); ++e) {
+    around[at(edges[e].from)].push_back(static_cast<int>(e));
+    around[at(edges[e].to)].push_back(static_cast<int>(e));
+  }
+  std::vector<int> queue;
+  for (const int s : sources) {
+    const int board = network.sources[at(s)].board;
+    if (tree.source_of[at(board)] < 0) queue.push_back(board);
+    if (tree.source_of[at(board)] < 0) tree.source_of[at(board)] = s;
+  }
+  for (std::size_t i = 0; i < queue.size(); ++i)
+    for (const int e : around[at(queue[i])]) {
+      const Edge& edge = edges[at(e)];
+      const int other = edge.from == queue[i] ? edge.to : edge.from;
+      if (tree.source_of[at(other)] >= 0) continue;
+      // A primary board has the voltage of what feeds it, not that of the secondary.
+      if (edge.kind == Edge::Kind::transformer && other == edge.from) continue;
+      tree.source_of[at(other)] = tree.source_of[at(queue[i])];
+      tree.stand_in[at(other)] = edge.kind == Edge::Kind::transformer ? edge.index : tree.stand_in[at(queue[i])];
+      queue.push_back(other);
+    }
+  for (const int s : sources) {
+    const Source& source = network.sources[at(s)];
+    for (const Conductor c : {Conductor::L1, Conductor::L2, Conductor::L3, Conductor::N, Conductor::PE})
+      if (supplied(source).has(c)) tree.conductors[at(source.board)].add(c);
+  }
+  for (const int b : order) {
+    if (network.boards[at(b)].electrode >= 0) tree.conductors[at(b)].add(Conductor::PE);
+    if (network.boards[at(b)].n_pe_link) tree.conductors[at(b)].add(Conductor::PE);
+  }
+  for (const models::Bond& bond : network.bonds)
+    for (const int b : {bond.from, bond.to})
+      if (b >= 0) tree.conductors[at(b)].add(Conductor::PE);
+  for (bool changed = true; changed;) {
+    changed = false;
+    auto pass = [&](ConductorSet carried, int from, int to) {
+      ConductorSet more = tree.conductors[at(to)];
+      for (const Conductor c : {Conductor::L1, Conductor::L2, Conductor::L3, Conductor::N, Conductor::PE})
+        if (carried.has(c) && tree.conductors[at(from)].has(c)) more.add(c);
+      if (more == tree.conductors[at(to)]) return;
+      tree.conductors[at(to)] = more;
+      changed = true;
+    };
+    for (const Edge& edge : edges) {
+      if (edge.kind == Edge::Kind::transformer) {
+        const models::Transformer& t = network.transformers[at(edge.index)];
+        Source secondary = tree.stand_ins[at(edge.index)];
+        ConductorSet all = supplied(secondary);
+        if (t.secondary_winding != models::Winding::star_earthed &&
+            t.secondary_winding != models::Winding::zigzag_earthed)
+          all.remove(Conductor::N);
+        ConductorSet more = tree.conductors[at(edge.to)];
+        for (const Conductor c : {Conductor::L1, Conductor::L2, Conductor::L3, Conductor::N, Conductor::PE})
+          if (all.has(c)) more.add(c);
+        changed = changed || more != tree.conductors[at(edge.to)];
+        tree.conductors[at(edge.to)] = more;
+        continue;
+      }
+      ConductorSet carried = edge.kind == Edge::Kind::submain ? network.submains[at(edge.index)].conductors
+                                                              : network.links[at(edge.index)].conductors;
+      if (edge.kind == Edge::Kind::link) carried.add(Conductor::PE);
+      if (edge.kind == Edge::Kind::submain && network.submains[at(edge.index)].pen) carried.add(Conductor::PE);
+      pass(carried, edge.from, edge.to);
+      pass(carried, edge.to, edge.from);
+    }
+  }
+}
+
+// Blocks and cut vertices, seen from the sources: a board behind a bridge is fed through it alone, a
+// board of a larger block hangs with the whole block on one board above or on the sources themselves.
+void find_ways(const Network& network, const std::vector<int>& sources, const std::vector<Edge>& edges,
+               StateTree& tree) {
+  const std::size_t n = network.boards.size();
+  std::map<std::pair<int, int>, std::vector<int>> between;  // boards (n: the sources) to edges; -1: a source
+  for (std::size_t e = 0; e < edges.size(); ++e)
+    between[std::minmax(edges[e].from, edges[e].to)].push_back(static_cast<int>(e));
+  for (const int s : sources) between[{network.sources[at(s)].board, static_cast<int>(n)}].push_back(-1);
+  Graph graph(n + 1);
+  std::vector<const std::vector<int>*> of;
+  std::vector<std::pair<int, int>> ends;
+  for (const auto& [pair, list] : between) {
+    boost::add_edge(at(pair.first), at(pair.second), of.size(), graph);
+    of.push_back(&list);
+    ends.push_back(pair);
+  }
+  std::vector<std::size_t> block(of.size());
+  const std::size_t blocks = boost::biconnected_components(
+      graph, boost::make_iterator_property_map(block.begin(), boost::get(boost::edge_index, graph)));
+  std::vector<std::vector<std::size_t>> members(blocks);
+  for (std::size_t e = 0; e < of.size(); ++e) members[block[e]].push_back(e);
+  std::vector<std::vector<std::size_t>> at_vertex(n + 1);
+  for (std::size_t e = 0; e < of.size(); ++e) {
+    at_vertex[at(ends[e].first)].push_back(e);
+    at_vertex[at(ends[e].second)].push_back(e);
+  }
+  std::vector<bool> entered(blocks);
+  std::vector<int> queue{static_cast<int>(n)};
+  std::vector<bool> seen(n + 1);
+  seen[n] = true;
+  for (std::size_t i = 0; i < queue.size(); ++i)
+    for (const std::size_t e : at_vertex[at(queue[i])]) {
+      const std::size_t b = block[e];
+      if (entered[b]) continue;
+      entered[b] = true;
+      const bool bridge = members[b].size() == 1 && of[members[b].front()]->size() == 1;
+      for (const std::size_t member : members[b]) {
+        for (const int edge : *of[member])
+          if (!bridge && edge >= 0 && edges[at(edge)].kind == Edge::Kind::submain)
+            tree.looped[at(edges[at(edge)].index)] = true;
+        for (const int vertex : {ends[member].first, ends[member].second}) {
+          if (seen[at(vertex)]) continue;
+          seen[at(vertex)] = true;
+          queue.push_back(vertex);
+          tree.above[at(vertex)] = queue[i] == static_cast<int>(n) ? -1 : queue[i];
+          const int edge = of[member]->front();
+          if (bridge && edge < 0) tree.sole[at(vertex)] = true;
+          if (!bridge || edge < 0) continue;
+          const Edge& through = edges[at(edge)];
+          if (through.kind == Edge::Kind::submain) tree.feeder[at(vertex)] = through.index;
+          if (through.kind == Edge::Kind::transformer) tree.transformer[at(vertex)] = through.index;
+          if (through.kind == Edge::Kind::link) tree.link[at(vertex)] = through.index;
+        }
+      }
+    }
+}
+
+}  // namespace
+
+const Source& system_of(const Network& network, const StateTree& tree, int board) {
+  const int own = tree.stand_in.empty() ? -1 : tree.stand_in[at(board)];
+  return own >= 0 ? tree.stand_ins[at(own)] : network.sources[at(tree.source_of[at(board)])];
+}
+
+std::vector<int> feeders_above(const Network& network, const StateTree& tree, int board) {
+  std::vector<int> submains;
+  while (board >= 0) {
+    const int feeder = tree.feeder[at(board)];
+    if (feeder >= 0) submains.push_back(feeder);
+    if (tree.grid) {
+      board = tree.transformer[at(board)] >= 0 ? -1 : tree.above[at(board)];
+    } else {
+      board = feeder < 0 ? -1 : network.submains[at(feeder)].from;
+    }
+  }
+  return submains;
+}
+
+bool high_voltage(const Network& network, const StateTree& tree, int board) {
+  return system_of(network, tree, board).high_voltage;
+}
+
+StateTree state_tree(const Network& network, int state, bool as_grid) {
+  StateTree tree;
+  tree.state = state;
+  const std::size_t n = network.boards.size();
+  auto clear = [&] {
+    tree.source_of.assign(n, -1);
+    tree.feeder.assign(n, -1);
+    tree.electrode.assign(n, -1);
+    tree.conductors.assign(n, {});
+    tree.order.clear();
+    tree.order.reserve(n);
+  };
+  clear();
+  const models::SupplyState& of = network.states[at(state)];
+  std::vector<Edge> edges = closed_edges(network, of);
+  const std::vector<int> order = reach(network, of.sources, edges);
+  hang(network, of.sources, edges, tree);
+  tree.grid = as_grid || tree.order.size() != order.size() || needs_grid(network, tree, edges);
+  if (!tree.grid) return tree;
+  clear();
+  tree.stand_in.assign(n, -1);
+  tree.above.assign(n + 1, -1);
+  tree.transformer.assign(n + 1, -1);
+  tree.link.assign(n + 1, -1);
+  tree.sole.assign(n + 1, false);
+  tree.looped.assign(network.submains.size(), false);
+  spread(network, of.sources, order, edges, tree);
+  find_ways(network, of.sources, edges, tree);
   return tree;
 }
 
 std::vector<Trouble> check_topology(const Network& network) {
   std::vector<Trouble> troubles;
-  find_loops(network, troubles);
-  if (!troubles.empty()) return troubles;  // what follows walks trees
-  find_parallel_sources(network, troubles);
   find_dead_boards(network, troubles);
   if (!troubles.empty()) return troubles;
-  find_electrode_conflicts(network, troubles);
+  find_voltage_conflicts(network, troubles);
+  if (!troubles.empty()) return troubles;
   find_missing_conductors(network, troubles);
   return troubles;
 }

@@ -38,7 +38,7 @@ const std::vector<Field<solver::FaultRow>>& fault_fields() {
        [](const Network&, const Row& r) { return Value(word(r.condition)); }},
       {"node", "node", "", "board, circuit end board/circuit, or spur end board/circuit/spur1",
        [](const Network&, const Row& r) { return Value(r.node); }},
-      {"fault", "fault", "", "three-phase, line-line, line-neutral or line-earth",
+      {"fault", "fault", "", "three-phase, line-line, line-neutral or line-earth; where asked for, two lines and earth",
        [](const Network&, const Row& r) { return Value(word(r.fault)); }},
       {"phases", "phases", "", "the governing choice of conductors",
        [](const Network&, const Row& r) { return Value(r.phases); }},
@@ -378,6 +378,11 @@ template Record record_of(const Network&, const std::vector<Field<solver::PathDe
 template Record record_of(const Network&, const std::vector<Field<solver::DamageLine>>&, const solver::DamageLine&);
 template Record record_of(const Network&, const std::vector<Field<solver::ChartCurrent>>&, const solver::ChartCurrent&);
 template Record record_of(const Network&, const std::vector<Field<models::Assumption>>&, const models::Assumption&);
+template Record record_of(const Network&, const std::vector<Field<solver::FaultQuery>>&, const solver::FaultQuery&);
+template Record record_of(const Network&, const std::vector<Field<solver::FaultDetail>>&, const solver::FaultDetail&);
+template Record record_of(const Network&, const std::vector<Field<solver::ElementCurrent>>&,
+                          const solver::ElementCurrent&);
+template Record record_of(const Network&, const std::vector<Field<solver::TouchVoltage>>&, const solver::TouchVoltage&);
 template std::string csv_of(const Network&, const std::vector<Field<solver::ScheduleRow>>&,
                             const std::vector<solver::ScheduleRow>&);
 template std::string csv_of(const Network&, const std::vector<Field<solver::FaultRow>>&,
@@ -400,6 +405,11 @@ void describe(std::vector<StructHelp>& all, const char* format, const char* plac
 std::vector<StructHelp> describe_json() {
   std::vector<StructHelp> all;
   describe(all, "sunder.faults/1", "results[]", fault_fields());
+  describe(all, "sunder.fault-study/1", "asked", fault_query_fields());
+  describe(all, "sunder.fault-study/1", "faults[]", fault_fields());
+  describe(all, "sunder.fault-study/1", "faults[], besides", fault_detail_fields());
+  describe(all, "sunder.fault-study/1", "faults[].elements[]", element_current_fields());
+  describe(all, "sunder.fault-study/1", "faults[].touch[]", touch_voltage_fields());
   describe(all, "sunder.check/1", "findings[]", finding_fields());
   describe(all, "sunder.check/1", "findings[], pairs of devices only", pair_fields());
   describe(all, "sunder.check/1", "findings[].steps[]", step_fields());

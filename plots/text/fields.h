@@ -10,6 +10,7 @@
 #include <vector>
 
 #include "models/network.h"
+#include "solver/fault_study.h"
 #include "solver/results.h"
 
 namespace sunder::plots {
@@ -18,9 +19,9 @@ struct Value;
 /// Keys and values in the order they are printed.
 using Record = std::vector<std::pair<std::string, Value>>;
 
-/// What a field holds: nothing (null), a flag, a number (not finite: null), text, texts, records.
+/// What a field holds: nothing (null), a flag, a number (not finite: null), text, texts, a record, records.
 struct Value {
-  std::variant<std::monostate, bool, double, std::string, std::vector<std::string>, std::vector<double>,
+  std::variant<std::monostate, bool, double, std::string, std::vector<std::string>, std::vector<double>, Record,
                std::vector<Record>>
       data;
 
@@ -32,6 +33,7 @@ struct Value {
   Value(const char* text) : data(std::string(text)) {}               // NOLINT(*-explicit-*)
   Value(std::vector<std::string> texts) : data(std::move(texts)) {}  // NOLINT(*-explicit-*)
   Value(std::vector<double> numbers) : data(std::move(numbers)) {}   // NOLINT(*-explicit-*)
+  Value(Record record) : data(std::move(record)) {}                  // NOLINT(*-explicit-*)
   Value(std::vector<Record> records) : data(std::move(records)) {}   // NOLINT(*-explicit-*)
 };
 
@@ -58,6 +60,11 @@ struct Field {
 [[nodiscard]] const std::vector<Field<solver::DamageLine>>& damage_fields();
 [[nodiscard]] const std::vector<Field<solver::ChartCurrent>>& chart_current_fields();
 [[nodiscard]] const std::vector<Field<models::Assumption>>& assumption_fields();
+[[nodiscard]] const std::vector<Field<solver::FaultQuery>>& fault_query_fields();
+/// What a fault that is looked at closely has beyond fault_fields() of its row.
+[[nodiscard]] const std::vector<Field<solver::FaultDetail>>& fault_detail_fields();
+[[nodiscard]] const std::vector<Field<solver::ElementCurrent>>& element_current_fields();
+[[nodiscard]] const std::vector<Field<solver::TouchVoltage>>& touch_voltage_fields();
 
 /// The row as a record. A number that is unbounded (infinite) becomes null and is named in `reason`,
 /// which is added where the row has no such field of its own.

@@ -81,7 +81,7 @@ std::string key_text(const Key& key) {
     text += fmt::format("; warned about outside {} to {}", models::format_quantity(key.plausible_least, key.quantity),
                         models::format_quantity(key.plausible_most, key.quantity));
   }
-  text += key.required ? "; obligatory" : "";
+  if (key.required) text += key.unless.empty() ? "; obligatory" : fmt::format("; obligatory without {}", key.unless);
   if (!key.by_default.empty()) text += fmt::format("; default {}", key.by_default);
   return text + ']';
 }
@@ -141,11 +141,6 @@ HelpTopic help_netlist() {
     section.example = std::string(kind.example);
     for (const Key& key : kind.keys) section.entries.push_back({std::string(key.name), key_text(key)});
     topic.sections.push_back(std::move(section));
-  }
-  std::string later;
-  for (const std::string_view kind : models::later_kinds()) later += (later.empty() ? "" : ", ") + std::string(kind);
-  if (!later.empty()) {
-    topic.sections.push_back({"kinds of a later edition", "Refused by name in this edition: " + later + ".", "", {}});
   }
   return topic;
 }

@@ -29,6 +29,7 @@ struct Writer {
     for (const double number : numbers) list.push_back((*this)(number));
     return list;
   }
+  Json operator()(const Record& record) const { return to_json(record); }
   Json operator()(const std::vector<Record>& records) const {
     Json list = Json::array();
     for (const Record& record : records) list.push_back(to_json(record));
@@ -84,6 +85,21 @@ std::string check_json(const models::Network& network, const std::vector<solver:
 std::string faults_json(const models::Network& network, const std::vector<solver::FaultRow>& rows) {
   Json object = head("sunder.faults/1", network);
   object["results"] = rows_json(network, fault_fields(), rows);
+  return text_of(object);
+}
+
+std::string fault_study_json(const models::Network& network, const solver::FaultQuery& query,
+                             const std::vector<solver::FaultDetail>& faults) {
+  Json object = head("sunder.fault-study/1", network);
+  object["asked"] = to_json(record_of(network, fault_query_fields(), query));
+  Json list = Json::array();
+  for (const solver::FaultDetail& fault : faults) {
+    Json item = to_json(record_of(network, fault_fields(), fault.row));
+    item.update(to_json(record_of(network, fault_detail_fields(), fault)));
+    list.push_back(std::move(item));
+  }
+  object["faults"] = std::move(list);
+  object["cautions"] = query.touch ? Json::array({touch_caution()}) : Json::array();
   return text_of(object);
 }
 

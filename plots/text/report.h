@@ -7,6 +7,7 @@
 #include <vector>
 
 #include "models/network.h"
+#include "solver/fault_study.h"
 #include "solver/results.h"
 
 namespace sunder::plots {
@@ -31,6 +32,16 @@ struct TextStyle {
 [[nodiscard]] std::string faults_report(const models::Network& network, const std::vector<solver::FaultRow>& rows,
                                         const TextStyle& style);
 [[nodiscard]] std::string faults_json(const models::Network& network, const std::vector<solver::FaultRow>& rows);
+
+/// What stands under every report with touch voltages.
+[[nodiscard]] const char* touch_caution();
+
+/// Faults looked at closely: one line each, or, where currents or touch voltages were asked for, a paragraph each
+/// with their tables.
+[[nodiscard]] std::string fault_study_report(const models::Network& network, const solver::FaultQuery& query,
+                                             const std::vector<solver::FaultDetail>& faults, const TextStyle& style);
+[[nodiscard]] std::string fault_study_json(const models::Network& network, const solver::FaultQuery& query,
+                                           const std::vector<solver::FaultDetail>& faults);
 
 [[nodiscard]] std::string schedule_report(const models::Network& network, const std::vector<solver::ScheduleRow>& rows,
                                           const TextStyle& style);

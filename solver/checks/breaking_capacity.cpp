@@ -59,6 +59,10 @@ Finding judge_device(const Situation& s, const Device& device, const std::string
     return finding;
   }
   compare_upper(finding, amps, device.Icn, Quantity::current);
+  // The whole current of the place bounds what the device of one feed of several carries.
+  if (finding.verdict == Verdict::fails && s.looped)
+    lack(finding, "the share of " + whose + " in the current",
+         "only the current of all feeds together is above what the device can break");
   if (finding.verdict == Verdict::meets && !s.motors_unknown.empty())
     lack(finding, "load of " + s.motors_unknown, "a motor's rated current is not given, so its part is not bounded");
   finding.summary = fmt::format("{} may flow ({}); {} breaks {}", say(amps, Quantity::current), word(fault),

@@ -40,6 +40,10 @@ struct Check {
 /// Marks it undecided for want of something.
 void lack(Finding& finding, const std::string& need, const std::string& reason);
 
+/// Undecided where several feeds share the current of the subject's device: which clears first decides what the
+/// others carry. @return whether it is so
+bool lack_sequence(Finding& finding, const Situation& s);
+
 /// Sets value, limit, margin and verdict for "value must not exceed limit": margin = 1 - value / limit.
 void compare_upper(Finding& finding, double value, double limit, models::Quantity unit);
 

@@ -25,11 +25,7 @@ std::vector<Finding> judge(const Situation& s) {
   finding.condition = word(Condition::minimum);
   finding.clause = s.network->rules.clearance_clause;
   finding.limit = kLongest;
-  if (s.in_parallel > 1) {
-    lack(finding, "the solution of faults inside parallel cables",
-         "a fault inside one of several parallel cables is fed from both ends: solved in a later edition");
-    return {finding};
-  }
+  if (lack_sequence(finding, s)) return {finding};
   Fault fault = Fault::line_neutral;
   const FaultCurrent* current = least(s.far_min, {Fault::line_neutral, Fault::line_line}, &fault);
   if (current == nullptr) {
@@ -52,7 +48,10 @@ std::vector<Finding> judge(const Situation& s) {
     lack(finding, "k for the conductors of " + s.address, "the rule set has no k for this conductor");
     return {finding};
   }
-  const double withstand = k->k * k->k * strand.area * strand.area;
+  // Inside one of n parallel cables the worst place is where half of the current comes from either side
+  // (n = 2: the far end, where each cable carries half).
+  const double share = s.in_parallel > 1 ? 0.5 : 1.0;
+  const double withstand = k->k * k->k * strand.area * strand.area / (share * share);
   const double amps = current->amps;
   const double thermal = withstand / (amps * amps);
   const double time = by->device->overcurrent.latest.time_at(amps);
@@ -61,7 +60,9 @@ std::vector<Finding> judge(const Situation& s) {
   finding.value = std::isfinite(time) ? time : kNone;
   finding.confidence = models::worse(path_confidence(s, false), by->device->confidence);
   finding.steps.push_back(
-      {fmt::format("least {} current at the far end", word(fault)), "I = c_min U / |Z|",
+      {fmt::format("least {} current at the {}", word(fault),
+                   s.in_parallel > 1 ? "worst place of the parallel cables" : "far end"),
+       "I = c_min U / |Z|",
        fmt::format("{} / {}", say(current->volts, Quantity::voltage), say(current->ohms, Quantity::impedance)), amps,
        Quantity::current, s.at});
   finding.steps.push_back(

@@ -22,7 +22,7 @@ bool applies(const Situation& s) {
     return s.source->transformer && s.cable != nullptr && s.device->present() &&
            s.conductors.has(models::Conductor::PE);
   return s.kind == SubjectKind::circuit ||
-         (s.kind == SubjectKind::submain && s.submain->conductors.has(models::Conductor::PE));
+         (s.kind == SubjectKind::submain && (s.submain->pen || s.submain->conductors.has(models::Conductor::PE)));
 }
 
 // Steel armour has a reactance that the library does not know: 0.3 to 0.4 mohm/m on large cables (from
@@ -38,23 +38,24 @@ double unknown_reactance(const Situation& s) {
     if (strand.place == models::Place::armour && strand.material == models::Material::steel && strand.x <= 0)
       ohms += kMost * length / in_parallel;
   };
-  if (s.kind == SubjectKind::circuit || s.kind == SubjectKind::submain) add(*s.cable, s.length, s.in_parallel);
-  for (int board = s.board_index; board >= 0;) {
-    const int feeder = s.tree->feeder[static_cast<std::size_t>(board)];
-    if (feeder < 0) break;
+  if (s.cable != nullptr && (s.kind == SubjectKind::circuit || s.kind == SubjectKind::submain))
+    add(*s.cable, s.length, s.in_parallel);
+  for (const int feeder : feeders_above(*s.network, *s.tree, s.board_index)) {
     const models::Submain& submain = s.network->submains[static_cast<std::size_t>(feeder)];
     add(submain.cable, submain.length.value, submain.in_parallel);
-    board = submain.from;
   }
   return ohms;
 }
 
 void say_working(Finding& finding, const Situation& s, const FaultCurrent& current, const Disconnection& cleared,
                  const TimeLimit& limit) {
-  finding.steps.push_back(
-      {"earth-fault loop at the far end", "Zs = |Z source + Z1 + Z2|",
-       fmt::format("{} of it before the installation", say(current.source_ohms, Quantity::impedance)), current.ohms,
-       Quantity::impedance, s.at});
+  finding.steps.push_back({s.in_parallel > 1 ? "earth-fault loop at the worst place of the parallel cables"
+                                             : "earth-fault loop at the far end",
+                           "Zs = |Z source + Z1 + Z2|",
+                           current.source_ohms > 0 ? fmt::format("{} of it before the installation",
+                                                                 say(current.source_ohms, Quantity::impedance))
+                                                   : std::string("solved in the network"),
+                           current.ohms, Quantity::impedance, s.at});
   finding.steps.push_back(
       {"least line-earth current", "I = c_min U0 / Zs",
        fmt::format("{} / {}", say(current.volts, Quantity::voltage), say(current.ohms, Quantity::impedance)),
@@ -84,6 +85,11 @@ std::vector<Finding> judge(const Situation& s) {
   finding.clause = limit.distribution ? s.network->rules.distribution_clause : s.network->rules.times_clause;
   if (limit.assumed_use) finding.assumptions.push_back("use not given: the time of sockets is demanded");
   const FaultCurrent& current = of(s.far_min, Fault::line_earth);
+  if (lack_sequence(finding, s)) return {finding};
+  if (s.source->earthing == models::Earthing::IT)
+    finding.assumptions.push_back(
+        "IT: the second fault is judged, elsewhere on another line (on the neutral where it is distributed), half of "
+        "the voltage for each loop; the exposed parts are joined by protective conductors");
   if (!current.possible) {
     const bool board_has_earth =
         s.board_index < 0 || s.tree->conductors[static_cast<std::size_t>(s.board_index)].has(models::Conductor::PE);

@@ -21,7 +21,22 @@ struct Interval {
   double kappa = 1.02;
   bool earth = false;                                             // a line-earth fault: residual elements act too
   Fault least = Fault::line_neutral, most = Fault::line_neutral;  // what flows at either end
+  std::vector<std::pair<double, double>> shares;  // inside parallel cables: current, share of the faulted one
 };
+
+// Share of the current through the device that the faulted one of several parallel cables carries, at most:
+// that of the weakest supply at this current, where the place is nearest.
+double share_at(const Interval& interval, double current) {
+  if (interval.shares.empty()) return 1.0;
+  double share = interval.shares.back().second;
+  for (auto p = interval.shares.rbegin(); p != interval.shares.rend(); ++p)
+    if (p->first <= current * (1 + 1e-12)) share = p->second;
+  // Between two places the nearer one bounds it.
+  for (std::size_t i = 1; i < interval.shares.size(); ++i)
+    if (current > interval.shares[i].first && current < interval.shares[i - 1].first)
+      share = std::max(share, interval.shares[i - 1].second);
+  return share;
+}
 
 struct Worst {
   double heat = 0, current = 0, time = 0;  // I2t through the device
@@ -66,12 +81,16 @@ Worst worst_over(const Situation& s, const Protector& by, const Interval& interv
           if (near > interval.low && near < interval.high) currents.push_back(near);
   currents.push_back(interval.low);
   currents.push_back(interval.high);
+  for (const auto& [current, share] : interval.shares)
+    if (current > interval.low && current < interval.high) currents.push_back(current);
   Worst worst;
   for (const double current : currents) {
     const Heat heat = heat_at(s, by, current, interval);
     if (!(heat.time <= kLongest)) continue;  // fault clearance and disconnection judge those
-    if (heat.total <= worst.heat || (decisive && !heat.from_data)) continue;
-    worst = {heat.total, current, heat.time, heat.from_data, heat.basis, heat.confidence};
+    const double share = share_at(interval, current);
+    const double total = heat.total * share * share;
+    if (total <= worst.heat || (decisive && !heat.from_data)) continue;
+    worst = {total, current, heat.time, heat.from_data, heat.basis, heat.confidence};
   }
   return worst;
 }
@@ -99,6 +118,10 @@ bool interval_of(const Situation& s, FaultList faults, bool earth, Interval& out
   out.high = std::max(high->amps, low->amps);
   out.kappa = std::isfinite(high->peak) && high->amps > 0 ? high->peak / (std::sqrt(2.0) * high->amps) : 1.02;
   out.earth = earth;
+  for (const InnerFault& inner : s.inner) {
+    const FaultCurrent* amps = least(inner.least, faults, nullptr);
+    if (amps != nullptr && amps->known) out.shares.emplace_back(amps->amps, inner.share);
+  }
   return true;
 }
 
@@ -159,7 +182,8 @@ void judge_part(const Situation& s, const Protector& by, const Part& part, Findi
         fmt::format("{}{} may meet {} at {} ({}); it stands {}", part.name, share, say(heat, Quantity::let_through),
                     say(worst.current, Quantity::current), worst.basis, say(withstand, Quantity::let_through));
     if (finding.verdict == Verdict::fails && !worst.decisive &&
-        least_heat(*by.device, worst.current) * square <= withstand)
+        least_heat(*by.device, worst.current) * square * std::pow(share_at(part.interval, worst.current), 2) <=
+            withstand)
       lack(finding,
            fmt::format("{} of the device of {}",
                        by.device->let_through.basis == models::LetThrough::Basis::energy_class
@@ -177,11 +201,7 @@ std::vector<Finding> judge(const Situation& s) {
   Finding base = begin_finding(s, kName);
   base.unit = Quantity::let_through;
   base.clause = s.network->rules.heating_clause;
-  if (s.in_parallel > 1) {
-    lack(base, "the solution of faults inside parallel cables",
-         "a fault inside one of several parallel cables is fed from both ends: solved in a later edition");
-    return {base};
-  }
+  if (lack_sequence(base, s)) return {base};
   const Protector* by = overcurrent_protector(s.path);
   if (by == nullptr) {
     lack(base, "device of " + s.address, "no device on the way breaks a short-circuit");

@@ -36,6 +36,13 @@ void lack(Finding& finding, const std::string& need, const std::string& reason) 
   if (finding.reason.empty()) finding.reason = reason;
 }
 
+bool lack_sequence(Finding& finding, const Situation& s) {
+  if (!s.looped) return false;
+  lack(finding, "the order in which the feeds of " + s.address + " clear",
+       "it lies in a loop or between sources: its device carries a share that changes as others clear");
+  return true;
+}
+
 void compare_upper(Finding& finding, double value, double limit, models::Quantity unit) {
   finding.value = value;
   finding.limit = limit;
@@ -62,13 +69,8 @@ models::Confidence path_confidence(const Situation& s, bool protective) {
     for (const models::Strand& strand : cable.protective) worst = models::worse(worst, strand.confidence);
   };
   if (s.cable != nullptr && s.kind != SubjectKind::board) add(*s.cable);
-  for (int board = s.board_index; board >= 0;) {
-    const int feeder = s.tree->feeder[static_cast<std::size_t>(board)];
-    if (feeder < 0) break;
-    const models::Submain& submain = s.network->submains[static_cast<std::size_t>(feeder)];
-    add(submain.cable);
-    board = submain.from;
-  }
+  for (const int feeder : feeders_above(*s.network, *s.tree, s.board_index))
+    add(s.network->submains[static_cast<std::size_t>(feeder)].cable);
   if (s.source->tails.present) add(s.source->tails.cable);
   return worst;
 }

@@ -155,12 +155,9 @@ bool has_drop(const Situation& s) {
 }
 
 bool demands_on_the_way(const Situation& s) {
-  for (int board = s.board_index; board >= 0;) {
-    const int feeder = s.tree->feeder[static_cast<std::size_t>(board)];
-    if (feeder < 0) break;
+  for (const int feeder : feeders_above(*s.network, *s.tree, s.board_index)) {
     const models::Submain& submain = s.network->submains[static_cast<std::size_t>(feeder)];
     if (submain.demand.given && submain.conductors.lines() == 3) return true;
-    board = submain.from;
   }
   return false;
 }

@@ -5,6 +5,7 @@
 
 #include <catch2/catch.hpp>
 #include <cmath>
+#include <complex>
 #include <limits>
 
 namespace {
@@ -182,6 +183,73 @@ TEST_CASE("What is printed is read back as the same value") {
   const auto value = GENERATE(1e-5, 0.0123, 0.5, 7.0, 96.5, 1250.0, 43210.0, 8.5e6);
   CAPTURE(static_cast<int>(quantity), value);
   CHECK(read(format_quantity(value, quantity, 12), quantity) == Approx(value).epsilon(1e-11));
+}
+
+TEST_CASE("An impedance is read with its reactance, in one unit or two") {
+  struct Row {
+    const char* text;
+    Quantity quantity;
+    double r, x;
+  };
+  const auto row = GENERATE(values<Row>({
+      {"0.0531+j0.5311 mohm", Quantity::impedance, 0.0531e-3, 0.5311e-3},
+      {"5+j20 ohm", Quantity::impedance, 5, 20},
+      {"5 + j20 ohm", Quantity::impedance, 5, 20},
+      {"5 ohm + j20 mohm", Quantity::impedance, 5, 0.02},
+      {"5+20j ohm", Quantity::impedance, 5, 20},
+      {"0.1 ohm", Quantity::impedance, 0.1, 0},
+      {"j0.2 ohm", Quantity::impedance, 0, 0.2},
+      {"0.2j ohm", Quantity::impedance, 0, 0.2},
+      {"-j0.2 ohm", Quantity::impedance, 0, -0.2},
+      {"1-j0.2 ohm", Quantity::impedance, 1, -0.2},
+      {"-1+j0.2 ohm", Quantity::impedance, -1, 0.2},
+      {"1e-3+j2e-3 ohm", Quantity::impedance, 1e-3, 2e-3},
+      {"1e-3+2e-3j ohm", Quantity::impedance, 1e-3, 2e-3},
+      {"+.5+j.25 ohm", Quantity::impedance, 0.5, 0.25},
+      {"0.077+j0.079 mohm/m", Quantity::impedance_per_length, 0.077e-3, 0.079e-3},
+      {"0.077+j0.079 ohm/km", Quantity::impedance_per_length, 0.077e-3, 0.079e-3},
+      {"3\u22124j \u03A9", Quantity::impedance, 3, -4},
+  }));
+  CAPTURE(row.text);
+  const auto value = parse_complex(row.text, row.quantity);
+  REQUIRE(std::holds_alternative<std::complex<double>>(value));
+  const auto z = std::get<std::complex<double>>(value);
+  CHECK_THAT(z.real(), Catch::Matchers::WithinRel(row.r, 1e-12));
+  CHECK_THAT(z.imag(), Catch::Matchers::WithinRel(row.x, 1e-12));
+}
+
+TEST_CASE("A text that is no impedance is refused with what is missing") {
+  const auto said = [](const char* text) {
+    const auto value = parse_complex(text, Quantity::impedance);
+    const auto* error = std::get_if<UnitError>(&value);
+    return error == nullptr ? std::string("accepted") : error->message;
+  };
+  CHECK(said("") == "no value; expected an impedance such as '0.35 ohm'");
+  CHECK(said("5+j20") == "'+20' has no unit; an impedance is written in ohm, mohm, uohm, kohm");
+  CHECK(said("5+j20 A") == "'A' is a unit of current; an impedance is written in ohm, mohm, uohm, kohm");
+  for (const char* text : {"j", "5+j", "5j+j20 ohm", "5 j20 ohm", "5+jj20 ohm"}) {
+    CAPTURE(text);
+    CHECK(said(text).find("is no impedance with a reactance; expected one such as '0.05+j0.02 ohm'") !=
+          std::string::npos);
+  }
+  CHECK(said("x+j20 ohm") == "'x' does not begin with a number; expected an impedance such as '0.35 ohm'");
+  CHECK(said("5+jx ohm") != "accepted");
+}
+
+TEST_CASE("Frequencies and capacitances are read and printed in the usual units") {
+  CHECK(read("50 Hz", Quantity::frequency) == 50.0);
+  CHECK(read("0.4 kHz", Quantity::frequency) == 400.0);
+  CHECK(read("2 uF", Quantity::capacitance) == 2e-6);
+  CHECK(read("2 \u00B5F", Quantity::capacitance) == 2e-6);
+  CHECK(read("300 nF", Quantity::capacitance) == 300e-9);
+  CHECK(read("1 mF", Quantity::capacitance) == 1e-3);
+  CHECK(read("1 F", Quantity::capacitance) == 1.0);
+  CHECK(refused("2", Quantity::capacitance) == "'2' has no unit; a capacitance is written in uF, nF, mF, F");
+  CHECK(format_quantity(60, Quantity::frequency) == "60 Hz");
+  CHECK(format_quantity(2.5e-6, Quantity::capacitance) == "2.5 uF");
+  CHECK(format_quantity(3e-8, Quantity::capacitance) == "30 nF");
+  CHECK(si_symbol(Quantity::frequency) == "Hz");
+  CHECK(si_symbol(Quantity::capacitance) == "F");
 }
 
 }  // namespace

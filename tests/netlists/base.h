@@ -40,14 +40,17 @@ W1 = { use = "sockets", phases = "L1", device = "B 32 A 6 kA", cable = "flat-pvc
 W2 = { use = "fixed", phases = "L1 L2 L3", device = "C 16 A 6 kA", cable = "singles-pvc-cu 2.5 mm2", length = "21 m", load = "11 A", pf = 0.8 }
 )";
 
-/// The base with its line `number` (from 1) replaced; 0: `text` appended.
-inline std::string spoiled(int number, std::string_view text) {
-  std::string made(kBase);
+/// A netlist with its line `number` (from 1) replaced; 0: `text` appended.
+inline std::string spoiled(std::string_view netlist, int number, std::string_view text) {
+  std::string made(netlist);
   if (number == 0) return made + std::string(text);
   std::size_t start = 0;
   for (int n = 1; n < number; ++n) start = made.find('\n', start) + 1;
   return made.replace(start, made.find('\n', start) - start, text);
 }
+
+/// The base so changed.
+inline std::string spoiled(int number, std::string_view text) { return spoiled(kBase, number, text); }
 
 /// "line:column+width severity: message | hint", one a line.
 inline std::string said(const Reading& reading) {

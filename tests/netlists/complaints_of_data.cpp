@@ -164,7 +164,7 @@ TEST_CASE("A cable that cannot be understood is refused with the reason", "[netl
        R"~(21:10+29 error: cable of submain 'S1': 'multicore-xlpe-cu-5c' has equal cores; no second size fits
 )~"},
       {21, R"~(cable = "multicore-xlpe-cu-4c 16 mm2")~",
-       R"~(21:10+27 error: cable of submain 'S1' has no core left for the protective conductor; say with cpc where it is | a cpc is: "core", "armour", "armour + core", "armour + 16 mm2" or "16 mm2"
+       R"~(21:10+27 error: cable of submain 'S1' has no core left for the protective conductor; say with cpc where it is | a cpc is: "core", "armour", "armour + core", "armour + 16 mm2", "16 mm2" or "PEN"
 )~"},
       {21, R"~(cable = "multicore-xlpe-cu-5c 16 mm2"
 cpc = "armour")~",
@@ -172,11 +172,11 @@ cpc = "armour")~",
 )~"},
       {21, R"~(cable = "multicore-xlpe-cu-5c 16 mm2"
 cpc = "armor")~",
-       R"~(22:8+5 error: unknown cpc 'armor' of submain 'S1' | a cpc is: "core", "armour", "armour + core", "armour + 16 mm2" or "16 mm2"
+       R"~(22:8+5 error: unknown cpc 'armor' of submain 'S1' | a cpc is: "core", "armour", "armour + core", "armour + 16 mm2", "16 mm2" or "PEN"
 )~"},
       {21, R"~(cable = "multicore-xlpe-cu-5c 16 mm2"
 cpc = "core + core")~",
-       R"~(22:8+11 error: cpc 'core + core' of submain 'S1' names a part twice | a cpc is: "core", "armour", "armour + core", "armour + 16 mm2" or "16 mm2"
+       R"~(22:8+11 error: cpc 'core + core' of submain 'S1' names a part twice | a cpc is: "core", "armour", "armour + core", "armour + 16 mm2", "16 mm2" or "PEN"
 )~"},
       {21, R"~(cable = "multicore-xlpe-cu-5c 16 mm2"
 cpc = "17 mm2")~",

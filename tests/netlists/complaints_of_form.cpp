@@ -88,8 +88,26 @@ TEST_CASE("The head of the netlist is read strictly", "[netlists]") {
       {2, R"~(rules = 7671)~",
        R"~(2:9+4 error: rules of the netlist is a number; a text is expected
 )~"},
-      {1, R"~(currents = "IEC 60909")~",
-       R"~(1:13+9 error: currents 'IEC 60909' of the netlist is not solved by this edition | solved are: conductor
+      {1, R"~(currents = "IEC 909")~",
+       R"~(1:13+7 error: unknown currents 'IEC 909' of the netlist | did you mean 'IEC 60909'?
+)~"},
+      {1, R"~(tolerance = "+10 %")~",
+       R"~(1:14+5 error: tolerance is asked for by IEC 60909 alone | currents = "IEC 60909"
+)~"},
+      {1, R"~(tolerance = "+6 %"
+currents = "conductor")~",
+       R"~(1:14+4 error: tolerance is asked for by IEC 60909 alone
+2:13+1 note: currents is given here
+)~"},
+      {1, R"~(currents = "IEC 60909"
+tolerance = "10 %")~",
+       R"~(2:14+4 error: unknown tolerance '10 %' of the netlist | did you mean '+10 %'?
+)~"},
+      {1, R"~(frequency = "50")~",
+       R"~(1:14+2 error: frequency of the netlist: '50' has no unit; a frequency is written in Hz, kHz
+)~"},
+      {1, R"~(frequency = "5 kHz")~",
+       R"~(1:14+5 error: frequency of the netlist is 5000 Hz; it must be at most 400 Hz
 )~"},
       {3, R"~(ambient = "30 K")~",
        R"~(3:12+4 error: ambient of the netlist: unknown unit 'K'; a temperature is written in degC
@@ -105,10 +123,6 @@ TEST_CASE("The head of the netlist is read strictly", "[netlists]") {
 )~"},
       {4, R"~(premises = "flat")~",
        R"~(4:13+4 error: unknown premises 'flat' of the netlist | valid are: dwelling, other
-)~"},
-      {0, R"~([generator.G]
-)~",
-       R"~(28:2+9 error: elements of kind 'generator' are not solved by this edition
 )~"},
       {0, R"~([submian.S2]
 )~",

@@ -89,7 +89,7 @@ TEST_CASE("A submain is read strictly and unusual values are warned about", "[ne
        R"~(24:1+6 error: unknown key 'lenght' in submain 'S1' | did you mean 'length'?
 )~"},
       {24, R"~(colour = "red")~",
-       R"~(24:1+6 error: unknown key 'colour' in submain 'S1' | it may have: from, to, phases, device, cable, cpc, length, in_parallel, installed, Iz, demand, pf, selective
+       R"~(24:1+6 error: unknown key 'colour' in submain 'S1' | it may have: from, to, phases, device, cable, cpc, z1, z0, return, length, in_parallel, installed, Iz, demand, pf, selective
 )~"},
   };
   for (const Complaint& complaint : complaints) {

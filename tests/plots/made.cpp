@@ -121,6 +121,45 @@ solver::PathChart path_chart() {
   return chart;
 }
 
+std::vector<solver::FaultDetail> fault_details() {
+  const solver::Complex out = std::polar(1200.0, -0.5);
+  solver::FaultDetail most;
+  most.row.state = "normal";
+  most.row.condition = solver::Condition::maximum;
+  most.row.node = "workshop";
+  most.row.fault = solver::Fault::line_earth;
+  most.row.phases = "L1-PE";
+  most.row.current = 1200;
+  most.row.peak = 1850;
+  most.row.x_over_r = 0.55;
+  most.row.loop_ohms = 0.2108;
+  most.row.driving_volts = 253;
+  most.into_fault = {out, {}, {}, {}, -out};
+  solver::ElementCurrent grid;
+  grid.element = "grid";
+  grid.from = "grid";
+  grid.to = "intake";
+  grid.amps = {out, 1e-9, 1e-9, {}, -out};
+  grid.device = "BS 88-2 160 A 80 kA";
+  grid.residual = 1200;
+  solver::ElementCurrent run = grid;
+  run.element = "S1";
+  run.from = "intake";
+  run.to = "workshop";
+  run.device = "";
+  most.elements = {grid, run};
+  most.touch = {{"intake", 3.2, 0}, {"workshop", 121.46, 118.26}};
+  most.between = 118.26;
+  most.between_boards = "intake and workshop";
+  most.imbalance = 1e-13;
+  solver::FaultDetail least;
+  least.row = most.row;
+  least.row.condition = solver::Condition::minimum;
+  least.row.known = false;
+  least.row.needs = "Ze of grid";
+  return {most, least};
+}
+
 solver::Sweep sweep() {
   solver::Sweep s;
   s.key = "S1.length";

@@ -6,6 +6,7 @@
 #include <vector>
 
 #include "models/network.h"
+#include "solver/fault_study.h"
 #include "solver/results.h"
 
 namespace sunder::test {
@@ -18,6 +19,10 @@ namespace sunder::test {
 
 /// A fuse above a breaker with a residual part, two damage lines, four currents.
 [[nodiscard]] solver::PathChart path_chart();
+
+/// A line-earth fault at "workshop" through S1 from "grid", in the maximum, with currents and touch voltages, and the
+/// same not known in the minimum.
+[[nodiscard]] std::vector<solver::FaultDetail> fault_details();
 
 /// One flip at 83.2 m, one undecided stretch.
 [[nodiscard]] solver::Sweep sweep();

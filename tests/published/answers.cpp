@@ -12,22 +12,6 @@ namespace {
 
 using support::Json;
 
-// Exit status 1 only says that a check is not met.
-Json answer(const std::string& netlist, std::vector<std::string> arguments) {
-  const support::Folder folder;
-  folder.write("net.toml", netlist);
-  arguments.insert(std::next(arguments.begin()), "net.toml");
-  arguments.emplace_back("--json");
-  const support::Outcome outcome = support::run_sunder(arguments, folder);
-  INFO(netlist);
-  INFO(outcome.out.substr(0, 2000));
-  INFO(outcome.err.substr(0, 2000));
-  REQUIRE((outcome.status == 0 || outcome.status == 1));
-  Json json = Json::parse(outcome.out);
-  REQUIRE(json.valid());
-  return json;
-}
-
 double number(const Json& json) { return json.number(); }
 
 std::vector<FindingAnswer> findings_of(const Json& list) {
@@ -52,6 +36,22 @@ SweepAnswer sweep_of(const Json& json) {
 }
 
 }  // namespace
+
+// Exit status 1 only says that a check is not met.
+Json answer(const std::string& netlist, std::vector<std::string> arguments) {
+  const support::Folder folder;
+  folder.write("net.toml", netlist);
+  arguments.insert(std::next(arguments.begin()), "net.toml");
+  arguments.emplace_back("--json");
+  const support::Outcome outcome = support::run_sunder(arguments, folder);
+  INFO(netlist);
+  INFO(outcome.out.substr(0, 2000));
+  INFO(outcome.err.substr(0, 2000));
+  REQUIRE((outcome.status == 0 || outcome.status == 1));
+  Json json = Json::parse(outcome.out);
+  REQUIRE(json.valid());
+  return json;
+}
 
 std::vector<FaultAnswer> faults(const std::string& netlist) {
   std::vector<FaultAnswer> rows;
@@ -98,6 +98,14 @@ FindingAnswer finding(const std::vector<FindingAnswer>& findings, const std::str
     if (item.check == check && item.subject == subject) return item;
   FAIL("no finding on " << check << " of " << subject);
   return {};
+}
+
+void check_cut(double value, const std::string& printed, double units) {
+  const double number = std::stod(printed);
+  const double half = support::half_last_digit(printed);
+  CAPTURE(value, printed);
+  CHECK(value >= number - half);
+  CHECK(value < number + 2 * half * units);
 }
 
 double flip(const SweepAnswer& sweep, const std::string& check, const std::string& subject) {

@@ -9,6 +9,7 @@
 #include <string>
 #include <vector>
 
+#include "tests/support/json.h"
 #include "tests/support/printed.h"
 
 namespace sunder::published {
@@ -46,6 +47,9 @@ struct SweepAnswer {
   std::vector<PointAnswer> points;
 };
 
+/// `sunder arguments.. net.toml --json`, the netlist's name put behind the command.
+[[nodiscard]] support::Json answer(const std::string& netlist, std::vector<std::string> arguments);
+
 [[nodiscard]] std::vector<FaultAnswer> faults(const std::string& netlist);
 [[nodiscard]] std::vector<FindingAnswer> check(const std::string& netlist);
 /// Voltage drop of a row of `sunder schedule` [1].
@@ -67,6 +71,10 @@ struct SweepAnswer {
 /// unless there is exactly one such flip, or if any finding on the way rests on low-confidence
 /// data.
 [[nodiscard]] double flip(const SweepAnswer& sweep, const std::string& check, const std::string& subject);
+
+/// Of a page that mostly cuts digits and sometimes rounds them: checks that the value lies less than half a unit
+/// of the last digit below the printed number and up to `units` of it above.
+void check_cut(double value, const std::string& printed, double units = 1);
 
 /// Matcher for a flip: as Printed, but both ends of the millionth to which `vary` knows a flip
 /// count, so that a value on the tie between two printed numbers is not lost to the bisection.

@@ -25,16 +25,6 @@ std::string transformer(const std::string& voltage, const std::string& rating, c
          " kVA\"\nuk = \"" + uk + " %\"\nearthing = \"TN-S\"\n" + rest + "[board.main]\n";
 }
 
-// A page that mostly cuts digits and sometimes rounds them: the value lies less than half a unit of
-// the last digit below the printed number and up to `units` of it above.
-void check_cut(double value, const std::string& printed, double units = 1) {
-  const double number = std::stod(printed);
-  const double half = sunder::support::half_last_digit(printed);
-  CAPTURE(value, printed);
-  CHECK(value >= number - half);
-  CHECK(value < number + 2 * half * units);
-}
-
 // Tag S: J.-M. Beaussy, calculation notes for LV installations, ch. 11,
 // https://ro.scribd.com/document/448339676/Ik-en-aval-des-Transfos-Methode-Impedances.
 // No-load voltage 420 V, stiff network, losses at 75 degC. The source cuts digits.
