@@ -131,6 +131,9 @@ Kind transformer() {
        amount("primary", Quantity::voltage, "Rated voltage between lines of the primary side; obligatory with from.")
            .above(0, 500e3)
            .usual(200, 150e3),
+       entry("on_load_taps", ValueForm::flag,
+             "Whether the unit transformer of a generator has an on-load tap changer (IEC 60909).")
+           .unless_given("false"),
        amount("tap", Quantity::percentage, "Position of the tap changer, as a change of the primary voltage.")
            .from(-0.2, 0.2)
            .unless_given("0 %"),
@@ -146,6 +149,7 @@ Kind transformer() {
        link("star point|board|none", "star point"),
        star_point("How its secondary star point is earthed, and so joined to PE: \"solid\", \"open\" or an impedance.",
                   "open in IT, else solid"),
+       capacitance(),
        entry("primary_star", ValueForm::text,
              "How the star point of a YN or ZN primary is earthed: \"solid\", \"open\" or an impedance.")
            .unless_given("solid"),
@@ -185,7 +189,8 @@ Kind generator() {
       "A synchronous generator as a source.",
       "[generator.G1]\nfeeds = \"intake\"\nvoltage = \"230/400 V\"\nearthing = \"TN-S\"\nrating = \"250 kVA\"\n"
       "xd_subtransient = \"12 %\"\nx0 = \"4 %\"\nsustained = 3\n",
-      {entry("feeds", ValueForm::reference, "The board that it supplies.").need(), voltage(),
+      {entry("feeds", ValueForm::reference, "The board that it supplies.").need(),
+       voltage(),
        entry("earthing", ValueForm::choice, "System earthing; obligatory up to 1 kV.").of(kEarthings),
        rating("Rated power."),
        per_unit("xd_subtransient", 2, 0.03, 0.5, "Saturated subtransient reactance, per unit or in %.").need(),
@@ -209,8 +214,11 @@ Kind generator() {
        star_point("How its star point is earthed, and so joined to PE: \"solid\", \"open\" or an impedance; \"none\": "
                   "not brought out.",
                   "open in IT, else solid"),
-       link("star point|board|none", "star point"), entry("device", ValueForm::device, "The device at its terminals."),
-       tails("The conductors from its terminals to the board."), demand()}};
+       capacitance(),
+       link("star point|board|none", "star point"),
+       entry("device", ValueForm::device, "The device at its terminals."),
+       tails("The conductors from its terminals to the board."),
+       demand()}};
 }
 
 Kind inverter() {
@@ -231,7 +239,8 @@ Kind inverter() {
            .unless_given("false"),
        star_point("How its star point is earthed, and so joined to PE: \"solid\", \"open\" or an impedance.",
                   "open in IT, else solid"),
-       link("star point|board|none", "star point"), entry("device", ValueForm::device, "The device at its terminals."),
+       capacitance(), link("star point|board|none", "star point"),
+       entry("device", ValueForm::device, "The device at its terminals."),
        tails("The conductors from its terminals to the board."), demand()}};
 }
 

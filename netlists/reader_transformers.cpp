@@ -320,7 +320,7 @@ void read_as_source(Context& context, ElementKeys& fields, Source& source) {
   source.z0_over_z1 = source.z0_known ? zero.x : 1;
   source.r0_over_r1 = zero.r;
   source.x0_over_x1 = zero.x;
-  fields.refuse({"primary", "tap", "primary_star", "primary_device"},
+  fields.refuse({"primary", "tap", "on_load_taps", "primary_star", "primary_device"},
                 "is for a transformer between two boards, which has 'from'");
   if (!source.high_voltage && !has_neutral(group.secondary)) {
     context.without_neutral.insert(static_cast<int>(context.network.sources.size()));
@@ -378,6 +378,7 @@ void read_between(Context& context, ElementKeys& fields, Transformer& made) {
   fields.require("primary");
   made.primary = fields.quantity("primary").value_or(0);
   made.tap = fields.quantity("tap").value_or(0);
+  made.on_load_taps = fields.flag("on_load_taps").value_or(false);
   const ZeroSequence zero = read_zero_sequence(context, fields, made.name, group);
   made.r0_over_r1 = zero.r;
   made.x0_over_x1 = zero.x;

@@ -280,6 +280,33 @@ class Study {
     detail.elements.insert(detail.elements.begin(), std::move(element));
   }
 
+  // The device through which a board is fed carries what its one feeder delivers.
+  void add_incomers(FaultDetail& detail) const {
+    std::vector<ElementCurrent> incomers;
+    for (const int b : tree_.order) {
+      const models::Board& board = network_.boards[at(b)];
+      if (!board.incomer.present()) continue;
+      std::string feeder;
+      if (tree_.feeder[at(b)] >= 0) feeder = network_.submains[at(tree_.feeder[at(b)])].name;
+      if (tree_.link[at(b)] >= 0) feeder = network_.links[at(tree_.link[at(b)])].name;
+      for (const ElementCurrent& element : detail.elements) {
+        const bool source_side = tree_.sole[at(b)] || tree_.transformer[at(b)] >= 0;
+        const bool feeds = feeder.empty() ? source_side && element.to == board.name : element.element == feeder;
+        if (!feeds) continue;
+        ElementCurrent incomer = element;
+        incomer.element = board.name + ".incomer";
+        incomer.device = board.incomer.text;
+        incomer.from = element.element;
+        incomer.to = board.name;
+        if (element.from == board.name)
+          for (Complex& amps : incomer.amps) amps = -amps;
+        incomers.push_back(std::move(incomer));
+        break;
+      }
+    }
+    for (ElementCurrent& incomer : incomers) detail.elements.push_back(std::move(incomer));
+  }
+
   void fill(FaultDetail& detail, const StateGrid::Flow& flow, const std::vector<Spot>& spots) const {
     detail.imbalance = flow.imbalance;
     for (std::size_t k = 0; k < 5; ++k) detail.into_fault[k] = flow.into_fault(static_cast<Eigen::Index>(k));
@@ -301,6 +328,7 @@ class Study {
       }
       detail.undefined = flow.undefined;
     }
+    if (query_.currents) add_incomers(detail);
     if (query_.currents)
       for (const Spot& spot : spots)
         if (spot.place->kind == Place::Kind::circuit) add_circuit(detail, spot);

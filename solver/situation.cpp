@@ -185,6 +185,10 @@ void fill_board(Situation& s, const StateSolution& solution, int index) {
   const ConductorMatrix none = ConductorMatrix::Zero();
   s.origin_max = currents_from(network, solution, *s.source, index, none, s.conductors, Condition::maximum);
   s.far_min = currents_from(network, solution, *s.source, index, none, s.conductors, Condition::minimum);
+  if (solution.tree.grid && s.source->earthing == models::Earthing::IT) {
+    const StateGrid& grid = solution.grid(Condition::maximum);
+    s.first_fault = grid.current(grid.at_board(index), Fault::line_earth);
+  }
   s.drop = solution.loading.drop[at(index)];
 }
 

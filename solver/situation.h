@@ -66,6 +66,7 @@ struct Situation {
   Currents origin_max;            ///< at the line side of its device, maximum
   Currents far_min;               ///< at its far end (ring: worst place), minimum
   std::vector<InnerFault> inner;  ///< of parallel cables, from the device on; far_min is then the worst place
+  FaultCurrent first_fault;       ///< boards in IT: greatest line-earth current of the network as it is
   Drop drop;                      ///< at its far end, from the supply terminals
   double motors = 0;              ///< rated current of all motors in this part of the network [A]
   std::string motors_unknown;     ///< a motor there whose current is not given, "" if none

@@ -9,8 +9,6 @@
 #include <cmath>
 #include <map>
 
-#include "solver/study.h"
-
 namespace sunder::solver {
 namespace {
 
@@ -111,87 +109,6 @@ std::vector<int> reach(const Network& network, const std::vector<int>& sources, 
       std::remove_if(edges.begin(), edges.end(), [&](const Edge& e) { return !live[at(e.from)] || !live[at(e.to)]; }),
       edges.end());
   return order;
-}
-
-void find_dead_boards(const Network& network, std::vector<Trouble>& troubles) {
-  std::vector<bool> fed(network.boards.size());
-  std::vector<bool> active(network.sources.size());
-  for (const models::SupplyState& state : network.states) {
-    std::vector<Edge> edges = closed_edges(network, state);
-    for (const int b : reach(network, state.sources, edges)) fed[at(b)] = true;
-    for (const int s : state.sources) active[at(s)] = true;
-  }
-  for (std::size_t b = 0; b < network.boards.size(); ++b)
-    if (!fed[b])
-      troubles.push_back(
-          {fmt::format("nobody feeds board '{}'", network.boards[b].name), network.boards[b].at, "", {}});
-  for (std::size_t s = 0; s < network.sources.size(); ++s)
-    if (!active[s])
-      troubles.push_back(
-          {fmt::format("source '{}' is in no state", network.sources[s].name), network.sources[s].at, "", {}});
-}
-
-// Boards that cables or links join must be of one nominal voltage.
-void find_voltage_conflicts(const Network& network, std::vector<Trouble>& troubles) {
-  for (std::size_t i = 0; i < network.states.size(); ++i) {
-    const StateTree tree = state_tree(network, static_cast<int>(i));
-    if (!tree.grid) continue;
-    constexpr double kSame = 0.15;  // rated voltages of machines and no-load voltages lie within it
-    auto compare = [&](double U, double other, const std::string& what, const std::string& board,
-                       models::Origin where) {
-      if (std::abs(U / other - 1) <= kSame) return;
-      troubles.push_back(
-          {fmt::format("{} has {} but board '{}' has {} in state '{}'", what,
-                       models::format_quantity(U, models::Quantity::voltage), board,
-                       models::format_quantity(other, models::Quantity::voltage), network.states[i].name),
-           where,
-           "",
-           {}});
-    };
-    for (const Submain& submain : network.submains)
-      if (tree.live(submain.from) && tree.live(submain.to))
-        compare(system_of(network, tree, submain.from).U, system_of(network, tree, submain.to).U,
-                "submain '" + submain.name + "' at board '" + network.boards[at(submain.from)].name + "'",
-                network.boards[at(submain.to)].name, submain.at);
-    for (const int s : network.states[i].sources)
-      compare(network.sources[at(s)].U, system_of(network, tree, network.sources[at(s)].board).U,
-              "source '" + network.sources[at(s)].name + "'", network.boards[at(network.sources[at(s)].board)].name,
-              network.sources[at(s)].at);
-    for (const models::Transformer& t : network.transformers)
-      if (tree.live(t.from) && tree.live(t.to)) {
-        compare(t.primary, system_of(network, tree, t.from).U, "the primary of transformer '" + t.name + "'",
-                network.boards[at(t.from)].name, t.at);
-        compare(t.U, system_of(network, tree, t.to).U, "the secondary of transformer '" + t.name + "'",
-                network.boards[at(t.to)].name, t.at);
-      }
-    if (!troubles.empty()) return;
-  }
-}
-
-void find_missing_conductors(const Network& network, std::vector<Trouble>& troubles) {
-  for (std::size_t i = 0; i < network.states.size(); ++i) {
-    const StateTree tree = state_tree(network, static_cast<int>(i));
-    auto complain = [&](const std::string& what, ConductorSet wanted, int board, models::Origin where) {
-      wanted.remove(Conductor::PE);
-      const ConductorSet have = tree.conductors[at(board)];
-      if (have.contains(wanted)) return;
-      ConductorSet offered = have;
-      offered.remove(Conductor::PE);
-      troubles.push_back(
-          {fmt::format("{} takes {} but board '{}' has {} in state '{}'", what, models::phases_text(wanted),
-                       network.boards[at(board)].name, models::phases_text(offered), network.states[i].name),
-           where,
-           "",
-           {}});
-    };
-    for (const models::Circuit& circuit : network.circuits)
-      if (tree.live(circuit.board))
-        complain("circuit '" + models::address(network, circuit) + "'", circuit.conductors, circuit.board, circuit.at);
-    for (const Submain& submain : network.submains)
-      if (tree.live(submain.from))
-        complain("submain '" + submain.name + "'", submain.conductors, submain.from, submain.at);
-    if (!troubles.empty()) return;
-  }
 }
 
 }  // namespace
@@ -385,6 +302,27 @@ void spread(const Network& network, const std::vector<int>& sources, const std::
   }
 }
 
+// The electrode that earths each protective conductor: the nearest along conductors that carry it.
+void find_electrodes(const Network& network, const std::vector<int>& order, const std::vector<Edge>& edges,
+                     StateTree& tree) {
+  std::vector<int> queue;
+  for (const int b : order)
+    if (network.boards[at(b)].electrode >= 0) {
+      tree.electrode[at(b)] = network.boards[at(b)].electrode;
+      queue.push_back(b);
+    }
+  for (std::size_t i = 0; i < queue.size(); ++i)
+    for (const Edge& edge : edges) {
+      if (edge.kind == Edge::Kind::transformer || (edge.from != queue[i] && edge.to != queue[i])) continue;
+      const Submain* submain = edge.kind == Edge::Kind::submain ? &network.submains[at(edge.index)] : nullptr;
+      if (submain != nullptr && !submain->pen && !submain->conductors.has(Conductor::PE)) continue;
+      const int other = edge.from == queue[i] ? edge.to : edge.from;
+      if (tree.electrode[at(other)] >= 0) continue;
+      tree.electrode[at(other)] = tree.electrode[at(queue[i])];
+      queue.push_back(other);
+    }
+}
+
 // Blocks and cut vertices, seen from the sources: a board behind a bridge is fed through it alone, a
 // board of a larger block hangs with the whole block on one board above or on the sources themselves.
 void find_ways(const Network& network, const std::vector<int>& sources, const std::vector<Edge>& edges,
@@ -445,6 +383,11 @@ void find_ways(const Network& network, const std::vector<int>& sources, const st
 
 }  // namespace
 
+std::vector<int> live_boards(const Network& network, int state) {
+  std::vector<Edge> edges = closed_edges(network, network.states[at(state)]);
+  return reach(network, network.states[at(state)].sources, edges);
+}
+
 const Source& system_of(const Network& network, const StateTree& tree, int board) {
   const int own = tree.stand_in.empty() ? -1 : tree.stand_in[at(board)];
   return own >= 0 ? tree.stand_ins[at(own)] : network.sources[at(tree.source_of[at(board)])];
@@ -495,18 +438,9 @@ StateTree state_tree(const Network& network, int state, bool as_grid) {
   tree.sole.assign(n + 1, false);
   tree.looped.assign(network.submains.size(), false);
   spread(network, of.sources, order, edges, tree);
+  find_electrodes(network, order, edges, tree);
   find_ways(network, of.sources, edges, tree);
   return tree;
-}
-
-std::vector<Trouble> check_topology(const Network& network) {
-  std::vector<Trouble> troubles;
-  find_dead_boards(network, troubles);
-  if (!troubles.empty()) return troubles;
-  find_voltage_conflicts(network, troubles);
-  if (!troubles.empty()) return troubles;
-  find_missing_conductors(network, troubles);
-  return troubles;
 }
 
 }  // namespace sunder::solver

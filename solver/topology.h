@@ -39,6 +39,10 @@ struct StateTree {
 /// @param as_grid  also where a walk would do: with ways and loops found
 [[nodiscard]] StateTree state_tree(const models::Network& network, int state, bool as_grid = false);
 
+/// Boards that are live in a state, in the order in which they are reached from its sources: a submain or
+/// transformer feeds from its `from` end (from either, where nothing else feeds that board), a link from both.
+[[nodiscard]] std::vector<int> live_boards(const models::Network& network, int state);
+
 /// What feeds a board as its checks see it: a source of the network or a transformer in it.
 /// Precondition: the board is live.
 [[nodiscard]] const models::Source& system_of(const models::Network& network, const StateTree& tree, int board);

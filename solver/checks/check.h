@@ -30,6 +30,7 @@ struct Check {
 [[nodiscard]] Check voltage_drop_check();
 [[nodiscard]] Check additional_protection_check();
 [[nodiscard]] Check earth_electrode_check();
+[[nodiscard]] Check first_fault_check();
 [[nodiscard]] Check selectivity_check();
 
 // What the checks share.

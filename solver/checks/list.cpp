@@ -10,7 +10,7 @@ std::vector<Check>& checks() {
   static std::vector<Check> all{
       breaking_capacity_check(), disconnection_check(), clearance_check(),   heating_check(),
       overload_check(),          voltage_drop_check(),  selectivity_check(), additional_protection_check(),
-      earth_electrode_check(),
+      earth_electrode_check(),   first_fault_check(),
   };
   return all;
 }

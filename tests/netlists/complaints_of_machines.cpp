@@ -126,7 +126,7 @@ star_point = "solid")~",
           {8, R"~(xd_subtransient = 0.12
 pf = 0.9
 phases = "L1")~",
-           R"~(10:1+6 error: unknown key 'phases' in generator 'G' | 'phases' is a key of: supply, inverter, submain, circuit, motor, link; here may stand: feeds, voltage, earthing, rating, xd_subtransient, xd_transient, xd, x2, x0, r, T_subtransient, T_transient, sustained, pf, star_point, link, device, tails, demand
+           R"~(10:1+6 error: unknown key 'phases' in generator 'G' | 'phases' is a key of: supply, inverter, submain, circuit, motor, link; here may stand: feeds, voltage, earthing, rating, xd_subtransient, xd_transient, xd, x2, x0, r, T_subtransient, T_transient, sustained, pf, star_point, capacitance, link, device, tails, demand
 )~"},
       });
 }
