@@ -184,6 +184,12 @@ void read_sequence(Context& context, ElementKeys& fields, models::Sequence& sequ
   if (const auto z = fields.impedance("z0", Quantity::impedance_per_length, kLeast, kMost)) {
     sequence.z0 = *z;
     sequence.z0_given = sequence.given;
+    if (sequence.given && (z->real() < sequence.z1.real() || z->imag() < sequence.z1.imag())) {
+      const Value& value = *fields.find("z0");
+      context.complaints.warn(
+          value.at, value.width,
+          fmt::format("z0 of {} is below its z1: the return would have less than no impedance", fields.what()));
+    }
   }
   const std::string through = fields.choice("return").value_or("");
   using models::Return;

@@ -187,6 +187,12 @@ void read_motor_ratings(Context& context, ElementKeys& fields, models::Motor& ma
     context.complaints.error(made.at, 1, fmt::format("{} has neither 'rating' nor 'current'", fields.what()),
                              "rating = \"5.5 kW\", or the rated current");
   }
+  if (rating && fields.find("current") != nullptr) {
+    const Value& value = *fields.find("current");
+    context.complaints.error(value.at, value.width,
+                             fmt::format("{} has both rating and current; one is enough", fields.what()));
+    context.complaints.note(fields.find("rating")->at, "rating is given here");
+  }
   made.watts = fields.quantity("rating").value_or(0);
   made.amps = fields.quantity("current").value_or(0);
   made.volts = fields.quantity("voltage").value_or(0);

@@ -41,6 +41,22 @@ std::string unknown_place(const Network& network, const std::string& name) {
   for (const models::Circuit& circuit : network.circuits) all.push_back(models::address(network, circuit));
   const std::vector<std::string_view> views(all.begin(), all.end());
   const std::string_view near = models::nearest_name(name, views);
+  for (const models::Transformer& t : network.transformers)
+    if (t.name == name)
+      return fmt::format("'{}' is a transformer; its terminals are boards '{}' and '{}'", name,
+                         network.boards[at(t.from)].name, network.boards[at(t.to)].name);
+  for (const models::Source& source : network.sources)
+    if (source.name == name)
+      return fmt::format("'{}' is a source; its terminals are board '{}'", name, network.boards[at(source.board)].name);
+  for (const models::Link& link : network.links)
+    if (link.name == name)
+      return fmt::format("'{}' is a link; it joins boards '{}' and '{}'", name, network.boards[at(link.from)].name,
+                         network.boards[at(link.to)].name);
+  for (const models::Motor& motor : network.motors)
+    if (motor.name == name)
+      return fmt::format("'{}' is a motor; it stands at '{}'", name,
+                         motor.board >= 0 ? network.boards[at(motor.board)].name
+                                          : models::address(network, network.circuits[at(motor.circuit)]));
   std::string sentence = fmt::format("there is no board, submain or circuit '{}'", name);
   if (!near.empty()) sentence += fmt::format("; did you mean '{}'?", near);
   return sentence;
@@ -145,17 +161,13 @@ class Study {
     FaultDetail detail = begin(a.text + " and " + b.text, Fault::line_earth, flow.current);
     if (flow.current.known) {
       // At each place the current of its line returns through its protective conductor.
-      auto at_place = [&](bool first) {
+      auto at_place = [&](std::size_t k) {
         Eigen::Matrix<Complex, 5, 1> into = Eigen::Matrix<Complex, 5, 1>::Zero();
-        const double sign = first ? 1 : -1;
-        for (int k = 0; k < 3; ++k)
-          if ((sign * flow.into_fault(k) / (flow.current.volts / flow.current.loop)).real() > 0) {
-            into(k) = flow.into_fault(k);
-            into(4) = -flow.into_fault(k);
-          }
+        into(flow.pair_lines[k]) = flow.pair_amps[k];
+        into(4) = -flow.pair_amps[k];
         return into;
       };
-      fill(detail, flow, {{&a, at_place(true)}, {&b, at_place(false)}});
+      fill(detail, flow, {{&a, at_place(0)}, {&b, at_place(1)}});
     }
     details.push_back(std::move(detail));
   }
@@ -281,7 +293,7 @@ class Study {
   }
 
   // The device through which a board is fed carries what its one feeder delivers.
-  void add_incomers(FaultDetail& detail) const {
+  void add_incomers(FaultDetail& detail, const std::vector<Spot>& spots) const {
     std::vector<ElementCurrent> incomers;
     for (const int b : tree_.order) {
       const models::Board& board = network_.boards[at(b)];
@@ -300,6 +312,14 @@ class Study {
         incomer.to = board.name;
         if (element.from == board.name)
           for (Complex& amps : incomer.amps) amps = -amps;
+        // What a fault inside the run takes does not reach the board.
+        for (const Spot& spot : spots)
+          if (spot.place->kind == Place::Kind::submain && network_.submains[at(spot.place->index)].name == feeder &&
+              network_.submains[at(spot.place->index)].to == b)
+            for (std::size_t k = 0; k < 5; ++k) incomer.amps[k] -= spot.into(static_cast<Eigen::Index>(k));
+        Complex sum = 0;
+        for (std::size_t k = 0; k < 4; ++k) sum += incomer.amps[k];
+        incomer.residual = std::abs(sum);
         incomers.push_back(std::move(incomer));
         break;
       }
@@ -328,7 +348,7 @@ class Study {
       }
       detail.undefined = flow.undefined;
     }
-    if (query_.currents) add_incomers(detail);
+    if (query_.currents) add_incomers(detail, spots);
     if (query_.currents)
       for (const Spot& spot : spots)
         if (spot.place->kind == Place::Kind::circuit) add_circuit(detail, spot);

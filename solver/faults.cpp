@@ -29,8 +29,6 @@ ConductorMatrix with_source(ConductorMatrix z, Complex source) {
   return z;
 }
 
-double ratio(Complex z) { return z.real() > 0 ? z.imag() / z.real() + 0.0 : std::numeric_limits<double>::infinity(); }
-
 // Angle of the source at which |Z_source + rest| is greatest: that of the rest, inside the range.
 double blinding_angle(const SourceTerm& term, Complex rest) {
   const double angle = std::abs(rest) > 0 ? std::arg(rest) : term.angle_low;
@@ -38,6 +36,10 @@ double blinding_angle(const SourceTerm& term, Complex rest) {
 }
 
 }  // namespace
+
+double x_over_r(Complex z) noexcept {
+  return z.real() > 0 ? z.imag() / z.real() + 0.0 : std::numeric_limits<double>::infinity();
+}
 
 double peak_factor(double x_over_r) noexcept {
   return std::isinf(x_over_r) ? 2.0 : x_over_r <= 0 ? 1.02 : 1.02 + 0.98 * std::exp(-3.0 / x_over_r);
@@ -77,11 +79,11 @@ FaultCurrent fault_current(const Network& network, const Source& source, const C
       result.amps = solved.amps;
       result.loop = solved.loop;
       result.ohms = std::abs(solved.loop);
-      result.x_over_r = ratio(solved.loop);
+      result.x_over_r = x_over_r(solved.loop);
       result.phases = loops.phases;
       const Complex inductive =
           solve(loops, with_source(rest, std::polar(term.ohms, term.angle_high)), result.volts, most).loop;
-      if (most) result.peak = peak_factor(ratio(inductive)) * std::numbers::sqrt2 * solved.amps;
+      if (most) result.peak = peak_factor(x_over_r(inductive)) * std::numbers::sqrt2 * solved.amps;
       result.source_ohms =
           std::abs(solve(loops, with_source(term.fixed, std::polar(term.ohms, angle)), result.volts, most).loop);
     }

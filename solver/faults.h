@@ -28,6 +28,9 @@ struct FaultCurrent {
   [[nodiscard]] bool usable() const noexcept { return possible && known; }
 };
 
+/// X/R of an impedance; infinite without resistance.
+[[nodiscard]] double x_over_r(Complex z) noexcept;
+
 /// Peak factor: kappa = 1.02 + 0.98 e^(-3R/X), 1.02 .. 2.
 /// Source: IEC 60909-0; within 0.53 % of the exact first peak for R/X 0.005 to 1.2.
 [[nodiscard]] double peak_factor(double x_over_r) noexcept;

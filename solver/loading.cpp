@@ -133,8 +133,21 @@ Loading load_network(const Network& network, const StateTree& tree) {
     ++ways[at(circuit.board)];
     if (!circuit.motor) continue;
     const std::size_t source = at(tree.source_of[at(circuit.board)]);
+    // A motor that the network has as an element is in the solved currents.
+    const auto index = static_cast<int>(&circuit - network.circuits.data());
+    if (std::any_of(network.motors.begin(), network.motors.end(),
+                    [index](const models::Motor& motor) { return motor.circuit == index; }))
+      continue;
     loading.motors[source] += circuit.load.value;
     if (!circuit.load.given) loading.motors_unknown[source] = models::address(network, circuit);
+  }
+  // In a loop only what is declared is known of a cable; so it is of boards that several ways feed.
+  for (std::size_t m = 0; m < network.submains.size(); ++m) {
+    if (!tree.grid || !tree.looped[m]) continue;
+    Demand unknown;
+    unknown.known = false;
+    unknown.needs = "demand of " + network.submains[m].name;
+    loading.submain[m] = declared_or(network.submains[m].demand, network.submains[m].pf, unknown);
   }
   for (auto b = tree.order.rbegin(); b != tree.order.rend(); ++b) {
     PerLine& here = lines[at(*b)];
@@ -175,8 +188,8 @@ Loading load_network(const Network& network, const StateTree& tree) {
       if (tree.link[at(b)] >= 0) {
         drop = loading.drop[at(tree.above[at(b)])];
       } else {
-        // Loops and sources side by side share a load as no sum along a path can tell.
-        drop = {0, false, "load flow to board " + network.boards[at(b)].name + ", which several ways feed", 0};
+        drop = {0, false, "load flow to board " + network.boards[at(b)].name, 0,
+                "several ways feed it, which share a load as no sum along a path can tell"};
       }
       continue;
     }
@@ -187,7 +200,7 @@ Loading load_network(const Network& network, const StateTree& tree) {
       demand = declared_or(source.demand, source.pf, loading.demand[at(b)]);
       if (!source.tails.present && !source.transformer) continue;
       if (!demand.known) {
-        drop = {0, false, demand.needs, 0};
+        drop = {0, false, demand.needs, 0, Drop{}.why};
         continue;
       }
       const Load load{demand.amps, demand.pf, source.tails.Iz.given ? source.tails.Iz.value : 0.0, demand.unbalance()};
@@ -208,7 +221,8 @@ Loading load_network(const Network& network, const StateTree& tree) {
     const models::Submain& submain = network.submains[at(f)];
     drop = loading.drop[at(submain.to == b ? submain.from : submain.to)];
     if (submain.sequence.given) {
-      drop = {0, false, "voltage drop of " + submain.name + ", which is given by sequence impedances", 0};
+      drop = {0, false, "cable of " + submain.name, 0,
+              "a run on the way is given by sequence impedances, not by its conductors"};
       continue;
     }
     const Demand& demand = loading.submain[at(f)];

@@ -30,7 +30,8 @@ struct Drop {
   double share = 0;  ///< [1]
   bool known = true;
   std::string needs;
-  double length = 0;  ///< of the path from the supply terminals [m]
+  double length = 0;                                   ///< of the path from the supply terminals [m]
+  const char* why = "a load on the way is not known";  ///< that it is not known
 };
 
 /// Per board of one state: demand of what it feeds, drop at its busbar.

@@ -42,8 +42,10 @@ ScheduleRow row_of(const Situation& s) {
   const models::ConductorSet conductors = s.circuit != nullptr ? s.circuit->conductors : s.submain->conductors;
   row.phases = models::phases_text(conductors);
   row.device = s.device->present() ? s.device->text : "";
-  row.cable = s.cable->text + (s.in_parallel > 1 ? fmt::format(" x {}", s.in_parallel) : "");
-  row.cpc = cpc_text(*s.cable);
+  // A run given by sequence impedances has no cable to name.
+  const std::string times = s.in_parallel > 1 ? fmt::format(" x {}", s.in_parallel) : "";
+  row.cable = s.cable != nullptr ? s.cable->text + times : "by z1" + times;
+  row.cpc = s.cable != nullptr ? cpc_text(*s.cable) : "";
   row.length = s.length;
   const models::Sourced<double>& Iz = s.circuit != nullptr ? s.circuit->Iz : s.submain->Iz;
   if (Iz.given) row.Iz = Iz.value;
@@ -60,7 +62,7 @@ ScheduleRow row_of(const Situation& s) {
   if (earth.usable()) {
     row.Zs = earth.ohms;
     const Disconnection cleared = disconnection(s.path, earth.amps, row.limit);
-    if (cleared.by != nullptr) row.time = cleared.time;
+    if (cleared.by != nullptr && !s.looped) row.time = cleared.time;
   }
   const FaultCurrent* low = least(s.far_min, {Fault::line_earth, Fault::line_neutral, Fault::line_line}, nullptr);
   if (low != nullptr && low->known) row.least = low->amps;

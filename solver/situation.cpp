@@ -117,6 +117,7 @@ void fill_circuit(Situation& s, const StateSolution& solution, int index) {
   if (s.drop.known && !own.known) {
     s.drop.known = false;
     s.drop.needs = own.needs;
+    s.drop.why = own.why;
   }
 }
 
@@ -317,6 +318,10 @@ Situation situation(const Network& network, const StateSolution& solution, Subje
       break;
   }
   if (s.board_index >= 0) s.board = &network.boards[at(s.board_index)];
+  if (solution.tree.grid) {
+    const int where = s.board_index >= 0 ? s.board_index : s.source->board;
+    s.stages = solution.grid(Condition::minimum).stages(where);
+  }
   return s;
 }
 

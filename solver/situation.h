@@ -62,14 +62,15 @@ struct Situation {
   bool looped = false;              ///< in a loop or between sources: its device carries a part of the current
   models::ConductorSet conductors;  ///< that reach its far end
   models::Use use = models::Use::unknown;
-  std::vector<Protector> path;    ///< source first
-  Currents origin_max;            ///< at the line side of its device, maximum
-  Currents far_min;               ///< at its far end (ring: worst place), minimum
-  std::vector<InnerFault> inner;  ///< of parallel cables, from the device on; far_min is then the worst place
-  FaultCurrent first_fault;       ///< boards in IT: greatest line-earth current of the network as it is
-  Drop drop;                      ///< at its far end, from the supply terminals
-  double motors = 0;              ///< rated current of all motors in this part of the network [A]
-  std::string motors_unknown;     ///< a motor there whose current is not given, "" if none
+  std::vector<Protector> path;        ///< source first
+  Currents origin_max;                ///< at the line side of its device, maximum
+  Currents far_min;                   ///< at its far end (ring: worst place), minimum
+  std::vector<models::Stage> stages;  ///< of inverters that alone feed the place, at its voltage; else empty
+  std::vector<InnerFault> inner;      ///< of parallel cables, from the device on; far_min is then the worst place
+  FaultCurrent first_fault;           ///< boards in IT: greatest line-earth current of the network as it is
+  Drop drop;                          ///< at its far end, from the supply terminals
+  double motors = 0;                  ///< rated current of all motors in this part of the network [A]
+  std::string motors_unknown;         ///< a motor there whose current is not given, "" if none
 };
 
 /// What is solved once per state and shared by every subject in it.

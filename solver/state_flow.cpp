@@ -23,22 +23,6 @@ constexpr Conductor kAll[] = {Conductor::L1, Conductor::L2, Conductor::L3, Condu
 
 std::size_t at(int handle) { return static_cast<std::size_t>(handle); }
 
-double ratio(Complex z) { return z.real() > 0 ? z.imag() / z.real() + 0.0 : std::numeric_limits<double>::infinity(); }
-
-// Series matrix of one of n equal cables that a run stands for.
-ConductorMatrix single(const RunImpedance& z, ConductorSet carried, int n) {
-  ConductorMatrix m = ConductorMatrix::Zero();
-  for (const Conductor c : kLines)
-    if (carried.has(c)) m(static_cast<int>(index(c)), static_cast<int>(index(c))) = z.line;
-  if (carried.has(Conductor::N)) m(3, 3) = z.neutral;
-  if (z.pen) {
-    m(4, 4) = m(3, 4) = m(4, 3) = z.neutral;
-  } else if (carried.has(Conductor::PE)) {
-    m(4, 4) = z.protective;
-  }
-  return m * static_cast<double>(n);
-}
-
 }  // namespace
 
 GridPlace StateGrid::at_board(int board) const {
@@ -78,6 +62,21 @@ GridPlace StateGrid::along_submain(int submain, double fraction) const {
   return place;
 }
 
+ConductorMatrix StateGrid::one_cable(const Grid& grid, const GridPlace& place) {
+  const RunImpedance& z = grid.impedance(place.run);
+  const ConductorSet carried = grid.carried(place.run);
+  ConductorMatrix m = ConductorMatrix::Zero();
+  for (const Conductor c : kLines)
+    if (carried.has(c)) m(static_cast<int>(index(c)), static_cast<int>(index(c))) = z.line;
+  if (carried.has(Conductor::N)) m(3, 3) = z.neutral;
+  if (z.pen) {
+    m(4, 4) = m(3, 4) = m(4, 3) = z.neutral;
+  } else if (carried.has(Conductor::PE)) {
+    m(4, 4) = z.protective;
+  }
+  return m * static_cast<double>(place.in_parallel);
+}
+
 // Between the ends a and b of a run, x of the way along one of its cables z:
 // Z = (1-x)^2 Z_aa + x^2 Z_bb + x(1-x)(Z_ab + Z_ba) + x(1-x) z.
 ConductorMatrix StateGrid::place_matrix(const View& view, const GridPlace& place) const {
@@ -93,8 +92,7 @@ ConductorMatrix StateGrid::place_matrix(const View& view, const GridPlace& place
   const double x = place.fraction;
   const ConductorMatrix mixed = grid.transfer(ends.from, ends.to);
   return (1 - x) * (1 - x) * grid.thevenin(ends.from) + x * x * grid.thevenin(ends.to) +
-         x * (1 - x) * (mixed + mixed.transpose()) +
-         x * (1 - x) * single(grid.impedance(place.run), grid.carried(place.run), place.in_parallel);
+         x * (1 - x) * (mixed + mixed.transpose()) + x * (1 - x) * one_cable(grid, place);
 }
 
 std::string StateGrid::why_not(const GridPlace& place, Fault fault) const {
@@ -159,6 +157,19 @@ double StateGrid::limit_of_inverter(int board) const {
   return limit;
 }
 
+std::vector<models::Stage> StateGrid::stages(int board) const {
+  std::vector<models::Stage> all;
+  const double volts = system_of(network_, tree_, board).U;
+  for (const SourcePlace& place : sources_) {
+    const Source& source = network_.sources[at(place.source)];
+    if (!place.alone || whole_[at(source.board)] != whole_[at(board)]) continue;
+    if (!all.empty()) return {source.inverter.stages.back()};  // two at once: the weaker end of one is safe
+    all = source.inverter.stages;
+    for (models::Stage& stage : all) stage.amps *= source.U / volts;
+  }
+  return all;
+}
+
 StateGrid::Governing StateGrid::govern(const GridPlace& place, Fault fault, double through) const {
   Governing best;
   FaultCurrent& result = best.current;
@@ -193,13 +204,16 @@ StateGrid::Governing StateGrid::govern(const GridPlace& place, Fault fault, doub
       // Equal choices: the first in the order of lines.
       constexpr double kEqual = 1e-9;
       const bool better = most ? solved.amps > result.amps * (1 + kEqual) : solved.amps < result.amps * (1 - kEqual);
-      if (best.view >= 0 && !better) continue;
+      // Of two angles of a source with the same current the inductive one, whose X/R belongs to the peak.
+      const bool inductive = most && best.loops == &loops && solved.amps >= result.amps * (1 - kEqual) &&
+                             x_over_r(solved.loop) > result.x_over_r;
+      if (best.view >= 0 && !better && !inductive) continue;
       best.view = candidates.views[i];
       best.loops = &loops;
       result.amps = solved.amps;
       result.loop = solved.loop;
       result.ohms = std::abs(solved.loop);
-      result.x_over_r = ratio(solved.loop);
+      result.x_over_r = x_over_r(solved.loop);
       result.phases = loops.phases;
     }
   }
@@ -209,12 +223,16 @@ StateGrid::Governing StateGrid::govern(const GridPlace& place, Fault fault, doub
     for (const int slow : candidates.slow) {
       const ConductorMatrix z = place_matrix(views_[at(slow)], place);
       const Complex loop = solve_loops(*best.loops, z, result.volts, through, system.split_phase, most).loop;
-      kappa = std::max(kappa, peak_factor(ratio(loop) / views_[at(slow)].reactance));
+      kappa = std::max(kappa, peak_factor(x_over_r(loop) / views_[at(slow)].reactance));
     }
     result.peak = kappa * std::numbers::sqrt2 * result.amps;
   }
   if (!(result.amps <= limit)) {
     result.amps = limit;
+    // The limit stands for an impedance, so that volts over ohms are the amperes.
+    result.ohms = result.volts / limit;
+    result.loop = result.ohms;
+    result.x_over_r = 0;
     if (most) result.peak = std::numbers::sqrt2 * limit;
   }
   const double added = added_by_inverters(place.board);

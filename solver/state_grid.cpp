@@ -26,7 +26,6 @@ using models::StarPoint;
 using models::Winding;
 
 constexpr Conductor kLines[] = {Conductor::L1, Conductor::L2, Conductor::L3};
-constexpr Conductor kAll[] = {Conductor::L1, Conductor::L2, Conductor::L3, Conductor::N, Conductor::PE};
 
 std::size_t at(int handle) { return static_cast<std::size_t>(handle); }
 

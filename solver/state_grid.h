@@ -4,6 +4,7 @@
 /// machines, electrodes. What a fault finds at each place, and what everything carries meanwhile.
 #pragma once
 
+#include <array>
 #include <functional>
 #include <string>
 #include <utility>
@@ -76,9 +77,13 @@ class StateGrid {
     std::vector<Eigen::Matrix<Complex, 5, 1>> pieces;  ///< of each piece [A]
     double imbalance = 0;                              ///< greatest current left over at a terminal [1]
     std::string undefined;                             ///< links whose shares are not defined, "" if none
+    // Of a fault at two places: the line of each (0..2) and the current from it into its PE.
+    std::array<int, 2> pair_lines{-1, -1};
+    std::array<Complex, 2> pair_amps{};
   };
   [[nodiscard]] Flow flow(const GridPlace& place, Fault fault, double through = 0) const;
-  /// Two lines to earth at two places: L1 of the first, L2 of the second, through PE.
+  /// A line to PE at each of two places, two lines of the three: two loops that share the network where each is
+  /// closed by itself (driven by c U0), one loop through both where nothing closes them (IT; driven by c U).
   [[nodiscard]] Flow flow_between(const GridPlace& a, const GridPlace& b, double through = 0) const;
 
   /// What the declared loops of supplies may add to every potential against reference earth, were all of
@@ -88,6 +93,9 @@ class StateGrid {
 
   /// Potential of the protective conductor at the place of the fault itself [V].
   [[nodiscard]] Complex protective_potential(const GridPlace& place, const Flow& flow, Complex into_protective) const;
+
+  /// What inverters alone deliver at a board, stage by stage; empty where another source feeds it.
+  [[nodiscard]] std::vector<models::Stage> stages(int board) const;
 
   [[nodiscard]] const std::vector<GridPiece>& pieces() const noexcept { return pieces_; }
   [[nodiscard]] const Grid& grid() const noexcept { return views_.front().grid; }
@@ -158,6 +166,8 @@ class StateGrid {
   void star_to_earth(int terminal, const models::StarPoint& star, double capacitance);
   [[nodiscard]] Eigen::MatrixXcd source_admittance(const SourcePlace& place, const SourceValue& value,
                                                    double reactance) const;
+  /// Series matrix of one of the equal cables that a place's run stands for [ohm].
+  [[nodiscard]] static ConductorMatrix one_cable(const Grid& grid, const GridPlace& place);
   [[nodiscard]] ConductorMatrix place_matrix(const View& view, const GridPlace& place) const;
   [[nodiscard]] std::string why_not(const GridPlace& place, Fault fault) const;
   [[nodiscard]] Governing govern(const GridPlace& place, Fault fault, double through) const;

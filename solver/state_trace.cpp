@@ -18,26 +18,9 @@ using models::Conductor;
 using models::ConductorSet;
 using models::Source;
 
-constexpr Conductor kLines[] = {Conductor::L1, Conductor::L2, Conductor::L3};
 constexpr Conductor kAll[] = {Conductor::L1, Conductor::L2, Conductor::L3, Conductor::N, Conductor::PE};
 
 std::size_t at(int handle) { return static_cast<std::size_t>(handle); }
-
-double ratio(Complex z) { return z.real() > 0 ? z.imag() / z.real() + 0.0 : std::numeric_limits<double>::infinity(); }
-
-// Series matrix of one of n equal cables that a run stands for.
-ConductorMatrix single(const RunImpedance& z, ConductorSet carried, int n) {
-  ConductorMatrix m = ConductorMatrix::Zero();
-  for (const Conductor c : kLines)
-    if (carried.has(c)) m(static_cast<int>(index(c)), static_cast<int>(index(c))) = z.line;
-  if (carried.has(Conductor::N)) m(3, 3) = z.neutral;
-  if (z.pen) {
-    m(4, 4) = m(3, 4) = m(4, 3) = z.neutral;
-  } else if (carried.has(Conductor::PE)) {
-    m(4, 4) = z.protective;
-  }
-  return m * static_cast<double>(n);
-}
 
 }  // namespace
 
@@ -61,7 +44,7 @@ Complex StateGrid::protective_potential(const GridPlace& place, const Flow& flow
   const Grid& grid = views_.front().grid;
   const Grid::Ends ends = grid.ends(place.run);
   const double x = place.fraction;
-  const Complex z = single(grid.impedance(place.run), grid.carried(place.run), place.in_parallel)(4, 4);
+  const Complex z = one_cable(grid, place)(4, 4);
   return (1 - x) * flow.potentials[at(terminal_of(ends.from, Conductor::PE))] +
          x * flow.potentials[at(terminal_of(ends.to, Conductor::PE))] - x * (1 - x) * z * into_protective;
 }
@@ -112,56 +95,91 @@ StateGrid::Flow StateGrid::flow_between(const GridPlace& a, const GridPlace& b, 
     return a.have.contains({choice.first, PE}) && b.have.contains({choice.second, PE});
   };
   result.possible = std::any_of(std::begin(kChoices), std::end(kChoices), there);
-  const Candidates& candidates = of_fault_[static_cast<std::size_t>(Fault::line_line)];
-  result.known = candidates.known;
-  result.needs = candidates.needs;
-  if (!result.usable()) return flow;
-  result.volts = driving_voltage_at(network_, tree_, a.board, condition_, Fault::line_line);
+  // Where each fault has a loop of its own the two share the network; else one loop goes through both.
+  auto closed = [&](const GridPlace& place, Conductor line) {
+    const int node = place.run < 0 ? place.node : grid().ends(place.run).from;
+    return grid().connected(terminal_of(node, line), terminal_of(node, PE));
+  };
   const bool most = condition_ == Condition::maximum;
+  const bool opposed = system_of(network_, tree_, a.board).split_phase;
+  const double turn = opposed ? std::numbers::pi : 2.0 * std::numbers::pi / 3.0;
+  for (const Fault fault : {Fault::line_line, Fault::line_earth}) {
+    const Candidates& candidates = of_fault_[static_cast<std::size_t>(fault)];
+    result.known = candidates.known && !views_.empty();
+    result.needs = candidates.needs;
+    if (!result.usable()) return flow;
+  }
+  const Candidates& candidates = of_fault_[static_cast<std::size_t>(Fault::line_earth)];
+  const double to_earth = driving_voltage_at(network_, tree_, a.board, condition_, Fault::line_earth);
+  const double between = driving_voltage_at(network_, tree_, a.board, condition_, Fault::line_line);
   int best = -1;
-  const Choice* lines = nullptr;
   std::vector<Grid::Injection> chosen;
   for (const int v : candidates.views) {
     Grid grid = views_[at(v)].grid;
     if (!grid.solve(true)) continue;
     for (const Choice& choice : kChoices) {
       if (!there(choice)) continue;
-      // One ampere through the loop: out of the line at the first place into its PE, out of the PE at the
-      // second into its line.
-      std::vector<Grid::Injection> unit;
-      Complex local = 0;
-      auto put = [&](const GridPlace& place, Conductor c, double sign) {
-        const auto i = static_cast<int>(index(c));
-        if (place.run < 0) {
-          unit.push_back({terminal_of(place.node, c), -sign});
-          local += place.beyond(i, i);
-          return;
+      // One ampere through each loop: out of the line into the PE of the same place.
+      Complex own[2];
+      auto unit = [&](const GridPlace& place, Conductor line, Complex& local) {
+        std::vector<Grid::Injection> injections;
+        for (const auto& [c, sign] : {std::pair{line, 1.0}, std::pair{PE, -1.0}}) {
+          const auto i = static_cast<int>(index(c));
+          if (place.run < 0) {
+            injections.push_back({terminal_of(place.node, c), -sign});
+            local += place.beyond(i, i);
+            continue;
+          }
+          const Grid::Ends ends = grid.ends(place.run);
+          injections.push_back({terminal_of(ends.from, c), -sign * (1 - place.fraction)});
+          injections.push_back({terminal_of(ends.to, c), -sign * place.fraction});
+          local += place.fraction * (1 - place.fraction) * one_cable(grid, place)(i, i);
         }
-        const Grid::Ends ends = grid.ends(place.run);
-        unit.push_back({terminal_of(ends.from, c), -sign * (1 - place.fraction)});
-        unit.push_back({terminal_of(ends.to, c), -sign * place.fraction});
-        local += place.fraction * (1 - place.fraction) *
-                 single(grid.impedance(place.run), grid.carried(place.run), place.in_parallel)(i, i);
+        return injections;
       };
-      put(a, choice.first, 1);
-      put(a, PE, -1);
-      put(b, PE, 1);
-      put(b, choice.second, -1);
-      const std::vector<Complex> potentials = grid.potentials(unit);
-      Complex loop = local + 2.0 * through;
-      for (const Grid::Injection& injection : unit) loop += injection.amps * potentials[at(injection.terminal)];
-      const double amps = result.volts / std::abs(loop);
+      const std::vector<Grid::Injection> first = unit(a, choice.first, own[0]);
+      const std::vector<Grid::Injection> second = unit(b, choice.second, own[1]);
+      auto drop = [](const std::vector<Grid::Injection>& through_unit, const std::vector<Complex>& potentials) {
+        Complex volts = 0;
+        for (const Grid::Injection& i : through_unit) volts += i.amps * potentials[at(i.terminal)];
+        return volts;
+      };
+      const std::vector<Complex> by_first = grid.potentials(first);
+      const std::vector<Complex> by_second = grid.potentials(second);
+      const Complex aa = drop(first, by_first) + own[0] + through;
+      const Complex bb = drop(second, by_second) + own[1] + through;
+      const Complex ab = drop(first, by_second);
+      Complex ia, ib, loop;
+      double volts = between;
+      if (closed(a, choice.first) && closed(b, choice.second)) {
+        volts = to_earth;
+        const Complex ea = std::polar(volts, -turn * static_cast<double>(index(choice.first)));
+        const Complex eb = std::polar(volts, -turn * static_cast<double>(index(choice.second)));
+        const Complex determinant = aa * bb - ab * ab;
+        ia = (ea * bb - eb * ab) / determinant;
+        ib = (eb * aa - ea * ab) / determinant;
+        const bool first_governs = most ? std::abs(ia) >= std::abs(ib) : std::abs(ia) <= std::abs(ib);
+        loop = first_governs ? ea / ia : eb / ib;
+      } else {
+        loop = aa + bb - 2.0 * ab;
+        ia = volts / loop;
+        ib = -ia;
+      }
+      const double amps = volts / std::abs(loop);
       constexpr double kEqual = 1e-9;  // equal choices: the first in the order of lines
       if (best >= 0 && (most ? amps <= result.amps * (1 + kEqual) : amps >= result.amps * (1 - kEqual))) continue;
       best = v;
-      lines = &choice;
       result.phases = choice.phases;
+      result.volts = volts;
       result.amps = amps;
       result.loop = loop;
       result.ohms = std::abs(loop);
-      result.x_over_r = ratio(loop);
-      chosen = unit;
-      for (Grid::Injection& injection : chosen) injection.amps *= result.volts / loop;
+      result.x_over_r = x_over_r(loop);
+      flow.pair_lines = {static_cast<int>(index(choice.first)), static_cast<int>(index(choice.second))};
+      flow.pair_amps = {ia, ib};
+      chosen.clear();
+      for (const Grid::Injection& i : first) chosen.push_back({i.terminal, i.amps * ia});
+      for (const Grid::Injection& i : second) chosen.push_back({i.terminal, i.amps * ib});
     }
   }
   if (best < 0) {
@@ -170,10 +188,13 @@ StateGrid::Flow StateGrid::flow_between(const GridPlace& a, const GridPlace& b, 
     return flow;
   }
   Eigen::Matrix<Complex, 5, 1> into = Eigen::Matrix<Complex, 5, 1>::Zero();
-  into(static_cast<int>(index(lines->first))) = result.volts / result.loop;
-  into(static_cast<int>(index(lines->second))) = -result.volts / result.loop;
+  into(flow.pair_lines[0]) = flow.pair_amps[0];
+  into(flow.pair_lines[1]) = flow.pair_amps[1];
+  into(4) = -flow.pair_amps[0] - flow.pair_amps[1];
   Flow traced = trace(best, chosen, nullptr, into);
   traced.current = result;
+  traced.pair_lines = flow.pair_lines;
+  traced.pair_amps = flow.pair_amps;
   if (most) traced.current.peak = peak_factor(result.x_over_r) * std::numbers::sqrt2 * result.amps;
   return traced;
 }

@@ -311,9 +311,13 @@ void find_electrodes(const Network& network, const std::vector<int>& order, cons
       tree.electrode[at(b)] = network.boards[at(b)].electrode;
       queue.push_back(b);
     }
+  std::vector<std::vector<int>> around(network.boards.size());
+  for (std::size_t e = 0; e < edges.size(); ++e)
+    for (const int end : {edges[e].from, edges[e].to}) around[at(end)].push_back(static_cast<int>(e));
   for (std::size_t i = 0; i < queue.size(); ++i)
-    for (const Edge& edge : edges) {
-      if (edge.kind == Edge::Kind::transformer || (edge.from != queue[i] && edge.to != queue[i])) continue;
+    for (const int e : around[at(queue[i])]) {
+      const Edge& edge = edges[at(e)];
+      if (edge.kind == Edge::Kind::transformer) continue;
       const Submain* submain = edge.kind == Edge::Kind::submain ? &network.submains[at(edge.index)] : nullptr;
       if (submain != nullptr && !submain->pen && !submain->conductors.has(Conductor::PE)) continue;
       const int other = edge.from == queue[i] ? edge.to : edge.from;

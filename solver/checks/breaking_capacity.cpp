@@ -71,11 +71,30 @@ Finding judge_device(const Situation& s, const Device& device, const std::string
   return finding;
 }
 
+// Devices that stand at a board but belong to a transformer, link or machine: each may see at most the current
+// of all feeds of the board together.
+std::vector<std::pair<const Device*, std::string>> devices_at(const Situation& s) {
+  std::vector<std::pair<const Device*, std::string>> devices;
+  auto add = [&](const Device& device, const std::string& whose) {
+    if (breaks(device)) devices.emplace_back(&device, whose);
+  };
+  for (const models::Transformer& t : s.network->transformers) {
+    if (t.to == s.board_index) add(t.device, t.name);
+    if (t.from == s.board_index) add(t.primary_device, t.name);
+  }
+  for (const models::Link& link : s.network->links)
+    if (link.from == s.board_index) add(link.device, link.name);
+  for (const models::Source& source : s.network->sources)
+    if (source.board == s.board_index && (source.generator.present || source.inverter.present))
+      add(source.device, source.name);
+  return devices;
+}
+
 bool applies(const Situation& s) {
   // A supply's device is the distributor's; a transformer's is not.
   if (s.kind == SubjectKind::tails) return s.source->transformer && breaks(*s.device);
   if (s.kind != SubjectKind::board) return breaks(*s.device);
-  if (breaks(s.board->incomer)) return true;
+  if (breaks(s.board->incomer) || !devices_at(s).empty()) return true;
   for (const models::Group& group : s.board->groups)
     if (breaks(group.device)) return true;
   return false;
@@ -89,6 +108,12 @@ std::vector<Finding> judge(const Situation& s) {
     if (!breaks(group.device)) continue;
     findings.push_back(judge_device(s, group.device, s.address + "." + group.name));
     findings.back().subject = s.address + "." + group.name;
+  }
+  Situation shared = s;
+  shared.looped = true;
+  for (const auto& [device, whose] : devices_at(s)) {
+    findings.push_back(judge_device(shared, *device, whose));
+    findings.back().subject = whose;
   }
   return findings;
 }

@@ -45,6 +45,10 @@ void lack(Finding& finding, const std::string& need, const std::string& reason);
 /// others carry. @return whether it is so
 bool lack_sequence(Finding& finding, const Situation& s);
 
+/// Undecided where inverters alone feed the subject and give up before `time` [s]: after their last stage nothing
+/// flows that a device could clear. @return whether it is so
+bool lack_source(Finding& finding, const Situation& s, double time);
+
 /// Sets value, limit, margin and verdict for "value must not exceed limit": margin = 1 - value / limit.
 void compare_upper(Finding& finding, double value, double limit, models::Quantity unit);
 

@@ -105,6 +105,7 @@ std::vector<Finding> judge(const Situation& s) {
     lack(finding, "time-current points or let-through of the device of " + by->address,
          "the standard's gate is too late for the conductor, the device itself may not be");
   }
+  if (finding.verdict == Verdict::meets) lack_source(finding, s, time);
   finding.summary = fmt::format(
       "{} flows at the far end ({}): {} operates {}; {} demanded", say(amps, Quantity::current), word(fault),
       by->device->text, std::isfinite(time) ? "within " + say(time, Quantity::time) : std::string("at no sure time"),

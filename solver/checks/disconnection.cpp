@@ -101,7 +101,14 @@ std::vector<Finding> judge(const Situation& s) {
     lack(finding, current.needs, "the least line-earth current of the supply is not declared");
     return {finding};
   }
-  const Disconnection cleared = disconnection(s.path, current.amps, limit.seconds);
+  Disconnection cleared = disconnection(s.path, current.amps, limit.seconds);
+  // An inverter gives more at first: a stage that lasts until the device has operated clears it.
+  for (const models::Stage& stage : s.stages) {
+    const double unlimited = current.volts / std::abs(current.loop);
+    const Disconnection early =
+        disconnection(s.path, std::max(current.amps, std::min(stage.amps, unlimited)), limit.seconds);
+    if (early.time <= stage.seconds && early.time < cleared.time) cleared = early;
+  }
   if (cleared.by == nullptr) {
     lack(finding, "device of " + s.address, "no device on the way breaks a line-earth fault");
     return {finding};
@@ -122,6 +129,7 @@ std::vector<Finding> judge(const Situation& s) {
       lack(finding, "armour_x of the armoured cables on the way to " + s.address,
            "the reactance of the armour, which is not known, could make it fail");
   }
+  if (finding.verdict == Verdict::meets) lack_source(finding, s, cleared.time);
   if (finding.verdict == Verdict::fails && !cleared.residual && !device.interpolated.empty() &&
       device.interpolated.time_at(current.amps) <= limit.seconds)
     lack(finding,

@@ -43,6 +43,13 @@ bool lack_sequence(Finding& finding, const Situation& s) {
   return true;
 }
 
+bool lack_source(Finding& finding, const Situation& s, double time) {
+  if (s.stages.empty() || time <= s.stages.back().seconds) return false;
+  lack(finding, "what " + s.source->name + " delivers after its last stage",
+       "the source gives up before the device is sure to operate");
+  return true;
+}
+
 void compare_upper(Finding& finding, double value, double limit, models::Quantity unit) {
   finding.value = value;
   finding.limit = limit;

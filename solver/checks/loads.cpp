@@ -47,6 +47,11 @@ Demand demand_of(const Situation& s) {
   if (s.circuit != nullptr)
     return {s.circuit->load.value, 1.0, s.circuit->load.given, true, "load of " + s.address, {}};
   if (s.submain != nullptr) return s.loading->submain[static_cast<std::size_t>(s.submain - s.network->submains.data())];
+  // What a transformer in the network feeds is the demand of its board.
+  const bool of_network = !s.network->sources.empty() && s.source >= s.network->sources.data() &&
+                          s.source < s.network->sources.data() + s.network->sources.size();
+  if (s.kind == SubjectKind::board && (!of_network || s.tree->grid))
+    return s.loading->demand[static_cast<std::size_t>(s.board_index)];
   return s.loading->source[static_cast<std::size_t>(s.source - s.network->sources.data())];
 }
 
@@ -180,7 +185,7 @@ std::vector<Finding> judge_drop(const Situation& s) {
     limit += std::min(rules.drop_extra_max, rules.drop_extra_per_m * (s.drop.length - rules.drop_extra_from));
   finding.limit = limit;
   if (!s.drop.known) {
-    lack(finding, s.drop.needs, "a load on the way is not known");
+    lack(finding, s.drop.needs, s.drop.why);
     return {finding};
   }
   compare_upper(finding, s.drop.share, limit, Quantity::percentage);

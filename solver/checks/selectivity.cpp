@@ -107,12 +107,44 @@ Finding judge_pair(const Situation& s, const Protector& down, const Protector& u
   return finding;
 }
 
+// A board on the way that several ways feed: their devices share the current, and which of them acts first
+// is not known. -1: none.
+int shared_board(const Situation& s) {
+  if (!s.tree->grid) return -1;
+  int board = s.kind == SubjectKind::board ? -1 : s.board_index;
+  while (board >= 0) {
+    const auto b = static_cast<std::size_t>(board);
+    const bool one_way =
+        s.tree->feeder[b] >= 0 || s.tree->transformer[b] >= 0 || s.tree->link[b] >= 0 || s.tree->sole[b];
+    if (!one_way) return board;
+    board = s.tree->transformer[b] >= 0 ? -1 : s.tree->above[b];
+  }
+  return -1;
+}
+
+Finding undecided_above(const Situation& s, int board) {
+  Finding finding = begin_finding(s, kName);
+  const std::string& name = s.network->boards[static_cast<std::size_t>(board)].name;
+  finding.upstream = "feeds of " + name;
+  finding.unit = Quantity::current;
+  finding.condition = word(Condition::maximum);
+  finding.clause = s.network->rules.selectivity_clause;
+  finding.verdict = required_of(s).empty() ? Verdict::noted : Verdict::undecided;
+  finding.selectivity = word(Selectivity::undecided);
+  finding.basis = "several ways feed " + name + ": their shares change as others clear";
+  finding.reason = finding.basis;
+  const FaultCurrent* most = greatest(s.origin_max, kAllFaults, nullptr);
+  if (most != nullptr && most->known) finding.available_A = most->amps;
+  return finding;
+}
+
 std::vector<Finding> judge(const Situation& s) {
   std::vector<Finding> findings;
+  if (const int board = shared_board(s); board >= 0) findings.push_back(undecided_above(s, board));
   const Protector& down = s.path.back();
   // Up to the next device that breaks overcurrents; beyond it only residual elements still see what
   // the downstream device sees.
-  bool beyond = false;
+  bool beyond = !findings.empty();  // the devices past shared ones see another current
   for (auto up = std::next(s.path.rbegin()); up != s.path.rend(); ++up) {
     const bool overcurrents = !beyond && !down.device->overcurrent.empty() && !up->device->overcurrent.empty();
     if (overcurrents || !up->device->residual.empty()) findings.push_back(judge_pair(s, down, *up, overcurrents));
