@@ -214,6 +214,26 @@ void check_electrodes(Context& context) {
   }
 }
 
+// A combined conductor must not break easily: IEC 60364-5-54, 543.4.1 (from memory), 10 mm2 of copper or 16 mm2
+// of aluminium.
+void check_pens(Context& context) {
+  auto check = [&](const models::Cable& cable, bool pen, const std::string& what, models::Origin at) {
+    if (!pen || !cable.neutral) return;
+    const bool copper = cable.neutral->material == models::Material::copper;
+    const double least = copper ? 10e-6 : 16e-6;  // [m2]
+    if (cable.neutral->area >= least * (1 - 1e-9)) return;
+    context.complaints.warn(
+        at, 1,
+        fmt::format("the PEN of {} has {}", what, models::format_quantity(cable.neutral->area, models::Quantity::area)),
+        copper ? "at least 10 mm2 of copper is demanded (IEC 60364-5-54, 543.4)"
+               : "at least 16 mm2 of aluminium is demanded (IEC 60364-5-54, 543.4)");
+  };
+  for (const models::Submain& s : context.network.submains)
+    check(s.cable, s.pen, fmt::format("submain '{}'", s.name), s.at);
+  for (const models::Circuit& c : context.network.circuits)
+    check(c.cable, c.pen, fmt::format("circuit '{}'", models::address(context.network, c)), c.at);
+}
+
 }  // namespace
 
 void join_up(Context& context) {
@@ -223,6 +243,7 @@ void join_up(Context& context) {
   walk_phases(context);
   check_demands(context);
   check_electrodes(context);
+  check_pens(context);
 }
 
 }  // namespace sunder::netlists

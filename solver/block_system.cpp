@@ -369,6 +369,30 @@ std::size_t BlockSystem::bytes() const noexcept {
          (row_.capacity() + first_.capacity() + value_at_.capacity() + pivot_at_.capacity()) * sizeof(std::size_t);
 }
 
+std::vector<Complex> BlockSystem::times(const std::vector<Complex>& x) const {
+  std::vector<Complex> y(x.size());
+  for (std::size_t c = 0; c < size_.size(); ++c) {
+    const int b = block_at_[c];
+    const int m = size_[at(b)];
+    const Complex* xc = x.data() + row_[at(b)];
+    Complex* yc = y.data() + row_[at(b)];
+    const Complex* pivot = values_.data() + pivot_at_[c];
+    for (int i = 0; i < m; ++i)
+      for (int j = 0; j < m; ++j) yc[i] += pivot[i * m + j] * xc[j];
+    for (std::size_t e = first_[c]; e < first_[c + 1]; ++e) {
+      const int q = block_at_[at(below_[e])];
+      const int mq = size_[at(q)];
+      const Complex* a = values_.data() + value_at_[e];
+      for (int i = 0; i < m; ++i)
+        for (int j = 0; j < mq; ++j) {
+          yc[i] += a[i * mq + j] * x[row_[at(q)] + at(j)];
+          y[row_[at(q)] + at(j)] += a[i * mq + j] * xc[i];
+        }
+    }
+  }
+  return y;
+}
+
 void BlockSystem::solve(std::vector<Complex>& x) const {
   const int n = static_cast<int>(size_.size());
   for (int c = 0; c < n; ++c) {  // L y = x

@@ -53,6 +53,9 @@ class BlockSystem {
   /// x := inverse(A) x, x by block in the order of blocks. Precondition: factor(), not yet invert().
   void solve(std::vector<Complex>& x) const;
 
+  /// A x. Precondition: values set, not yet factor().
+  [[nodiscard]] std::vector<Complex> times(const std::vector<Complex>& x) const;
+
   /// First entry of a block in a vector.
   [[nodiscard]] std::size_t offset(int block) const noexcept { return row_[static_cast<std::size_t>(block)]; }
   /// Bytes held.

@@ -156,7 +156,7 @@ void put(const FaultCurrent& current, FaultRow& row) {
   row.needs = current.needs;
   row.current = current.known ? current.amps : kNone;
   row.peak = current.known ? current.peak : kNone;
-  row.x_over_r = current.known ? current.x_over_r : kNone;
+  row.x_over_r = current.known && current.x_over_r >= 0 ? current.x_over_r : kNone;  // none of a capacitive loop
   row.loop_ohms = current.known ? current.ohms : kNone;
   row.driving_volts = current.volts;
 }

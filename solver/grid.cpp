@@ -2,6 +2,7 @@
 #include "solver/grid.h"
 
 #include <algorithm>
+#include <limits>
 
 #include "solver/grid_parts.h"
 
@@ -157,6 +158,21 @@ bool Grid::solve(bool factors_only) {
     walk();
   }
   return true;
+}
+
+double Grid::residual() {
+  if (unknown_.empty()) number();
+  fill();
+  const BlockSystem equations = system_;
+  if (!system_.factor()) return std::numeric_limits<double>::infinity();
+  std::vector<Complex> x(system_.rows());
+  for (std::size_t i = 0; i < x.size(); ++i) x[i] = i % 2 == 0 ? 1.0 : -1.0;
+  const std::vector<Complex> wanted = x;
+  system_.solve(x);
+  const std::vector<Complex> found = equations.times(x);
+  double most = 0;
+  for (std::size_t i = 0; i < x.size(); ++i) most = std::max(most, std::abs(found[i] - wanted[i]));
+  return most;
 }
 
 void Grid::walk() {

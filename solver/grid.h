@@ -65,6 +65,9 @@ class Grid {
   /// @param factors_only  for `potentials` instead of `thevenin`
   /// @return false where the equations are singular; `trouble_node()` then tells near which node
   [[nodiscard]] bool solve(bool factors_only = false);
+  /// How far the solution is from the equations: one ampere into every unknown, alternately out of it, the
+  /// greatest current left over [A]. Leaves the factors behind as solve(true) does; infinite where singular.
+  [[nodiscard]] double residual();
   [[nodiscard]] int trouble_node() const noexcept { return trouble_; }
 
   [[nodiscard]] std::size_t nodes() const noexcept { return conductors_.size(); }

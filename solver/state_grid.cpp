@@ -155,6 +155,12 @@ int StateGrid::view_for(const std::vector<SourceValue>& values, double reactance
     trouble_ = "impedances that cancel one another around " + where;
     return -1;
   }
+  // The solve checks itself: what is left over of an ampere.
+  constexpr double kLeftOver = 1e-6;
+  if (Grid again = view.grid; !(again.residual() <= kLeftOver)) {
+    trouble_ = "impedances of more equal size: the equations are solved to no more than 1e-6";
+    return -1;
+  }
   views_.push_back(std::move(view));
   return static_cast<int>(views_.size()) - 1;
 }

@@ -2,6 +2,7 @@
 // What the graph of a network can find before anything is solved.
 #include <fmt/format.h>
 
+#include <algorithm>
 #include <cmath>
 
 #include "solver/study.h"
@@ -71,6 +72,71 @@ void find_voltage_conflicts(const Network& network, std::vector<Trouble>& troubl
   }
 }
 
+// Parts that cables and links join, each board by the least board of its part.
+std::vector<int> joined_parts(const Network& network, const StateTree& tree) {
+  const models::SupplyState& state = network.states[at(tree.state)];
+  std::vector<int> part(network.boards.size());
+  for (std::size_t b = 0; b < part.size(); ++b) part[b] = static_cast<int>(b);
+  auto join = [&](int a, int b) {
+    if (!tree.live(a) || !tree.live(b)) return;
+    const int keep = std::min(part[at(a)], part[at(b)]);
+    const int drop = std::max(part[at(a)], part[at(b)]);
+    if (keep == drop) return;
+    for (int& p : part)
+      if (p == drop) p = keep;
+  };
+  for (std::size_t i = 0; i < network.submains.size(); ++i)
+    if (!state.submain_open[i]) join(network.submains[i].from, network.submains[i].to);
+  for (std::size_t i = 0; i < network.links.size(); ++i)
+    if (state.link_closed[i]) join(network.links[i].from, network.links[i].to);
+  return part;
+}
+
+// Transformers that meet on both sides must turn the phases alike: unequal clock numbers in parallel are a
+// short-circuit.
+void find_phase_conflicts(const Network& network, std::vector<Trouble>& troubles) {
+  if (network.transformers.size() < 2) return;
+  for (std::size_t i = 0; i < network.states.size(); ++i) {
+    const StateTree tree = state_tree(network, static_cast<int>(i));
+    const std::vector<int> part = joined_parts(network, tree);
+    struct Turn {
+      int hours = -1;
+      int by = -1;  // transformer that told it
+    };
+    std::vector<Turn> turn(network.boards.size());
+    for (const int b : tree.order) {
+      if (turn[at(part[at(b)])].hours < 0) turn[at(part[at(b)])].hours = 0;
+      for (bool more = true; more;) {
+        more = false;
+        for (std::size_t t = 0; t < network.transformers.size(); ++t) {
+          const models::Transformer& of = network.transformers[t];
+          if (network.states[i].transformer_open[t] || !tree.live(of.from) || !tree.live(of.to)) continue;
+          Turn& from = turn[at(part[at(of.from)])];
+          Turn& to = turn[at(part[at(of.to)])];
+          const int hours = (from.hours + of.clock) % 12;
+          if (from.hours < 0 && to.hours < 0) continue;
+          if (from.hours < 0) {
+            from = {(to.hours + 12 - of.clock % 12) % 12, static_cast<int>(t)};
+            more = true;
+          } else if (to.hours < 0) {
+            to = {hours, static_cast<int>(t)};
+            more = true;
+          } else if (to.hours != hours) {
+            const bool known = to.by >= 0;
+            troubles.push_back(
+                {fmt::format("transformer '{}' turns the phases of board '{}' by {} hours and not by {} in state '{}': "
+                             "unequal clock numbers must not be joined",
+                             of.name, network.boards[at(of.to)].name, hours, to.hours, network.states[i].name),
+                 of.at, known ? "what it is joined with" : "",
+                 known ? network.transformers[at(to.by)].at : models::Origin{}});
+            return;
+          }
+        }
+      }
+    }
+  }
+}
+
 void find_missing_conductors(const Network& network, std::vector<Trouble>& troubles) {
   for (std::size_t i = 0; i < network.states.size(); ++i) {
     const StateTree tree = state_tree(network, static_cast<int>(i));
@@ -104,6 +170,7 @@ std::vector<Trouble> check_topology(const Network& network) {
   find_dead_boards(network, troubles);
   if (!troubles.empty()) return troubles;
   find_voltage_conflicts(network, troubles);
+  find_phase_conflicts(network, troubles);
   if (!troubles.empty()) return troubles;
   find_missing_conductors(network, troubles);
   return troubles;

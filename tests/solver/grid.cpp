@@ -199,6 +199,22 @@ TEST_CASE("Random grids have the loops, potentials and currents of their dense e
       CHECK(near(v[k], w(static_cast<Eigen::Index>(k))));
 }
 
+TEST_CASE("A grid tells how far its solution is from the equations", "[grid]") {
+  std::mt19937 engine(GENERATE(range(1U, 11U)));
+  tests::PlanLimits limits;
+  Grid grid = tests::grid_of(tests::random_plan(engine, limits));
+  grid.prepare();
+  CHECK(grid.residual() < 1e-6);
+  // An impedance of nothing beside one of everything leaves rounding behind.
+  GridPlan plan = one_supply(3);
+  plan.runs = {{0, 1, kFive, {1e-14, 1e-14, 1e-14, false}},
+               {1, 2, kFive, {1e6, 1e6, 1e6, false}},
+               {2, 0, kFive, {1e6, 1e6, 1e6, false}}};
+  Grid stiff = tests::grid_of(plan);
+  stiff.prepare();
+  CHECK(stiff.residual() > 1e-6);
+}
+
 TEST_CASE("Stripping changes nothing", "[grid]") {
   std::mt19937 engine(GENERATE(range(201U, 221U)));
   GridPlan plan = tests::random_plan(engine, {20, true, true, true, true});

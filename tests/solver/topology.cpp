@@ -230,3 +230,46 @@ C1 = { phases = "L1", device = "B 6 A 6 kA", cable = "singles-pvc-cu 1.5 mm2", c
   REQUIRE(reading.diagnostics.size() >= 1);
   CHECK(reading.diagnostics[0].message == "circuit 'main/C1' cannot do without a cpc");
 }
+
+TEST_CASE("Transformers of unequal clock numbers in parallel are refused by both names", "[topology]") {
+  const auto text = [](const std::string& second) {
+    return R"(rules = "IEC 60364"
+[supply.q]
+feeds = "hv"
+voltage = "11 kV"
+maximum = { power = "250 MVA" }
+minimum = { power = "150 MVA" }
+[board.hv]
+[board.lv]
+[transformer.T1]
+from = "hv"
+feeds = "lv"
+vector = "Dyn11"
+voltage = "230/400 V"
+primary = "11 kV"
+rating = "500 kVA"
+uk = "4.75 %"
+losses = "5.1 kW"
+earthing = "TN-S"
+[transformer.T2]
+from = "hv"
+feeds = "lv"
+vector = ")" +
+           second +
+           R"("
+voltage = "230/400 V"
+primary = "11 kV"
+rating = "500 kVA"
+uk = "4.75 %"
+losses = "5.1 kW"
+earthing = "TN-S"
+)";
+  };
+  CHECK(solver::check_topology(tests::read(text("Dyn11"))).empty());
+  const auto troubles = solver::check_topology(tests::read(text("Dyn5")));
+  REQUIRE(troubles.size() == 1);
+  CHECK(troubles.front().message ==
+        "transformer 'T2' turns the phases of board 'lv' by 5 hours and not by 11 in state 'normal': unequal clock "
+        "numbers must not be joined");
+  CHECK(troubles.front().note == "what it is joined with");
+}
