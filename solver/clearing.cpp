@@ -202,8 +202,10 @@ Heat greatest_heat(const Device& device, double current, double kappa) {
 
 double least_heat(const Device& device, double current) noexcept {
   const double time = device.overcurrent.earliest.time_at(current);
-  // "At once" is drawn at kImmediately but assures nothing.
-  return std::isinf(time) || time <= models::kImmediately ? 0.0 : current * current * time;
+  // "At once" is drawn at kImmediately but assures nothing; and within half a cycle a device may limit the
+  // current, so that the prospective one tells nothing of the least heat.
+  constexpr double kHalfCycle = 0.008;  // [s] at 60 Hz, the shorter
+  return std::isinf(time) || time <= std::max(models::kImmediately, kHalfCycle) ? 0.0 : current * current * time;
 }
 
 std::vector<double> step_currents(const models::Curve& curve) {

@@ -17,6 +17,7 @@
 #include <vector>
 
 #include "netlists/reader.h"
+#include "solver/fault_study.h"
 #include "solver/study.h"
 #include "tests/fuzz/mutations.h"
 
@@ -126,6 +127,17 @@ void solve(const models::Network& network, Dice& dice, long iteration, const std
       broken(iteration, fmt::format("current {} at {}", row.current, row.node), text);
     }
   }
+  // One place looked at closely, also along a run.
+  solver::FaultQuery query;
+  const std::size_t n = network.submains.size();
+  query.at = n > 0 && dice.below(2) == 0 ? network.submains[dice.below(n)].name + "@40%"
+                                         : network.boards[dice.below(network.boards.size())].name;
+  query.currents = query.touch = true;
+  const auto studied = solver::study_faults(network, query);
+  if (const auto* details = std::get_if<std::vector<solver::FaultDetail>>(&studied))
+    for (const solver::FaultDetail& detail : *details)
+      if (detail.row.known && !(detail.imbalance < 1e-3))
+        broken(iteration, fmt::format("currents at {} do not add up: {}", detail.row.node, detail.imbalance), text);
   solver::CheckOptions options;
   options.remedies = dice.below(10) == 0;
   options.every_state = dice.below(4) == 0;
