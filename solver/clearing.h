@@ -68,7 +68,8 @@ struct Heat {
 /// @param kappa  peak factor of the fault, for m (IEC 60909-0, heat of the d.c. component)
 [[nodiscard]] Heat greatest_heat(const models::Device& device, double current, double kappa);
 
-/// Least I2t that must pass at a prospective current [A]: I2 times the earliest time.
+/// Least I2t that must pass at a prospective current [A]: I2 times the earliest time; nothing within half a cycle,
+/// where a device may limit the current.
 [[nodiscard]] double least_heat(const models::Device& device, double current) noexcept;
 
 /// Heat of the d.c. component relative to that of the a.c. over `time` [s]:

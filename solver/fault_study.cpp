@@ -181,6 +181,12 @@ class Study {
   // What machines give decays. Their parts are taken in phase with the whole and referred by nominal voltages.
   void add_decay(FaultDetail& detail, const StateGrid::Flow& flow, const GridPlace& where) const {
     const double U = system_of(network_, tree_, where.board).U;
+    // Method B multiplies by 1.15 where several ways lead to the fault; R/X of every branch is not looked at, which
+    // is on the safe side.
+    const bool meshed = std::find(tree_.looped.begin(), tree_.looped.end(), true) != tree_.looped.end() ||
+                        network_.states[at(tree_.state)].sources.size() > 1;
+    const double kappa = meshed ? iec60909::kappa_b(flow.current.loop, U, false) : iec60909::kappa(flow.current.loop);
+    detail.peak_by_b = iec60909::peak(kappa, flow.current.amps);
     const double driving = driving_voltage_at(network_, tree_, where.board, condition_, Fault::three_phase);
     struct Machine {
       double amps, rated, drop, watts;  // at the fault's level; drop relative to its own driving voltage

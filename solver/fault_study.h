@@ -60,6 +60,7 @@ struct FaultDetail {
   std::string between_boards;            ///< "intake and store"
   // Of three-phase faults in the maximum with currents = "IEC 60909":
   std::vector<BreakingCurrent> breaking;  ///< Ib at 0.02, 0.05, 0.1 and 0.25 s
+  double peak_by_b = kNone;               ///< ip by method B beside that by method C in `row` [A]
   double steady = kNone;                  ///< Ik; not known with generators whose sustained current is not declared
   bool motors_negligible = false;         ///< sum IrM <= 0.01 I"k: they may be left out (they are not)
   std::string undefined;                  ///< with `currents`: a link whose share is not defined, as it is in a loop

@@ -120,6 +120,8 @@ std::string decay_text(const FaultDetail& fault, const TextStyle& style) {
                         value_text(b.seconds, Quantity::time));
   text +=
       std::isnan(fault.steady) ? "; Ik not known" : fmt::format("; Ik {}", value_text(fault.steady, Quantity::current));
+  if (std::isfinite(fault.peak_by_b))
+    text += fmt::format("; peak by method B {}", value_text(fault.peak_by_b, Quantity::current, 3));
   if (fault.motors_negligible) text += "; the motors may be left out by the standard and are counted all the same";
   return wrap(text, style.width, "  ");
 }

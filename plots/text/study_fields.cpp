@@ -84,6 +84,8 @@ const std::vector<Field<solver::FaultDetail>>& fault_detail_fields() {
            list.push_back({{"seconds", Value(b.seconds)}, {"amps", Value(b.amps)}});
          return Value(list);
        }},
+      {"peak_b_A", "peak by method B", "A", "ip by method B in the same case; `peak` is by method C; else null",
+       [](const Network&, const Row& r) { return Value(r.peak_by_b); }},
       {"steady_A", "steady-state current", "A", "Ik in the same case; null: not known",
        [](const Network&, const Row& r) { return Value(r.steady); }},
       {"motors_negligible", "motors negligible", "",
