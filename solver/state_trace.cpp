@@ -3,6 +3,7 @@
 /// What flows everywhere in a grid during a fault.
 #include <fmt/format.h>
 
+#include <Eigen/QR>
 #include <algorithm>
 #include <cmath>
 #include <limits>
@@ -202,10 +203,11 @@ StateGrid::Flow StateGrid::flow_between(const GridPlace& a, const GridPlace& b, 
 namespace {
 
 // Joins carry what their terminals' other elements leave over. Where they form a tree, taking its
-// leaves one by one gives every share; in a loop of joins the shares are not defined.
+// leaves one by one gives every share. What remains has loops: a join between two of them is still
+// defined, one of a loop is not and takes the share that equal resistances would give it.
 struct JoinShares {
   std::vector<Complex> amps;  // of each join, from its first to its second terminal
-  bool defined = true;
+  std::vector<bool> defined;
 };
 
 JoinShares share(const std::vector<std::pair<int, int>>& joins, std::vector<Complex> left) {
@@ -233,7 +235,38 @@ JoinShares share(const std::vector<std::pair<int, int>>& joins, std::vector<Comp
       done[j] = changed = true;
     }
   }
-  result.defined = std::all_of(done.begin(), done.end(), [](bool d) { return d; });
+  result.defined.assign(joins.size(), true);
+  std::vector<std::size_t> rest;
+  std::vector<int> number(left.size(), -1);
+  Eigen::Index n = 0;
+  for (std::size_t j = 0; j < joins.size(); ++j) {
+    if (done[j]) continue;
+    rest.push_back(j);
+    for (const int end : {joins[j].first, joins[j].second})
+      if (end >= 0 && number[at(end)] < 0) number[at(end)] = static_cast<int>(n++);
+  }
+  if (rest.empty()) return result;
+  Eigen::MatrixXd ways = Eigen::MatrixXd::Zero(static_cast<Eigen::Index>(rest.size()), n);
+  for (std::size_t r = 0; r < rest.size(); ++r) {
+    const auto [a, b] = joins[rest[r]];
+    if (a >= 0) ways(static_cast<Eigen::Index>(r), number[at(a)]) = 1;
+    if (b >= 0) ways(static_cast<Eigen::Index>(r), number[at(b)]) = -1;
+  }
+  Eigen::VectorXcd out = Eigen::VectorXcd::Zero(n);
+  for (std::size_t k = 0; k < left.size(); ++k)
+    if (number[k] >= 0) out(number[k]) = -left[k];
+  const Eigen::MatrixXd inverse = (ways.transpose() * ways).completeOrthogonalDecomposition().pseudoInverse();
+  const Eigen::VectorXcd amps = ways * (inverse * out);
+  for (std::size_t r = 0; r < rest.size(); ++r) {
+    const auto row = static_cast<Eigen::Index>(r);
+    result.amps[rest[r]] = amps(row);
+    // All of an ampere between its ends goes through a join that is the only way between them.
+    const double own = (ways.row(row) * inverse * ways.row(row).transpose())(0, 0);
+    result.defined[rest[r]] = own > 1 - 1e-9;
+    const auto [a, b] = joins[rest[r]];
+    if (a >= 0) left[at(a)] += amps(row);
+    if (b >= 0) left[at(b)] -= amps(row);
+  }
   return result;
 }
 
@@ -296,23 +329,24 @@ StateGrid::Flow StateGrid::trace(int view, const std::vector<Grid::Injection>& i
         if (piece.terminals[k] >= 0) amps(static_cast<Eigen::Index>(k)) = piece.sign * all(piece.terminals[k]);
     } else {
       std::vector<std::pair<int, int>> told;
+      bool open_share = false;
       for (const auto& join : piece.joins) {
         const std::pair<int, int> ends{one(join.first), one(join.second)};
         if (std::find(told.begin(), told.end(), ends) != told.end()) continue;
         told.push_back(ends);
         for (std::size_t j = 0; j < joins.size(); ++j) {
+          const bool this_one = joins[j] == ends || joins[j] == std::pair{ends.second, ends.first};
+          open_share = open_share || (this_one && !shares.defined[j]);
           if (joins[j] == ends) amps(join.first % Grid::kSlots) += shares.amps[j];
           if (joins[j] == std::pair{ends.second, ends.first}) amps(join.first % Grid::kSlots) -= shares.amps[j];
         }
       }
-      if (!shares.defined && !piece.joins.empty()) flow.undefined += (flow.undefined.empty() ? "" : ", ") + piece.name;
+      if (open_share) flow.undefined += (flow.undefined.empty() ? "" : ", ") + piece.name;
     }
     flow.pieces.push_back(amps);
   }
-  if (shares.defined) {
-    for (const Complex amps : left) flow.imbalance = std::max(flow.imbalance, std::abs(amps));
-    flow.imbalance /= scale;
-  }
+  for (const Complex amps : left) flow.imbalance = std::max(flow.imbalance, std::abs(amps));
+  flow.imbalance /= scale;
   return flow;
 }
 
