@@ -118,8 +118,24 @@ Finding judge_rating(const Situation& s, const models::Device& device, const Dem
   return finding;
 }
 
+// What carries a transformer's load is no subject of its own: it is said to be undecided rather than left out.
+void add_transformers(const Situation& s, std::vector<Finding>& findings) {
+  for (const models::Transformer& t : s.network->transformers) {
+    if (t.to != s.board_index || !(t.device.present() || t.primary_device.present() || t.tails.present)) continue;
+    Finding finding = begin_finding(s, kOverload);
+    finding.subject = t.name;
+    finding.at = t.at;
+    finding.unit = Quantity::current;
+    finding.clause = s.network->rules.overload_clause;
+    lack(finding, "overload, clearance and heating of the devices and tails of " + t.name + " by hand",
+         "devices and tails of a transformer between two boards are judged for breaking capacity alone");
+    findings.push_back(std::move(finding));
+  }
+}
+
 std::vector<Finding> judge_board(const Situation& s) {
   std::vector<Finding> findings;
+  add_transformers(s, findings);
   const auto board = static_cast<std::size_t>(s.board_index);
   const int feeder = s.tree->feeder[board];
   const std::vector<Protector> path = s.path;
@@ -141,7 +157,9 @@ std::vector<Finding> judge_board(const Situation& s) {
 bool has_overload(const Situation& s) {
   if (s.kind != SubjectKind::board) return s.kind != SubjectKind::tails || s.device->present();
   const bool incomer = s.board->incomer.present() && s.board->incomer.In > 0;
-  return incomer || !s.board->groups.empty();
+  const bool transformer = std::any_of(s.network->transformers.begin(), s.network->transformers.end(),
+                                       [&](const models::Transformer& t) { return t.to == s.board_index; });
+  return incomer || transformer || !s.board->groups.empty();
 }
 
 std::vector<Finding> judge_overload(const Situation& s) {
